@@ -1,0 +1,43 @@
+"""The cautions that go with every output: stored energy first, then what this design's own numbers call for."""
+
+from __future__ import annotations
+
+import math
+
+from loads.cycle import Cycle
+from loads.records import Check
+from parts.design import Design
+
+
+def cautions(design: Design, figures: Cycle, checks: tuple[Check, ...]) -> tuple[str, ...]:
+    """One sentence a caution, the general ones first."""
+    energy = float(figures.stored_energy) / 1000.0
+    at = figures.events
+    rows = [
+        f"Stored energy: at the hold the spring holds {energy:.0f} J. It can maim or kill without warning.",
+        "Keep clear of the line of fire and of the chain's plane whenever the spring may be drawn.",
+        "Unwind the spring and lock the drive out before reaching in (ISO 14118: unexpected start-up).",
+        "Work behind a guard and with a second person; reduce risk in the order that ISO 12100 gives.",
+        "Local rules and a licensed engineer come before this bill: it is a calculation, not an approval.",
+        "The release is NOT covered: what swing and snatch do to the parts is not in these loads and factors.",
+    ]
+    if design.moving is not None:
+        rows.append("[moving] was read, but the study of the release is not part of this version: nothing was made of it.")
+    if design.enclosure is not None:
+        rows.append("[enclosure] was read, but its study is not part of this version: no clearance to it was checked.")
+    if float(at.null) < float(at.release):
+        rows.append(
+            f"From {math.degrees(at.null):.1f}° (null) to {math.degrees(at.release):.1f}° (release) the spring drives the "
+            "disc forwards: past the null the machine fires by itself."
+        )
+    if float(figures.middle_least) <= 0.0:
+        rows.append(
+            "Near the middle of the turn the drive torque is nothing or turns round: without drive the machine can stop "
+            "there with the spring drawn."
+        )
+    if not design.chain.confirmed:
+        rows.append(f"The ratings of chain {design.chain.designation} are from memory: confirm them with the maker's certificate.")
+    memory = sorted({row.source for row in checks if "from memory" in row.source})
+    if memory:
+        rows.append("Values from memory stand behind some factors; confirm them with certificates before building.")
+    return tuple(rows)

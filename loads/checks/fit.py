@@ -1,0 +1,151 @@
+"""Whether the parts go together: webs between holes, the clash sweep, what must not stand proud, the spring's draw."""
+
+from __future__ import annotations
+
+from loads.checks.context import COMMON, Context
+from loads.records import Check
+from parts.outline import Plate
+from parts.shape import least_web
+
+WEB_OVER_HOLE = 0.25  # least web beside a hole as a share of its diameter
+LEAST_WEB = 2.0  # mm
+GEOMETRY = "geometry of the design"
+
+
+def check(c: Context) -> list[Check]:
+    """All checks of shape and room."""
+    return [*_webs(c), *_sinks(c), *_press(c), *_stop(c), *_spring(c), *_start(c), *_clashes(c)]
+
+
+def _webs(c: Context) -> list[Check]:
+    rows, seen = [], set()
+    for part in c.parts:
+        if not isinstance(part.body, Plate) or part.key in seen:
+            continue
+        seen.add(part.key)
+        worst: Check | None = None
+        holes = {hole.name: hole.diameter for hole in part.body.holes}
+        holes |= {sink.name: sink.diameter for sink in part.body.counterbores}
+        for web in least_web(part.body):
+            diameter = max(holes.get(web.one, 0.0), holes.get(web.other, 0.0))
+            wanted = max(LEAST_WEB, WEB_OVER_HOLE * diameter)
+            row = c.shape_check(
+                part.key, f"{web.one} / {web.other}", "web", wanted, max(web.thickness, 0.0), "mm",
+                f"least material beside a hole, {WEB_OVER_HOLE:g} of its diameter and {LEAST_WEB:g} mm", COMMON,
+            )  # fmt: skip
+            if worst is None or row.margin < worst.margin:
+                worst = row
+        if worst is not None:
+            rows.append(worst)
+    return rows
+
+
+def _sinks(c: Context) -> list[Check]:
+    disc, link, pin = c.sizes.disc, c.sizes.link, c.sizes.crank_pin
+    rows = [
+        c.shape_check(
+            "crank_disc", "hub_bolt_sink", "floor under the bolt heads", 0.3 * disc.thickness,
+            disc.thickness - disc.counterbore_depth, "mm",
+            "a third of the thickness stays under heads that lie below the face", COMMON,
+        )
+    ]  # fmt: skip
+    if link.counterbore_depth > 0.0:
+        rows.append(
+            c.shape_check(
+                "swing_link", "crank_pin_head_sink", "pin head below the face", pin.head_thickness, link.counterbore_depth,
+                "mm", "nothing but chain pin and chain end enters the chain's plane", GEOMETRY,
+            )  # fmt: skip
+        )
+        rows.append(
+            c.shape_check(
+                "swing_link", "crank_pin_head_sink", "floor under the pin head", 0.4 * link.thickness,
+                link.thickness - link.counterbore_depth, "mm", "four tenths of the thickness stay under the head", COMMON,
+            )  # fmt: skip
+        )
+    return rows
+
+
+def _press(c: Context) -> list[Check]:
+    disc = c.sizes.disc
+    held = [("crank_pin_hole", c.sizes.crank_pin.diameter)]
+    if c.sizes.stop.style == "post":
+        held.append(("stop_seat", c.sizes.stop.diameter))
+    return [
+        c.shape_check(
+            "crank_disc", name, "length of the press seat", 0.6 * d, disc.thickness, "mm",
+            "a pin held at one end is held over 0.6 of its diameter", COMMON,
+        )
+        for name, d in held
+    ]  # fmt: skip
+
+
+def _stop(c: Context) -> list[Check]:
+    stop, m, link = c.sizes.stop, c.design.mechanism, c.sizes.link
+    half = stop.length / 2.0 if stop.style == "block" else 0.0
+    room = min(m.stop_reach, m.link_length - m.stop_reach)
+    rows = [
+        c.shape_check(
+            "stop", "contact", "stays out of the chain's plane", stop.height, c.stack.plate_gap * 2.0 + link.thickness, "mm",
+            "height over the disc, up to the gap before the chain's plane", GEOMETRY,
+        ),
+        c.shape_check(
+            "stop", "contact", "reaches across the link", 0.5 * link.thickness,
+            max(0.0, min(stop.height - c.stack.plate_gap, link.thickness)), "mm",
+            "at least half the link's thickness touches the stop", COMMON,
+        ),
+    ]  # fmt: skip
+    if half:
+        rows.append(
+            c.shape_check(
+                "stop", "contact", "lies on the straight flank", half, room, "mm",
+                "the block touches the flank between the two pins", GEOMETRY,
+            )  # fmt: skip
+        )
+    return rows
+
+
+def _spring(c: Context) -> list[Check]:
+    most = c.design.spring.most_draw
+    if most is None:
+        return []
+    drawn = float(c.past.figures.most_pull) - c.design.chain.slack
+    return [
+        c.shape_check(
+            "spring", "draw", "most draw", max(drawn, 0.0), most, "mm", "draw at the end of winding against what the spring bears",
+            "the spring's maker, as given in the design",
+        )
+    ]  # fmt: skip
+
+
+def _start(c: Context) -> list[Check]:
+    """Room between the chain end and the sheave when the link points at it."""
+    m, end, chain = c.design.mechanism, c.sizes.chain_end, c.design.chain
+    reach = m.crank_radius + m.link_length + end.length + chain.pitch
+    return [
+        c.shape_check(
+            "chain_end", "chain_hole", "clear of the sheave at the start", reach,
+            float(c.past.machine.sheave_distance), "mm",
+            "chain end and one pitch of chain lie before the sheave", COMMON,
+        )
+    ]  # fmt: skip
+
+
+def _clashes(c: Context) -> list[Check]:
+    """One row that says all is clear, or one a pair that meets and one a part that stands in the chain's plane."""
+    method = "layer-by-layer sweep over winding and the swing after the release"
+    rows = [
+        Check(
+            clash.part_a, clash.part_b, "parts meet", clash.sweep, clash.crank_angle, clash.depth, 0.0, "mm", 1.0, method,
+            GEOMETRY, f"first at x {clash.x:.1f}, y {clash.y:.1f} mm in the machine frame",
+        )
+        for clash in c.findings.clashes
+    ]  # fmt: skip
+    rows += [
+        Check(
+            part.part, "chain's plane", "stands in the chain's plane", "", part.crank_angle, part.depth, 0.0, "mm", 1.0,
+            "nothing but chain pin and chain end may enter it", GEOMETRY,
+            f"meets the {part.meets.replace('_', ' ')}" if part.meets else "",
+        )
+        for part in c.findings.intrusions
+    ]  # fmt: skip
+    return rows or [Check("assembly", "all layers", "parts meet", "", None, 0.0, 0.0, "mm", 1.0, method, GEOMETRY)]

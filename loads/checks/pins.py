@@ -1,0 +1,137 @@
+"""Pins: shear, bending and both, in double shear or held at one end."""
+
+from __future__ import annotations
+
+import math
+
+import numpy as np
+
+from loads.checks.context import BEAM, EN_PINS, Context, length_of
+from loads.records import Check
+from parts.design import Floats, Material
+
+
+def circle_area(d: Floats | float) -> Floats:
+    """Area (mm²) of a circle of diameter ``d`` (mm)."""
+    return np.asarray(math.pi * np.asarray(d) ** 2 / 4.0)
+
+
+def section_modulus(d: Floats | float) -> Floats:
+    """Elastic section modulus W_el (mm³) of a round section of diameter ``d`` (mm)."""
+    return np.asarray(math.pi * np.asarray(d) ** 3 / 32.0)
+
+
+def pin_shear_capacity(d: Floats | float, f_up: Floats | float) -> Floats:
+    """F_v,R = 0.6 A f_up in N for one shear plane; d in mm, f_up in MPa.
+
+    Source: EN 1993-1-8:2005 table 3.10, partial factor γM2 set to 1.
+    """
+    return np.asarray(0.6 * circle_area(d) * f_up)
+
+
+def pin_bending_capacity(d: Floats | float, f_yp: Floats | float) -> Floats:
+    """M_R = 1.5 W_el f_yp in N·mm of a pin in double shear; d in mm, f_yp in MPa.
+
+    Source: EN 1993-1-8:2005 table 3.10, γM0 set to 1.
+    """
+    return np.asarray(1.5 * section_modulus(d) * f_yp)
+
+
+def replaceable_pin_bending_capacity(d: Floats | float, f_yp: Floats | float) -> Floats:
+    """M_R,ser = 0.8 W_el f_yp in N·mm of a pin that is to be taken out again; d in mm, f_yp in MPa.
+
+    Source: EN 1993-1-8:2005 table 3.10, γM6,ser = 1.
+    """
+    return np.asarray(0.8 * section_modulus(d) * f_yp)
+
+
+def double_shear_moment(force: Floats, outer: float, inner: float, gap: float) -> Floats:
+    """M = F (b + 4c + 2a) / 8 in N·mm: inner plate b, gaps c, outer plates a, all in mm; F in N.
+
+    Source: EN 1993-1-8:2005 figure 3.11.
+    """
+    return np.asarray(force * (inner + 4.0 * gap + 2.0 * outer) / 8.0)
+
+
+def first_yield_bending_capacity(d: Floats | float, f_y: Floats | float) -> Floats:
+    """W_el f_y in N·mm: the outermost fibre of a round section just yields. Source: beam theory."""
+    return np.asarray(section_modulus(d) * f_y)
+
+
+def shear_and_bending_factor(shear_use: Floats, bending_use: Floats) -> Floats:
+    """1/sqrt of (M/M_R)² + (F/F_R)²: the factor by which all loads may grow until the interaction reaches 1.
+
+    Source: EN 1993-1-8:2005 table 3.10, combined shear and bending of the pin.
+    """
+    use = np.hypot(shear_use, bending_use)
+    return np.where(use > 0.0, 1.0 / np.maximum(use, 1e-300), np.inf)
+
+
+def _note(material: Material) -> str:
+    return "" if "steel" in material.kind or "bar" in material.kind else f"a rule for structural steel, applied to {material.name}"
+
+
+def pin_checks(
+    c: Context, part: str, site: str, d: float, material: Material, shear: Floats, moment: Floats, held: bool
+) -> list[Check]:
+    """Shear, bending and both of one section of diameter ``d``; ``held`` at one end, else in double shear."""
+    f_u, f_y = material.ultimate_strength(d), material.yield_strength(d)
+    shear_capacity = float(pin_shear_capacity(d, f_u))
+    if held:
+        bending_capacity, bending_method = float(first_yield_bending_capacity(d, f_y)), "W_el f_y, pin held at one end"
+    else:
+        bending_capacity, bending_method = float(pin_bending_capacity(d, f_y)), "1.5 W_el f_y, M = F(b + 4c + 2a)/8"
+    source = BEAM if held else EN_PINS
+    targets = c.design.targets
+    rows = [
+        c.worst_check(part, site, "pin shear", shear, shear_capacity, "N", targets.ultimate, "0.6 A f_u, one shear plane", EN_PINS, _note(material)),
+        c.worst_check(part, site, "pin bending", moment, bending_capacity, "N·mm", targets.yield_, bending_method, source, _note(material)),
+    ]  # fmt: skip
+    if not held:
+        rows.append(
+            c.worst_check(
+                part, site, "pin bending, replaceable", moment, float(replaceable_pin_bending_capacity(d, f_y)), "N·mm", 1.0,
+                "0.8 W_el f_y at the working load, γ = 1", EN_PINS, _note(material),
+            )  # fmt: skip
+        )
+    factor = shear_and_bending_factor(shear / shear_capacity, moment / bending_capacity)
+    both = np.where(np.isfinite(factor), 1.0 / factor, 0.0)
+    rows.append(
+        c.worst_check(
+            part, site, "pin shear with bending", both, 1.0, "1", targets.yield_,
+            "(M/M_R)² + (F/F_R)² = 1, all loads growing together", EN_PINS, _note(material),
+        )  # fmt: skip
+    )
+    return rows
+
+
+def check(c: Context) -> list[Check]:
+    """Crank pin at its root in the disc; chain pin at its middle and at its seat in the link."""
+    crank, chain = c.sizes.crank_pin, c.sizes.chain_pin
+    root = c.site("crank_pin", "root")
+    # at the disc's face, not at the middle of the seat: half the disc nearer the load
+    to_face = c.stack.pin_root_arm / (c.stack.disc_middle - c.stack.link_middle)
+    journal = c.site("crank_pin", "journal")
+    direct = root.moment + journal.moment
+    moment = length_of(direct * to_face - journal.moment)
+    rows = pin_checks(c, "crank_pin", "root", crank.diameter, crank.material, length_of(root.force), moment, True)
+    if c.stack.chain_pin_support == "double shear":
+        whole = length_of(c.members.chain_on_pin)
+        inner = c.sizes.chain_end.width
+        gap = (c.stack.chain_plane_width - inner) / 2.0
+        moment = double_shear_moment(whole, c.stack.link_thickness, inner, gap)
+        rows += pin_checks(
+            c, "chain_pin", "middle", chain.middle_diameter, chain.material, whole * c.stack.load_share, moment, False
+        )
+        share = length_of(c.members.chain_side)
+        rows += pin_checks(
+            c, "chain_pin", "shoulder", chain.diameter, chain.material, share, share * c.stack.link_thickness / 2.0, True
+        )
+    else:
+        side = length_of(c.members.chain_side)
+        arm = c.stack.chain_plane_width / 2.0
+        rows += pin_checks(c, "chain_pin", "link_seat", min(chain.diameter, chain.collar_diameter), chain.material, side, side * arm, True)
+        rows += pin_checks(
+            c, "chain_pin", "collar", chain.middle_diameter, chain.material, side, side * c.sizes.chain_end.width / 2.0, True
+        )
+    return rows

@@ -1,0 +1,221 @@
+"""The winding cycle: its events, its peaks and its largest loads, for one design or for many.
+
+Leading axes of the machines broadcast; nothing is picked off a grid: events are bracketed roots, peaks are refined.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, fields
+
+import numpy as np
+
+from loads.linkage import Linkage, State, chain_line, free_line, lift, seated_chain_pin_at, seated_line, state
+from loads.roots import bracketed_root, first_down_crossing, refined_peak
+from loads.spring_law import spring_energy
+from parts.design import Floats
+
+SCAN = 144  # cells in which a sign change is looked for over a turn; a coarse look, refined afterwards
+STAGE = 90  # cells a stage in which the highest point is looked for
+
+
+@dataclass(frozen=True, slots=True)
+class Events:
+    """Crank angles in rad, NaN where the mechanism has no such event. All shaped like the machines."""
+
+    catch: Floats
+    null: Floats
+    release: Floats
+    hold: Floats
+
+    @property
+    def first_end(self) -> Floats:
+        """The first of null and release: where winding is over."""
+        return np.minimum(self.null, self.release)
+
+
+def events(machine: Linkage) -> Events:
+    """Catch, null, release and hold of each machine, as bracketed roots (rad)."""
+    m = machine.expanded()
+    grid = np.linspace(0.0, 2.0 * np.pi, SCAN + 1)
+
+    def slack_of_seat(theta: Floats) -> Floats:
+        return np.asarray(np.pi + free_line(machine, theta).direction - theta - machine.seat_angle)
+
+    x = np.broadcast_to(grid, (*machine.shape, SCAN + 1))
+    gap = np.pi + free_line(m, x).direction - x - m.seat_angle
+    catch = bracketed_root(slack_of_seat, *first_down_crossing(x, gap))
+
+    x = catch[..., None] + grid[1:]
+    line = seated_line(m, x)
+    hold_on = lift(m, line, x)
+
+    def both(t: Floats) -> Floats:  # null and release at once
+        there = seated_line(machine, t)
+        return np.stack([there.arm[0], lift(machine, there, t)[1]])
+
+    brackets = zip(first_down_crossing(x, line.arm), first_down_crossing(x, hold_on), strict=True)
+    null, release = bracketed_root(both, *(np.stack(pair) for pair in brackets))
+    # a link that is not pressed on its stop just behind the catch was never caught
+    release = np.where(hold_on[..., 0] > 0.0, release, np.nan)
+    return Events(catch, null, release, np.minimum(null, release) - machine.hold_margin)
+
+
+@dataclass(frozen=True, slots=True)
+class Cycle:
+    """Figures of the whole mechanism, winding, frictionless, no shock factor. mm, N, N·mm, rad; shaped like the machines.
+
+    ``*_at`` are the crank angles of the peaks. The largest loads are over 0 to the release.
+    """
+
+    events: Events
+    first_peak: Floats
+    first_peak_at: Floats
+    second_peak: Floats
+    second_peak_at: Floats
+    middle_least: Floats
+    middle_least_at: Floats
+    pull_at_hold: Floats
+    draw_at_hold: Floats
+    most_pull: Floats
+    stored_energy: Floats
+    hold_torque: Floats
+    mean_torque: Floats
+    largest_tension: Floats
+    largest_crank_pin: Floats
+    largest_stop: Floats
+    largest_link_bending: Floats
+    largest_tension_at: Floats
+    largest_crank_pin_at: Floats
+    largest_stop_at: Floats
+    largest_link_bending_at: Floats
+    least_wrap: Floats
+    most_wrap: Floats
+
+
+def _span(low: Floats, high: Floats, cells: int) -> Floats:
+    return np.asarray(low[..., None] + (high - low)[..., None] * np.linspace(0.0, 1.0, cells + 1))
+
+
+# what is refined: name in State, from, to, factor; the windows are named by event
+_PEAKS = (
+    ("torque", "start", "catch", 1.0),
+    ("torque", "catch", "end", 1.0),
+    ("tension", "start", "release", 1.0),
+    ("pin_force", "start", "release", 1.0),
+    ("stop_force", "catch", "release", 1.0),
+    ("link_bending", "catch", "release", 1.0),
+    ("pull", "start", "release", 1.0),
+    # the torque has a corner at the catch, so the least between the peaks is looked for on each side of it
+    ("torque", "first", "catch", -1.0),
+    ("torque", "catch", "second", -1.0),
+)
+
+
+def cycle(machine: Linkage) -> Cycle:
+    """Events, peaks and largest loads of each machine. Machines that have no cycle come out as NaN."""
+    if machine.shape and machine.shape[0] > 256:
+        return _in_chunks(machine)
+    with np.errstate(invalid="ignore"):
+        return _cycle(machine)
+
+
+def _cycle(machine: Linkage) -> Cycle:
+    at = events(machine)
+    zero = np.zeros(machine.shape)
+    coarse = np.concatenate(
+        [_span(zero, at.catch, STAGE), _span(at.catch, at.release, STAGE)[..., 1:]], axis=-1
+    )
+    rough = state(machine, coarse, at.catch)
+    ends = {"start": zero, "catch": at.catch, "end": at.first_end, "release": at.release}
+
+    # rough places of the two peaks, between which the least lies
+    ends["first"] = _highest(coarse, rough.torque, zero, at.catch)
+    ends["second"] = _highest(coarse, rough.torque, at.catch, at.first_end)
+
+    found = np.stack([factor * getattr(rough, name) for name, _, _, factor in _PEAKS], axis=-2)
+    low, high = _best_cells(
+        coarse[..., None, :],
+        found,
+        np.stack([ends[start] for _, start, _, _ in _PEAKS], -1),
+        np.stack([ends[end] for _, _, end, _ in _PEAKS], -1),
+    )
+    place, height = refined_peak(lambda x: _chosen(machine, at.catch, x), low, high)
+    lower = (height[..., 8] > height[..., 7])[..., None] + np.array(7)
+
+    hold = state(machine, at.hold[..., None], at.catch)
+    draw_at_hold = hold.draw[..., 0]
+    energy = spring_energy(machine.spring, draw_at_hold)
+    return Cycle(
+        events=at,
+        first_peak=height[..., 0], first_peak_at=place[..., 0], second_peak=height[..., 1], second_peak_at=place[..., 1],
+        middle_least=-np.take_along_axis(height, lower, -1)[..., 0],
+        middle_least_at=np.take_along_axis(place, lower, -1)[..., 0],
+        pull_at_hold=hold.pull[..., 0], draw_at_hold=draw_at_hold, most_pull=height[..., 6], stored_energy=energy,
+        hold_torque=hold.torque[..., 0], mean_torque=energy / machine.efficiency / at.hold,
+        largest_tension=height[..., 2], largest_crank_pin=height[..., 3], largest_stop=height[..., 4],
+        largest_link_bending=height[..., 5], largest_tension_at=place[..., 2], largest_crank_pin_at=place[..., 3],
+        largest_stop_at=place[..., 4], largest_link_bending_at=place[..., 5], least_wrap=rough.wrap.min(-1), most_wrap=rough.wrap.max(-1),
+    )  # fmt: skip
+
+
+def _best_cells(x: Floats, f: Floats, start: Floats, end: Floats) -> tuple[Floats, Floats]:
+    """The two cells around the highest sample within [start, end], cut off at its ends."""
+    start, end = start[..., None], end[..., None]
+    x = np.broadcast_to(x, f.shape)
+    inside = (x >= start) & (x <= end)
+    index = np.argmax(np.where(inside, f, -np.inf), axis=-1)[..., None]
+    # an interval that lies between two samples has none inside: take the cell that holds it
+    index = np.where(inside.any(-1)[..., None], index, np.argmax(x >= start, axis=-1)[..., None])
+    low = np.take_along_axis(x, np.maximum(index - 1, 0), -1)
+    high = np.take_along_axis(x, np.minimum(index + 1, x.shape[-1] - 1), -1)
+    return np.maximum(low, start)[..., 0], np.minimum(high, end)[..., 0]
+
+
+def _highest(x: Floats, f: Floats, start: Floats, end: Floats) -> Floats:
+    inside = (x >= start[..., None]) & (x <= end[..., None])
+    index = np.argmax(np.where(inside, f, -np.inf), axis=-1)[..., None]
+    return np.take_along_axis(x, index, -1)[..., 0]
+
+
+def _chosen(machine: Linkage, catch: Floats, x: Floats) -> Floats:
+    """Values at x (..., k, cuts): in each of the k rows the quantity that is looked for there."""
+    s = state(machine, x.reshape(*x.shape[:-2], -1), catch)
+    found = {name: getattr(s, name).reshape(x.shape) for name in {row[0] for row in _PEAKS}}
+    return np.stack([factor * found[name][..., row, :] for row, (name, _, _, factor) in enumerate(_PEAKS)], axis=-2)
+
+
+def _in_chunks(machine: Linkage, rows: int = 256) -> Cycle:
+    """Many machines a few hundred at a time: what is in work stays in the processor's cache and in bounds."""
+    parts = [cycle(machine.chunk(slice(i, i + rows))) for i in range(0, machine.shape[0], rows)]
+    joined = {
+        f.name: np.concatenate([getattr(p, f.name) for p in parts]) for f in fields(Cycle) if f.name != "events"
+    }
+    when = {f.name: np.concatenate([getattr(p.events, f.name) for p in parts]) for f in fields(Events)}
+    return Cycle(events=Events(**when), **joined)
+
+
+def trace_angles(figures: Cycle, step: float = np.radians(0.5)) -> Floats:
+    """Crank angles (rad) of one design's trace: each step from 0 to the release and each event, sorted, none twice."""
+    at = figures.events
+    end = float(at.release)
+    steps = np.arange(0.0, end, step)
+    marks = np.array(
+        [figures.first_peak_at, figures.second_peak_at, figures.middle_least_at, at.catch, at.null, at.hold, end]
+    )
+    angles = np.sort(np.concatenate([steps, marks[(marks >= 0.0) & (marks <= end)]]))
+    # two that print alike are one: the later is dropped, the release is kept
+    keep = np.diff(np.round(np.degrees(angles), 6), prepend=-1.0) > 0.0
+    return np.asarray(angles[keep])
+
+
+def trace(machine: Linkage, figures: Cycle, step: float = np.radians(0.5)) -> State:
+    """One design over crank angle; see ``trace_angles``."""
+    return state(machine, trace_angles(figures, step), figures.events.catch)
+
+
+def seated_radius(machine: Linkage) -> Floats:
+    """|OB| in mm while the link is seated: the second arm."""
+    return np.hypot(*seated_chain_pin_at(machine, np.zeros(machine.shape)))
+
+
+__all__ = ["Cycle", "Events", "chain_line", "cycle", "events", "seated_radius", "trace", "trace_angles"]

@@ -1,0 +1,178 @@
+"""From a design file to everything that is known of the machine: one record, made without the solid modeller."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from pathlib import Path
+
+import numpy as np
+
+from loads.catalogue import load_catalogue
+from loads.cautions import cautions
+from loads.checks import all_checks
+from loads.checks.context import Context
+from loads.cycle import Cycle, cycle
+from loads.linkage import Linkage, State, chain_line, linkage_of, state
+from loads.members import History, history, load_rows, members, site_histories
+from loads.proportions import proportion
+from loads.records import Check, LoadRow, SiteHistory
+from loads.refusals import mechanism_problems
+from parts.clash import Findings, Sweep, sweep
+from parts.design import Assumed, Design, Floats
+from parts.outline import Part
+from parts.problems import DesignRefused, Problem
+from parts.read import read_design
+from parts.registry import make_parts
+from parts.sizes import Sizes
+from parts.stack import Stack
+
+SWEEP_STEP = np.radians(2.0)
+
+
+@dataclass(frozen=True, slots=True)
+class Examination:
+    """A design examined. ``loads`` and ``checks`` are the bill; ``holds`` is the verdict."""
+
+    design: Design
+    machine: Linkage
+    figures: Cycle
+    past: History
+    sizes: Sizes
+    stack: Stack
+    parts: tuple[Part, ...]
+    sites: tuple[SiteHistory, ...]
+    loads: tuple[LoadRow, ...]
+    checks: tuple[Check, ...]
+    findings: Findings
+    assumed: tuple[Assumed, ...]
+    cautions: tuple[str, ...]
+
+    @property
+    def holds(self) -> bool:
+        return all(row.holds for row in self.checks)
+
+    @property
+    def falls_short(self) -> tuple[Check, ...]:
+        """The checks that miss their target, the worst first."""
+        return tuple(row for row in self.checks if not row.holds)
+
+
+def examine(path: Path) -> Examination:
+    """Read, solve, size, load and check the design in a file.
+
+    Raises ``DesignRefused`` with every problem at once: those of the file and those of the mechanism.
+    """
+    catalogue = load_catalogue()
+    reading = read_design(path, catalogue)
+    problems: tuple[Problem, ...] = reading.problems
+    design = reading.design
+    if design is None:
+        raise DesignRefused(path, problems)
+    machine = linkage_of(design)
+    figures = cycle(machine)
+    found = mechanism_problems(design, figures)
+    problems += tuple(replace(p, line=reading.locate(p.key)) for p in found)
+    if problems:
+        raise DesignRefused(path, problems)
+
+    plain = history(machine, figures)
+    sizes, stack, proportioned = proportion(design, plain, catalogue)
+    machine, rubbing = with_friction(design, machine, sizes)
+    past = history(machine, figures)
+    parts = make_parts(design, sizes, stack)
+    sites = site_histories(past, stack, design.targets, sizes.disc.bolt_circle / 2.0)
+    findings = sweep(parts, design, sizes, stack, sweep_poses(machine, figures))
+    context = Context(
+        design=design, sizes=sizes, stack=stack, parts=parts, past=past,
+        members=members(past, stack, design.targets),
+        sites={(s.part, s.site): s for s in sites}, findings=findings,
+    )  # fmt: skip
+    checks = all_checks(context)
+    return Examination(
+        design=design, machine=machine, figures=figures, past=past, sizes=sizes, stack=stack, parts=parts, sites=sites,
+        loads=load_rows(past, sites), checks=checks, findings=findings,
+        assumed=(*design.assumed, *rubbing, *proportioned), cautions=cautions(design, figures, checks),
+    )  # fmt: skip
+
+
+def with_friction(design: Design, machine: Linkage, sizes: Sizes) -> tuple[Linkage, tuple[Assumed, ...]]:
+    """The machine with the friction of its joints, now that their radii are known."""
+    friction, assumed = design.friction, ()
+    radius = friction.bearing_radius
+    if radius is None:
+        radius = sizes.disc.bore / 2.0
+        assumed = (Assumed("friction.bearing_radius", radius, "length", "half the disc's bore: a shaft of that size"),)
+    full = np.broadcast_to
+    return replace(
+        machine,
+        friction_bearing=full(friction.bearing * radius, machine.shape),
+        friction_crank_pin=full(friction.crank_pin * sizes.crank_pin.diameter / 2.0, machine.shape),
+        friction_chain_pin=full(friction.chain_pin * sizes.chain_pin.middle_diameter / 2.0, machine.shape),
+    ), assumed
+
+
+@dataclass(frozen=True, slots=True)
+class Directions:
+    """Directions in the machine frame (rad), one element a crank angle, as the assembly takes them."""
+
+    disc: Floats
+    link: Floats
+    chain: Floats
+
+
+def directions(machine: Linkage, s: State) -> Directions:
+    """Where disc (O→A), link (A→B) and chain point."""
+    start, turn = float(machine.start_direction), float(machine.turn)
+    return Directions(
+        disc=start + turn * s.crank_angle,
+        link=start + turn * s.link_direction,
+        chain=start + turn * s.chain_direction,
+    )
+
+
+def free_lengths(machine: Linkage, s: State) -> Floats:
+    """Straight chain (mm) between the chain pin and the sheave, one element a crank angle."""
+    bx, by = chain_pin_places(machine, s)
+    gap_x = float(machine.sheave_distance) - bx
+    gap_y = -float(machine.wrap_side * machine.pitch_radius) - by
+    return np.asarray(np.sqrt(np.maximum(gap_x**2 + gap_y**2 - float(machine.pitch_radius) ** 2, 0.0)))
+
+
+def chain_pin_places(machine: Linkage, s: State) -> tuple[Floats, Floats]:
+    """B in the chain frame."""
+    r, length = float(machine.crank_radius), float(machine.link_length)
+    x = r * np.cos(s.crank_angle) + length * np.cos(s.link_direction)
+    y = r * np.sin(s.crank_angle) + length * np.sin(s.link_direction)
+    return x, y
+
+
+def sweep_poses(machine: Linkage, figures: Cycle) -> Sweep:
+    """Winding from 0 to the release, then the link's swing at the release until it points along the chain again."""
+    at = figures.events
+    end = float(at.release)
+    winding = np.unique(np.concatenate([np.arange(0.0, end, SWEEP_STEP), [float(at.catch), float(at.hold), end]]))
+    s = state(machine, winding, at.catch)
+    d = directions(machine, s)
+    turn, beta = float(machine.turn), float(machine.seat_angle)
+    swing = np.linspace(beta, np.pi, 1 + round((np.pi - beta) / float(SWEEP_STEP)))
+    disc = np.full_like(swing, d.disc[-1])
+    link = disc + turn * (np.pi + swing)
+    # in the swing the chain end hangs on the chain pin and points at the sheave
+    ax, ay = float(machine.crank_radius) * np.cos(end), float(machine.crank_radius) * np.sin(end)
+    bx = ax + float(machine.link_length) * np.cos(end + np.pi + swing)
+    by = ay + float(machine.link_length) * np.sin(end + np.pi + swing)
+    m = machine.expanded()
+
+
+    line = chain_line(m, bx, by)
+    chain = float(machine.start_direction) + turn * line.direction
+    return Sweep(
+        crank_angle=np.concatenate([winding, np.full_like(swing, end)]),
+        disc_angle=np.concatenate([d.disc, disc]),
+        link_angle=np.concatenate([d.link, link]),
+        chain_angle=np.concatenate([d.chain, chain]),
+        free_length=np.concatenate([free_lengths(machine, s), line.free_length]),
+        taut=np.concatenate([np.ones(len(winding), bool), np.zeros(len(swing), bool)]),
+    )
+
+

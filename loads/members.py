@@ -1,0 +1,205 @@
+"""Member loads: the free bodies of disc, link, pins and stop over crank angle, couples across the stack included.
+
+Each history is for ONE part as made: shock factor in, and where a twin stack has two of a part, the load share. The
+twin's values are those of the side behind the chain; in front of it the out-of-plane moments change their sign.
+
+Statics throughout: forces and moments of each body add up to nothing, which the tests hold over random designs.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from loads.cycle import Cycle, trace_angles
+from loads.linkage import Linkage, State, state
+from loads.records import CASES, FIRST_HALF, HOLD, SECOND_HALF, LoadRow, SiteHistory
+from parts.design import Floats, Targets
+from parts.stack import Stack
+
+
+@dataclass(frozen=True, slots=True)
+class History:
+    """One design's state over crank angle, with the rows that belong to each case.
+
+    The angles hold each step, each event and each refined peak, so that a worst case is never a neighbour of the worst.
+    """
+
+    machine: Linkage
+    figures: Cycle
+    state: State
+    hold_index: int
+
+    def rows(self, case: str) -> np.ndarray[tuple[int, ...], np.dtype[np.intp]]:
+        """Indices of the crank angles that belong to a case."""
+        theta, catch = self.state.crank_angle, float(self.figures.events.catch)
+        if case == FIRST_HALF:
+            return np.flatnonzero(theta <= catch)
+        if case == SECOND_HALF:
+            return np.flatnonzero(theta > catch)
+        return np.array([self.hold_index])
+
+    def case_at(self, index: int) -> str:
+        """The case that a crank angle belongs to; the hold has a name of its own."""
+        if index == self.hold_index:
+            return HOLD
+        return SECOND_HALF if bool(self.state.seated[index]) else FIRST_HALF
+
+    def worst(self, demand: Floats, case: str) -> int:
+        rows = self.rows(case)
+        return int(rows[np.argmax(demand[rows])])
+
+
+def history(machine: Linkage, figures: Cycle) -> History:
+    """State of one design at all angles that matter."""
+    extra = [figures.largest_crank_pin_at, figures.largest_stop_at, figures.largest_link_bending_at]
+    extra += [figures.largest_tension_at, np.nextafter(figures.events.catch, np.inf)]
+    end = float(figures.events.release)
+    theta = np.unique(np.concatenate([trace_angles(figures), [float(x) for x in extra]]))
+    theta = theta[theta <= end]
+    hold_index = int(np.argmin(np.abs(theta - float(figures.events.hold))))
+    return History(machine, figures, state(machine, theta, figures.events.catch), hold_index)
+
+
+def _vector(x: Floats, y: Floats) -> Floats:
+    return np.stack([x, y, np.zeros_like(x)])
+
+
+def _couple(depth: float, force: Floats) -> Floats:
+    """Moment (3, n) of a force that acts ``depth`` mm further along z."""
+    return np.stack([-depth * force[1], depth * force[0], np.zeros_like(force[0])])
+
+
+def _turned(vector: Floats, angle: Floats) -> Floats:
+    """Components of a chain-frame vector in a frame that stands at ``angle`` (rad) to it."""
+    c, s = np.cos(angle), np.sin(angle)
+    return np.stack([vector[0] * c + vector[1] * s, -vector[0] * s + vector[1] * c, vector[2]])
+
+
+@dataclass(frozen=True, slots=True)
+class Members:
+    """Forces of one design over crank angle in the chain frame, shock factor included. Shapes (3, n).
+
+    ``*_side`` are what one side of the stack is checked for, the others are of the whole machine.
+    """
+
+    chain_on_pin: Floats  # T·u
+    chain_side: Floats
+    stop_on_link: Floats  # N·n, one side
+    pin_on_link: Floats  # one side
+    chain_couple: Floats  # moment of the chain's offset about the link's middle, one side
+    spring_pull: Floats  # on the sheave, F along the exit direction
+    friction_torque: Floats
+    torque: Floats
+    torque_side: Floats
+
+
+def members(past: History, stack: Stack, targets: Targets) -> Members:
+    """Forces with shock and share, from the frictionless state."""
+    s, shock = past.state, targets.shock_factor
+    share = stack.load_share
+    chain = _vector(-s.shaft_x, -s.shaft_y) * shock
+    pin = _vector(s.pin_x, s.pin_y) * shock * share
+    side = chain * share
+    return Members(
+        chain_on_pin=chain,
+        chain_side=side,
+        stop_on_link=-side - pin,
+        pin_on_link=pin,
+        chain_couple=_couple(stack.chain_offset, side),
+        spring_pull=_vector(s.sheave_x, s.sheave_y) * shock + chain,
+        friction_torque=s.friction_torque * shock,
+        torque=s.torque * shock,
+        torque_side=s.torque * shock * share,
+    )
+
+
+def _rank(force: Floats) -> Floats:
+    return np.asarray(np.linalg.norm(force, axis=0))
+
+
+def site_histories(
+    past: History, stack: Stack, targets: Targets, bolt_radius: float
+) -> tuple[SiteHistory, ...]:
+    """Loads at every site of every part, (3, n) each, in the part's frame."""
+    s, m = past.state, past.machine
+    f = members(past, stack, targets)
+    turn = float(m.turn)
+    none = np.zeros_like(f.chain_side)
+    # forces act in the link's middle; the chain lies ``away`` mm nearer the viewer on the side behind the chain
+    arm_disc = stack.disc_middle - stack.link_middle
+    arm_back = stack.disc_back - stack.link_middle
+
+    def mirrored(force: Floats, moment: Floats) -> tuple[Floats, Floats]:
+        """A clockwise machine is the mirror image about the x axis: y of forces, x and z of moments change sign."""
+        flip = np.array([[1.0], [turn], [1.0]])
+        return force * flip, moment * turn * flip
+
+    def in_disc(part: str, site: str, force: Floats, moment: Floats, demand: Floats | None = None) -> SiteHistory:
+        a = s.crank_angle
+        fm = mirrored(_turned(force, a), _turned(moment, a))
+        return SiteHistory(part, site, "disc", *fm, _rank(force) if demand is None else demand)
+
+    def in_link(part: str, site: str, force: Floats, moment: Floats, demand: Floats | None = None) -> SiteHistory:
+        a = s.link_direction
+        fm = mirrored(_turned(force, a), _turned(moment, a))
+        return SiteHistory(part, site, "link", *fm, _rank(force) if demand is None else demand)
+
+    def in_machine(
+        part: str, site: str, force: Floats, moment: Floats, demand: Floats | None = None
+    ) -> SiteHistory:
+        a = np.full_like(s.crank_angle, -float(m.start_direction) * turn)
+        fm = mirrored(_turned(force, a), _turned(moment, a))
+        return SiteHistory(part, site, "machine", *fm, _rank(force) if demand is None else demand)
+
+    pin_root = _couple(arm_disc, -f.pin_on_link) + f.chain_couple
+    stop_root = _couple(arm_disc, -f.stop_on_link)
+    tilt = _couple(arm_back, f.chain_side) + f.chain_couple
+    twist = np.stack([np.zeros_like(f.torque), np.zeros_like(f.torque), f.torque])
+    twist_side = np.stack([np.zeros_like(f.torque), np.zeros_like(f.torque), f.torque_side])
+    bolts = np.sqrt(_rank(f.chain_side) ** 2 + (_rank(tilt)[:] / bolt_radius) ** 2 + (f.torque_side / bolt_radius) ** 2)
+    sheave = f.spring_pull - f.chain_on_pin
+    # the rope friction of the sheave: what the two legs leave over is a couple on its pin
+    rubbing = (_rank(f.spring_pull) - _rank(f.chain_on_pin)) * float(m.pitch_radius) * -float(m.wrap_side)
+    rub = np.stack([np.zeros_like(rubbing), np.zeros_like(rubbing), rubbing])
+    whole = twist + np.stack([np.zeros_like(f.torque), np.zeros_like(f.torque), f.friction_torque])
+    return (
+        in_disc("crank_disc", "crank_pin_hole", -f.pin_on_link, pin_root),
+        in_disc("crank_disc", "stop_seat", -f.stop_on_link, stop_root),
+        in_disc("crank_disc", "hub_face", -f.chain_side, twist_side - tilt, bolts),
+        in_link("swing_link", "crank_pin_eye", f.pin_on_link, -f.chain_couple),
+        in_link("swing_link", "chain_pin_eye", f.chain_side, f.chain_couple),
+        in_link("swing_link", "stop_flank", f.stop_on_link, none),
+        in_disc("stop", "contact", -f.stop_on_link, none),
+        in_disc("stop", "root", f.stop_on_link, -stop_root),
+        in_disc("crank_pin", "journal", -f.pin_on_link, f.chain_couple),
+        in_disc("crank_pin", "root", f.pin_on_link, -pin_root, _rank(pin_root)),
+        in_link("chain_pin", "journal", f.chain_on_pin, none),
+        in_link("chain_pin", "link_seat", -f.chain_side, -f.chain_couple),
+        in_machine("chain_end", "chain_pin_eye", -f.chain_on_pin, none),
+        in_machine("chain_end", "chain_hole", f.chain_on_pin, none),
+        in_machine("chain", "strand", f.chain_on_pin, none),
+        in_machine("main_bearing", "hub_face", f.chain_side, tilt - twist_side),
+        in_machine("sheave", "groove", sheave, rub),
+        in_machine("sheave_pin", "journal", sheave, none),
+        in_machine("spring_anchor", "anchor", -f.spring_pull, none),
+        in_machine("frame", "main_bearing", f.chain_on_pin, none),
+        in_machine("frame", "sheave", sheave, rub),
+        in_machine("frame", "spring_anchor", -f.spring_pull, none),
+        in_machine("frame", "drive", none, -whole, np.abs(f.torque + f.friction_torque)),
+    )
+
+
+def load_rows(past: History, sites: tuple[SiteHistory, ...]) -> tuple[LoadRow, ...]:
+    """One row a site and case, at the crank angle where the site's demand is greatest."""
+    rows = []
+    for site in sites:
+        for case in CASES:
+            i = past.worst(site.demand, case)
+            force = (float(site.force[0, i]), float(site.force[1, i]), float(site.force[2, i]))
+            moment = (float(site.moment[0, i]), float(site.moment[1, i]), float(site.moment[2, i]))
+            rows.append(
+                LoadRow(site.part, site.site, case, float(past.state.crank_angle[i]), site.frame, force, moment)
+            )
+    return tuple(rows)

@@ -1,0 +1,79 @@
+"""What the load module hands on: loads at sites and checks with their safety factors. N, N·mm, rad."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from parts.design import Floats
+
+FIRST_HALF = "winding, first half"
+SECOND_HALF = "winding, second half"
+HOLD = "hold"
+CASES = (FIRST_HALF, SECOND_HALF, HOLD)
+
+
+@dataclass(frozen=True, slots=True)
+class SiteHistory:
+    """The load at one site over crank angle: force (3, n) and moment (3, n) ON the part, in ``frame``.
+
+    ``demand`` (n) ranks the crank angles: the site's worst is where it is greatest.
+    """
+
+    part: str
+    site: str
+    frame: str
+    force: Floats
+    moment: Floats
+    demand: Floats
+
+
+@dataclass(frozen=True, slots=True)
+class LoadRow:
+    part: str
+    site: str
+    case: str
+    crank_angle: float
+    frame: str
+    force: tuple[float, float, float]
+    moment: tuple[float, float, float]
+
+    @property
+    def magnitude(self) -> float:
+        return float(np.hypot(np.hypot(self.force[0], self.force[1]), self.force[2]))
+
+
+@dataclass(frozen=True, slots=True)
+class Check:
+    """One capacity against one demand; ``unit`` is theirs. ``crank_angle`` is None where it plays no part."""
+
+    part: str
+    site: str
+    check: str
+    case: str
+    crank_angle: float | None
+    demand: float
+    capacity: float
+    unit: str
+    target: float
+    method: str
+    source: str
+    note: str = ""
+
+    @property
+    def safety_factor(self) -> float | None:
+        """Nominal capacity over demand; None where there is no demand."""
+        return self.capacity / self.demand if self.demand > 0.0 else None
+
+    @property
+    def holds(self) -> bool:
+        """Whether the factor reaches its target, to a rounding's width."""
+        factor = self.safety_factor
+        return factor is None or factor >= self.target * (1.0 - 1e-9)
+
+    @property
+    def margin(self) -> float:
+        """Factor over target: below 1 it falls short; infinite without demand."""
+        factor = self.safety_factor
+        return float("inf") if factor is None else factor / self.target

@@ -1,0 +1,64 @@
+"""The chain end: the block between the chain pin and the chain, alone with the chain in the chain's plane."""
+
+from __future__ import annotations
+
+from parts.design import Design
+from parts.making import plate_stock
+from parts.outline import Arc, Hole, Line, Part, Placement, Plate, Slot
+from parts.sizes import ChainEndSizes, Sizes
+from parts.stack import Stack
+
+KEY = "chain_end"
+COLOR = (0.48, 0.44, 0.62)
+
+
+def slots(end: ChainEndSizes) -> tuple[Slot, ...]:
+    """Slots for the chain's plates, open at the chain side; a roller chain's tongue is relieved on both sides."""
+    tip = end.length + end.height / 2
+    begin = tip - (end.slot_depth or end.height)
+    ranges = [(max(low, 0.0), high) for low, high in end.slots if high > 0]
+    if not ranges and 0 < end.tongue_width < end.width:
+        ranges = [(end.tongue_width / 2, end.width / 2)]
+    return tuple(Slot(f"plate_slot_{i}", begin, low, high) for i, (low, high) in enumerate(ranges, 1))
+
+
+def outline(sizes: Sizes) -> Plate:
+    """The block: origin at the chain pin, x along the chain towards the sheave."""
+    end, half = sizes.chain_end, sizes.chain_end.height / 2
+    edge = (
+        Line((0.0, -half), (end.length, -half), "lower_flank"),
+        Arc((end.length, -half), (end.length, half), (end.length, 0.0), True, "chain_side_arc"),
+        Line((end.length, half), (0.0, half), "upper_flank"),
+        Arc((0.0, half), (0.0, -half), (0.0, 0.0), True, "pin_side_arc"),
+    )
+    holes = (
+        Hole(
+            "chain_pin_eye",
+            (0.0, 0.0),
+            sizes.chain_pin.middle_diameter,
+            "H8",
+            "bore, running fit on the chain pin",
+        ),
+        Hole("chain_hole", (end.length, 0.0), end.pin_diameter, "H8", "bore, for the chain's own pin"),
+    )
+    return Plate(edge, holes, end.width, slots=slots(end))
+
+
+def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
+    end, body = sizes.chain_end, outline(sizes)
+    return [
+        Part(
+            key=KEY,
+            title="Chain end",
+            hand="",
+            away=-1,
+            body=body,
+            frame="chain end",
+            material=end.material.name,
+            density=end.material.density,
+            stock=plate_stock(end.width),
+            process="cut, bore, ream" + (", mill the slots" if body.slots else ""),
+            placements=(Placement("chain_end", (0.0, 0.0, end.width / 2)),),
+            color=COLOR,
+        )
+    ]

@@ -1,0 +1,212 @@
+"""The design as it was written: typed, in mm, N, MPa, rad, kg, s. ``None`` is a size left to proportion."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import Literal
+
+import numpy as np
+from numpy.typing import NDArray
+
+Floats = NDArray[np.float64]
+
+
+@dataclass(frozen=True, slots=True)
+class Assumed:
+    """A value that the design file left out. ``quantity`` tells how to show it ("length", "force", "text", …)."""
+
+    key: str
+    value: float | str
+    quantity: str
+    why: str
+
+
+@dataclass(frozen=True, slots=True)
+class Identity:
+    title: str
+    number: str
+    revision: str
+    units: Literal["metric", "us"]
+
+
+@dataclass(frozen=True, slots=True)
+class Mechanism:
+    stack: Literal["twin", "single"]
+    rotation: Literal["ccw", "cw"]
+    crank_radius: float
+    link_length: float
+    seat_angle: float
+    stop_reach: float
+    hold_margin: float
+
+
+@dataclass(frozen=True, slots=True)
+class Sheave:
+    center: tuple[float, float]
+    pitch_radius: float
+    wrap: Literal["left", "right"]
+    exit_angle: float | None  # None: half a wrap, worked out with the start direction
+    efficiency: float
+
+
+@dataclass(frozen=True, slots=True)
+class Spring:
+    """Either ``table`` (two rows: draw, force; straight lines between points) or ``preload`` and ``rate``."""
+
+    preload: float
+    rate: float
+    table: Floats | None  # shape (2, n)
+    most_draw: float | None
+    table_file: str | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Chain:
+    """One chain, listed or of one's own; widths are along the pins, strength is of the whole chain (all strands)."""
+
+    designation: str
+    kind: Literal["leaf", "roller"]
+    strands: int
+    pitch: float
+    width_over_pins: float
+    plate_height: float
+    pin_diameter: float
+    min_tensile_strength: float
+    tongue_width: float  # room between the plates for the chain end: inner link width, or one slot of a leaf chain
+    plate_thickness: float
+    lacing: tuple[int, int]  # leaf chain: plates per pitch; roller chain (2, 2)
+    mass_per_metre: float | None
+    slack: float
+    source: str
+    confirmed: bool
+    strand_pitch: float = 0.0  # roller chain of several strands: from one to the next
+
+
+@dataclass(frozen=True, slots=True)
+class Material:
+    """``yields`` and ``ultimates``: steps of (largest thickness or diameter in mm, MPa)."""
+
+    name: str
+    kind: str
+    youngs_modulus: float
+    poissons_ratio: float
+    density: float  # kg/m³
+    yields: tuple[tuple[float, float], ...]
+    ultimates: tuple[tuple[float, float], ...]
+    source: str
+    confirmed: bool
+
+    def yield_strength(self, size: float) -> float:
+        """Yield strength in MPa at a thickness or diameter in mm; the last step serves beyond the table."""
+        return next((s for limit, s in self.yields if size <= limit), self.yields[-1][1])
+
+    def ultimate_strength(self, size: float) -> float:
+        """Ultimate strength in MPa at a thickness or diameter in mm; the last step serves beyond the table."""
+        return next((s for limit, s in self.ultimates if size <= limit), self.ultimates[-1][1])
+
+    def covers(self, size: float) -> bool:
+        return size <= self.yields[-1][0]
+
+
+@dataclass(frozen=True, slots=True)
+class DiscWish:
+    outer_diameter: float | None = None
+    thickness: float | None = None
+    bore: float | None = None
+    bolt_circle: float | None = None
+    bolt_count: int | None = None
+    bolt_hole: float | None = None
+    bolt_phase: float | None = None
+    material: Material | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class LinkWish:
+    width: float | None = None
+    thickness: float | None = None
+    material: Material | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class StopWish:
+    style: Literal["post", "block"] | None = None
+    diameter: float | None = None  # post
+    length: float | None = None  # block, along the link
+    width: float | None = None  # block, across the link
+    height: float | None = None  # both, out of the disc's face
+    material: Material | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class PinWish:
+    diameter: float | None = None
+    material: Material | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class ChainEndWish:
+    width: float | None = None
+    pin_diameter: float | None = None  # of the pin that joins it to the chain
+    material: Material | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Friction:
+    bearing: float
+    crank_pin: float
+    chain_pin: float
+    bearing_radius: float | None
+
+
+@dataclass(frozen=True, slots=True)
+class Targets:
+    shock_factor: float
+    load_share: float
+    chain: float
+    ultimate: float
+    yield_: float
+
+
+@dataclass(frozen=True, slots=True)
+class Enclosure:
+    outline: Floats | None  # (n, 2)
+    above: float | None
+    below: float | None
+    behind: float | None
+    ahead: float | None
+    obstacles: tuple[Floats, ...]  # each (n, 2)
+
+
+@dataclass(frozen=True, slots=True)
+class Moving:
+    mass: float
+    payload_mass: float
+    payload_leaves_at: float | None
+    bumper_stiffness: float | None
+    bumper_travel: float | None
+    gravity: float | None  # mm/s² along the chain at the spring
+    disc_speed: float | None  # rad/s
+    stopped_elsewhere: bool = False  # something else stops the mass, so the chain need not
+
+
+@dataclass(frozen=True, slots=True)
+class Design:
+    identity: Identity
+    mechanism: Mechanism
+    sheave: Sheave
+    spring: Spring
+    chain: Chain
+    disc: DiscWish
+    link: LinkWish
+    stop: StopWish
+    crank_pin: PinWish
+    chain_pin: PinWish
+    chain_end: ChainEndWish
+    plate_gap: float | None
+    friction: Friction
+    targets: Targets
+    enclosure: Enclosure | None
+    moving: Moving | None
+    digest: str  # SHA-256 of the values that were read, spring table included
+    assumed: tuple[Assumed, ...] = field(default=())
+    own_materials: tuple[Material, ...] = field(default=())

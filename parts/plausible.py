@@ -1,0 +1,223 @@
+"""What the values of a design must be to one another; the bounds of each by itself are in ``parts.schema``.
+
+Each function takes what could be read (None for the rest) and returns what is wrong. A rule whose values are not all
+there says nothing: that they are missing is said once, by :func:`missing_keys`.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator, Mapping
+
+from parts.polygons import covers, polygon_fault
+from parts.problems import Problem, key_of, written
+from parts.schema import (
+    ChainTable,
+    EnclosureTable,
+    MaterialTable,
+    MechanismTable,
+    MovingTable,
+    SheaveTable,
+    SpringTable,
+    StopTable,
+)
+
+NEEDED: Mapping[str, tuple[str, ...]] = {
+    "mechanism": ("crank_radius", "link_length"),
+    "sheave": ("center",),
+    "spring": (),
+    "chain": (),
+}
+NEEDED_OF_A_MATERIAL = ("yield", "ultimate", "youngs_modulus", "density", "source")
+_BLOCK, _POST = ("length", "width"), ("diameter",)
+_SMALLER = (
+    ("pin_diameter", "pitch"),
+    ("pin_diameter", "plate_height"),
+    ("plate_thickness", "width_over_pins"),
+    ("inner_width", "width_over_pins"),
+    ("inner_link_width", "width_over_pins"),
+)
+OWN_CHAIN = ("min_tensile_strength", "pitch", "width_over_pins", "plate_height", "pin_diameter")
+
+
+def missing_keys(path: tuple[str, ...], raw: object, needed: tuple[str, ...]) -> Iterator[Problem]:
+    """A problem for each needed key that a table does not have; one for the whole table where it is not there."""
+    if raw is None:
+        wants = f" with {' and '.join(needed)}" if needed else ""
+        yield Problem(key_of(path), None, "nothing", f"a table [{key_of(path)}]{wants}", "missing")
+    elif isinstance(raw, dict):
+        for key in needed:
+            if key not in raw:
+                yield Problem(key_of((*path, key)), None, "nothing", f"{key} = …", "missing")
+
+
+def mechanism_problems(mechanism: MechanismTable) -> Iterator[Problem]:
+    """The link longer than the crank radius, the stop's contact between the two pins."""
+    r, length, reach = mechanism.crank_radius, mechanism.link_length, mechanism.stop_reach
+    if r is not None and length is not None and length <= r:
+        yield Problem(
+            "mechanism.link_length",
+            None,
+            _mm(length),
+            f"more than crank_radius, {_mm(r)}",
+            "the link must be longer than the crank radius",
+        )
+    if reach is not None and length is not None and reach >= length:
+        yield Problem(
+            "mechanism.stop_reach",
+            None,
+            _mm(reach),
+            f"less than link_length, {_mm(length)}",
+            "the stop must meet the link between its two pins",
+        )
+
+
+def sheave_problems(mechanism: MechanismTable, sheave: SheaveTable, pitch_radius: float | None) -> Iterator[Problem]:
+    """The sheave clear of the disc axis and out of the chain pin's reach, at every pose of crank and link."""
+    if sheave.center is None or pitch_radius is None:
+        return
+    distance = math.hypot(*sheave.center)
+    if distance <= pitch_radius:
+        yield Problem(
+            "sheave.center",
+            None,
+            f"{_mm(distance)} from the disc axis",
+            f"more than pitch_radius, {_mm(pitch_radius)}",
+            "the sheave lies over the disc axis",
+        )
+    elif mechanism.crank_radius is not None and mechanism.link_length is not None:
+        reach = mechanism.crank_radius + mechanism.link_length
+        if distance - pitch_radius <= reach:
+            yield Problem(
+                "sheave.center",
+                None,
+                f"{_mm(distance)} from the disc axis, rim at {_mm(distance - pitch_radius)}",
+                f"a rim more than crank_radius + link_length, {_mm(reach)}, from the disc axis",
+                "the chain pin can reach the sheave",
+            )
+
+
+def spring_problems(spring: SpringTable, raw: Mapping[str, object]) -> Iterator[Problem]:
+    """Either a table or preload and rate, and a force in any case."""
+    if "table" in raw:
+        for key in ("preload", "rate"):
+            if key in raw:
+                yield Problem(
+                    f"spring.{key}",
+                    None,
+                    written(raw[key]),
+                    f"table, or preload and rate; leave {key} out",
+                    "the spring's table gives this already",
+                )
+    elif "rate" not in raw:
+        yield Problem("spring.rate", None, "nothing", "rate (0 for a constant force), or table", "missing")
+    elif spring.rate == 0 and (spring.preload == 0 or "preload" not in raw):
+        yield Problem("spring.rate", None, "no preload and no rate", "one of them above 0", "this spring never pulls")
+
+
+def chain_problems(chain: ChainTable, raw: Mapping[str, object], row: Mapping[str, object] | None) -> Iterator[Problem]:
+    """A listed chain, or all of what must be known of one's own; and sizes that can be those of one chain.
+
+    ``row`` is the listed one, whose values stand where the design gives none.
+    """
+    if "designation" not in raw:
+        absent = [key for key in OWN_CHAIN if key not in raw]
+        if len(absent) == len(OWN_CHAIN):
+            yield Problem("chain.designation", None, "nothing", f"a listed chain, or {', '.join(OWN_CHAIN)}", "missing")
+        else:
+            for key in absent:
+                yield Problem(
+                    f"chain.{key}", None, "nothing", f"{key} = …, or the designation of a listed chain", "missing"
+                )
+    for small, large in _SMALLER:
+        if small not in raw and large not in raw:
+            continue
+        size, bound = (getattr(chain, key) if key in raw else (row or {}).get(key) for key in (small, large))
+        if not isinstance(size, (int, float)) or not isinstance(bound, (int, float)) or size < bound:
+            continue
+        if small in raw:
+            found, accepted = _mm(size), f"less than {large}, {_mm(bound)}"
+        else:
+            found, accepted = _mm(bound), f"more than {small}, {_mm(size)}"
+        key = small if small in raw else large
+        yield Problem(f"chain.{key}", None, found, accepted, "no chain can be like that")
+
+
+def stop_problems(stop: StopTable, raw: Mapping[str, object]) -> Iterator[Problem]:
+    """Only the sizes that the stop's style has."""
+    if stop.style is None and "style" in raw:
+        return
+    style = stop.style or ("post" if "diameter" in raw or not any(key in raw for key in _BLOCK) else "block")
+    foreign, other = (_BLOCK, "block") if style == "post" else (_POST, "post")
+    for key in foreign:
+        if key in raw:
+            own = _POST if style == "post" else _BLOCK
+            yield Problem(
+                f"stop.{key}",
+                None,
+                written(raw[key]),
+                f'{", ".join((*own, "height"))}; or style = "{other}"',
+                f"a {style} has no {key}",
+            )
+
+
+def enclosure_problems(enclosure: EnclosureTable, raw: Mapping[str, object]) -> Iterator[Problem]:
+    """An outline or distances, of polygons that do not cross themselves, and no obstacle on the disc axis."""
+    distances = [key for key in ("above", "below", "behind", "ahead") if key in raw]
+    if "outline" in raw:
+        for key in distances:
+            yield Problem(
+                f"enclosure.{key}",
+                None,
+                written(raw[key]),
+                "outline, or distances; not both",
+                "the enclosure's outline gives this already",
+            )
+    elif not distances and "obstacles" not in raw:
+        yield Problem("enclosure", None, "an empty table", "outline, or above, below, behind, ahead; obstacles", "")
+    if enclosure.outline is not None and (fault := polygon_fault(enclosure.outline)):
+        yield Problem("enclosure.outline", None, fault, _POLYGON)
+    for place, corners in enumerate(enclosure.obstacles or []):
+        key = key_of(("enclosure", "obstacles", place))
+        if fault := polygon_fault(corners):
+            yield Problem(key, None, fault, _POLYGON)
+        elif covers(corners, (0.0, 0.0)):
+            yield Problem(key, None, "an obstacle over the disc axis", "obstacles clear of the disc axis, [0, 0]")
+
+
+_POLYGON = "three or more corners [x, y] in order round the polygon, whose sides do not meet but at the corners"
+
+
+def moving_problems(moving: MovingTable, raw: Mapping[str, object]) -> Iterator[Problem]:
+    """The masses that a release needs, and both numbers of a bumper or none."""
+    if "mass" not in raw and not moving.stopped_elsewhere:
+        yield Problem(
+            "moving.mass",
+            None,
+            "nothing",
+            "mass = …, or stopped_elsewhere = true where the chain need not stop it",
+            "missing",
+        )
+    if "payload_leaves_at" in raw and "payload_mass" not in raw:
+        yield Problem(
+            "moving.payload_mass", None, "nothing", "payload_mass, since payload_leaves_at is given", "missing"
+        )
+    bumper = ("bumper_stiffness", "bumper_travel")
+    for key, other in (bumper, bumper[::-1]):
+        if key in raw and other not in raw:
+            yield Problem(f"moving.{other}", None, "nothing", f"{other}, since {key} is given", "missing")
+
+
+def material_problems(path: tuple[str, ...], material: MaterialTable) -> Iterator[Problem]:
+    if material.yield_ is not None and material.ultimate is not None and material.yield_ > material.ultimate:
+        yield Problem(
+            key_of((*path, "yield")),
+            None,
+            f"{material.yield_:.6g} MPa",
+            f"no more than ultimate, {material.ultimate:.6g} MPa",
+            "a yield strength above the ultimate strength",
+        )
+
+
+def _mm(value: float) -> str:
+    return f"{value:.6g} mm"

@@ -1,0 +1,99 @@
+"""What is wrong with a design file: one record a problem, all of them carried by one exception."""
+
+from __future__ import annotations
+
+import json
+import re
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+from pathlib import Path
+
+_BARE_KEY = re.compile(r"[A-Za-z0-9_-]+")
+_LONGEST_SHOWN = 60
+
+
+@dataclass(frozen=True, slots=True)
+class Problem:
+    """One thing to put right.
+
+    ``key`` is the key's path (``mechanism.link_length``, ``sheave.center[0]``), empty where the whole file is meant;
+    ``line`` counts from 1, None where nothing in the file can be pointed at; ``text`` says in words why the value
+    cannot be used, where found and accepted do not already say it; ``file`` is set where the line is not one of the
+    design file's (a spring table).
+    """
+
+    key: str
+    line: int | None
+    found: str
+    accepted: str
+    text: str = ""
+    file: str = ""
+
+    @property
+    def sentence(self) -> str:
+        """Key and trouble in one line, without the place."""
+        parts = [self.text] if self.text else []
+        parts += [f"found {self.found}"] if self.found else []
+        parts += [f"accepted: {self.accepted}"] if self.accepted else []
+        said = "; ".join(parts)
+        return f"{self.key}: {said}" if self.key else said
+
+
+class DesignRefused(Exception):
+    """The design cannot be used: the file's name and every problem in it, in the order of the lines."""
+
+    def __init__(self, file: str | Path, problems: Iterable[Problem]) -> None:
+        self.file = str(file)
+        self.problems = in_order(problems)
+        super().__init__(self.file, self.problems)
+
+    def __str__(self) -> str:
+        return "\n".join(self._line(problem) for problem in self.problems)
+
+    def _line(self, problem: Problem) -> str:
+        place = problem.file or self.file
+        if problem.line is not None:
+            place += f":{problem.line}"
+        return f"{place}: {problem.sentence}"
+
+
+class Refused(ValueError):
+    """One value that cannot be used, before it is known where in the file it stands."""
+
+    def __init__(self, found: str, accepted: str, text: str = "") -> None:
+        self.found, self.accepted, self.text = found, accepted, text
+        super().__init__(f"found {found}; accepted: {accepted}")
+
+
+def in_order(problems: Iterable[Problem]) -> tuple[Problem, ...]:
+    """Sorted by line, what has no line last; problems of another file after those of the design."""
+    return tuple(sorted(problems, key=lambda p: (p.file, p.line is None, p.line or 0)))
+
+
+def key_of(path: Sequence[str | int]) -> str:
+    """The text of a key's path: names joined by points, places in a list in brackets, odd names in quotes."""
+    text = ""
+    for step in path:
+        if isinstance(step, int):
+            text += f"[{step}]"
+        else:
+            name = step if _BARE_KEY.fullmatch(step) else json.dumps(step, ensure_ascii=False)
+            text += f".{name}" if text else name
+    return text
+
+
+def written(value: object) -> str:
+    """A value as it stands in the file, for a message: quoted if it is text, cut short if it is long."""
+    if isinstance(value, bool):
+        text = "true" if value else "false"
+    elif isinstance(value, int):
+        text = str(value) if abs(value) < 10**_LONGEST_SHOWN else "a number of very many digits"
+    elif isinstance(value, str):
+        text = json.dumps(value, ensure_ascii=not value.isprintable())
+    elif isinstance(value, (list, tuple)):
+        text = "[" + ", ".join(written(item) for item in value[:5]) + (", …]" if len(value) > 5 else "]")
+    elif isinstance(value, dict):
+        text = f"a table of {', '.join(map(str, list(value)[:5]))}" if value else "an empty table"
+    else:
+        text = str(value)
+    return text if len(text) <= _LONGEST_SHOWN else text[: _LONGEST_SHOWN - 1] + "…"

@@ -1,0 +1,263 @@
+"""The design file read and typed: every problem at once, every default named."""
+
+from __future__ import annotations
+
+import hashlib
+import json
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, field, replace
+from pathlib import Path
+from typing import Any, TypeVar
+
+from parts import plausible, records
+from parts.catalogue import Catalogue
+from parts.chosen_chain import build_chain, find_row
+from parts.design import Chain, ChainEndWish, Design, DiscWish, LinkWish, Material, PinWish
+from parts.problems import DesignRefused, Problem, in_order, key_of, written
+from parts.schema import (
+    NOT_YET,
+    TABLES,
+    ChainEndTable,
+    ChainTable,
+    ClearancesTable,
+    DesignTable,
+    DiscTable,
+    EnclosureTable,
+    FrictionTable,
+    LinkTable,
+    MaterialTable,
+    MechanismTable,
+    MovingTable,
+    PinTable,
+    SheaveTable,
+    SpringTable,
+    StopTable,
+    Table,
+    TargetsTable,
+    nearest,
+    unknown_key,
+    validate,
+)
+from parts.spring_table import SpringFile, read_spring_csv, spring_table_problems
+from parts.toml_source import read_source
+
+_KERNEL = ("mechanism", "sheave", "spring", "chain")  # the mechanics need all of these
+_UNREADABLE_CURVE = [(0.0, 0.0), (1.0, 1.0)]  # stands for a curve that has been refused, so that nothing asks for one
+T = TypeVar("T", bound=Table)
+
+
+@dataclass(frozen=True)
+class Reading:
+    """What a design file gave.
+
+    ``design`` is there as soon as mechanism, sheave, spring and chain can be used, so that whoever knows the mechanics
+    can add what is wrong with them; nothing is to be built from it while there are ``problems``. ``locate`` gives the
+    line of a key in the file.
+    """
+
+    design: Design | None
+    problems: tuple[Problem, ...]
+    locate: Callable[[str], int | None]
+
+
+def read_design(path: Path, catalogue: Catalogue) -> Reading:
+    """Read a design file. Never raises for what is in the file, or for its absence: that is among the problems."""
+    try:
+        source = read_source(path)
+    except DesignRefused as refusal:
+        return Reading(None, refusal.problems, lambda key: None)
+    draft = _Draft(source.values, path.parent, catalogue)
+    design = draft.design()
+    curve = draft.spring_file
+    problems = draft.problems if curve is None else [curve.placed(problem) for problem in draft.problems]
+    located = (
+        problem if problem.file or not problem.key else replace(problem, line=source.line(problem.key))
+        for problem in problems
+    )
+    return Reading(design, in_order(located), source.line)
+
+
+@dataclass
+class _Draft:
+    """One reading under way: the file's tables, and what has been found so far."""
+
+    raw: dict[str, Any]
+    folder: Path
+    catalogue: Catalogue
+    problems: list[Problem] = field(default_factory=list)
+    defaults: records.Defaults = field(default_factory=records.Defaults)
+    tables: dict[str, Table] = field(default_factory=dict)
+    own_materials: dict[str, tuple[MaterialTable, Material]] = field(default_factory=dict)
+    spring_file: SpringFile | None = None
+    chain_row: Mapping[str, object] | None = None
+
+    def design(self) -> Design | None:
+        if self._is_newer():
+            return None
+        self._check_the_tables_there_are()
+        self._load_spring_file()
+        for name, model in TABLES.items():
+            self.tables[name], found = validate(model, (name,), self.raw.get(name, {}))
+            self.problems += found
+        self._load_own_materials()
+        materials = {name: self._material(name) for name in TABLES if hasattr(self.tables[name], "material")}
+        chain = self._chain()
+        pitch_radius = self._pitch_radius(chain)
+        self._check_together(pitch_radius)
+        if chain is None or pitch_radius is None or self._kernel_is_broken():
+            return None
+        identity = records.identity(self._table(DesignTable, "design"), self.defaults)
+        design = Design(
+            identity=identity,
+            mechanism=records.mechanism(self._table(MechanismTable, "mechanism"), self.defaults),
+            sheave=records.sheave(self._table(SheaveTable, "sheave"), pitch_radius, self.defaults),
+            spring=records.spring(
+                self._table(SpringTable, "spring"), self.spring_file.name if self.spring_file else None, self.defaults
+            ),
+            chain=chain,
+            disc=DiscWish(**_sizes(self._table(DiscTable, "disc")), material=materials["disc"]),
+            link=LinkWish(**_sizes(self._table(LinkTable, "link")), material=materials["link"]),
+            stop=records.stop(self._table(StopTable, "stop"), materials["stop"]),
+            crank_pin=PinWish(**_sizes(self._table(PinTable, "crank_pin")), material=materials["crank_pin"]),
+            chain_pin=PinWish(**_sizes(self._table(PinTable, "chain_pin")), material=materials["chain_pin"]),
+            chain_end=ChainEndWish(**_sizes(self._table(ChainEndTable, "chain_end")), material=materials["chain_end"]),
+            plate_gap=self._table(ClearancesTable, "clearances").plate_gap,
+            friction=records.friction(self._table(FrictionTable, "friction"), self.defaults),
+            targets=records.targets(self._table(TargetsTable, "targets"), self.defaults),
+            enclosure=(
+                records.enclosure(self._table(EnclosureTable, "enclosure")) if "enclosure" in self.raw else None
+            ),
+            moving=records.moving(self._table(MovingTable, "moving"), self.defaults) if "moving" in self.raw else None,
+            digest=self._digest(),
+            own_materials=tuple(material for _, material in self.own_materials.values()),
+        )
+        places = [*TABLES, "materials"]
+        assumed = sorted(self.defaults.assumed, key=lambda a: places.index(a.key.partition(".")[0]))
+        return replace(design, assumed=tuple(assumed))
+
+    def _table(self, model: type[T], name: str) -> T:
+        found = self.tables[name]
+        assert isinstance(found, model)
+        return found
+
+    def _raw_table(self, name: str) -> Mapping[str, object]:
+        found = self.raw.get(name)
+        return found if isinstance(found, dict) else {}
+
+    def _is_newer(self) -> bool:
+        """A file of a newer format is refused by its number alone: the rest of it may well be right in that format."""
+        given = self._raw_table("design").get("format", 1)
+        found = validate(DesignTable, ("design",), {"format": given})[1]
+        newer = [problem for problem in found if problem.text]
+        self.problems += newer
+        return bool(newer)
+
+    def _check_the_tables_there_are(self) -> None:
+        known = [*TABLES, "materials"]
+        for name in self.raw:
+            if name in NOT_YET:
+                why = f"this version does not evaluate [{name}] yet"
+                self.problems.append(Problem(name, None, f"[{name}]", "a design without it", why))
+            elif name not in known:
+                self.problems.append(unknown_key((name,), known))
+        for name, needed in plausible.NEEDED.items():
+            self.problems += plausible.missing_keys((name,), self.raw.get(name), needed)
+
+    def _load_spring_file(self) -> None:
+        """The points of a CSV file in the place of its name, so that both kinds of table go the same way on."""
+        spring = self._raw_table("spring")
+        name = spring.get("table")
+        if isinstance(name, str):
+            self.spring_file = read_spring_csv(self.folder, name)
+            self.problems += self.spring_file.problems
+            points = _UNREADABLE_CURVE if self.spring_file.problems else self.spring_file.points
+            curve = [list(point) for point in points]
+            self.raw = self.raw | {"spring": {**spring, "table": curve}}
+
+    def _check_together(self, pitch_radius: float | None) -> None:
+        mechanism, spring = self._table(MechanismTable, "mechanism"), self._table(SpringTable, "spring")
+        self.problems += plausible.mechanism_problems(mechanism)
+        self.problems += plausible.sheave_problems(mechanism, self._table(SheaveTable, "sheave"), pitch_radius)
+        if spring.table is not None:
+            self.problems += spring_table_problems(spring.table)
+        self.problems += plausible.stop_problems(self._table(StopTable, "stop"), self._raw_table("stop"))
+        if isinstance(raw := self.raw.get("spring"), dict):
+            self.problems += plausible.spring_problems(spring, raw)
+        if isinstance(raw := self.raw.get("chain"), dict):
+            self.problems += plausible.chain_problems(self._table(ChainTable, "chain"), raw, self.chain_row)
+        if isinstance(raw := self.raw.get("enclosure"), dict):
+            self.problems += plausible.enclosure_problems(self._table(EnclosureTable, "enclosure"), raw)
+        if isinstance(raw := self.raw.get("moving"), dict):
+            self.problems += plausible.moving_problems(self._table(MovingTable, "moving"), raw)
+
+    def _kernel_is_broken(self) -> bool:
+        return any(
+            problem.key.partition(".")[0] in _KERNEL and not problem.text.startswith("unknown")
+            for problem in self.problems
+        )
+
+    def _digest(self) -> str:
+        """SHA-256 of the values that were read, in the units used inside; layout and comments do not touch it."""
+        values: dict[str, object] = {
+            name: found
+            for name, table in self.tables.items()
+            if (found := table.model_dump(by_alias=True, exclude_none=True, exclude={"format"}))
+        }
+        values["materials"] = {
+            name: table.model_dump(by_alias=True, exclude_none=True) for name, (table, _) in self.own_materials.items()
+        }
+        text = json.dumps(values, sort_keys=True, separators=(",", ":"), allow_nan=False)
+        return hashlib.sha256(text.encode()).hexdigest()
+
+    def _chain(self) -> Chain | None:
+        given = self._table(ChainTable, "chain")
+        if given.designation is not None:
+            found = find_row(given.designation, given.strands, self.catalogue)
+            if isinstance(found, Problem):
+                self.problems.append(found)
+                return None
+            self.chain_row = found
+        elif any(getattr(given, key) is None for key in plausible.OWN_CHAIN):
+            return None  # said by chain_problems
+        chain, assumed = build_chain(given, self.chain_row)
+        self.defaults.assumed += assumed
+        return chain
+
+    def _pitch_radius(self, chain: Chain | None) -> float | None:
+        given = self._table(SheaveTable, "sheave").pitch_radius
+        if given is not None or "pitch_radius" in self._raw_table("sheave"):
+            return given
+        return None if chain is None else 2.5 * chain.pitch
+
+    def _load_own_materials(self) -> None:
+        rows = self.raw.get("materials", {})
+        if not isinstance(rows, dict):
+            self.problems.append(Problem("materials", None, written(rows), "tables, [materials.NAME]"))
+            return
+        for name, row in rows.items():
+            path = ("materials", name)
+            given, found = validate(MaterialTable, path, row)
+            self.problems += found
+            self.problems += plausible.missing_keys(path, row, plausible.NEEDED_OF_A_MATERIAL)
+            self.problems += plausible.material_problems(path, given)
+            raw = row if isinstance(row, dict) else {}
+            self.own_materials[name] = given, records.own_material(name, key_of(path), given, raw, self.defaults)
+
+    def _material(self, table: str) -> Material | None:
+        wanted: str | None = getattr(self.tables[table], "material", None)
+        if wanted is None:
+            return None
+        if wanted in self.own_materials:
+            return self.own_materials[wanted][1]
+        if wanted in self.catalogue.materials:
+            return self.catalogue.materials[wanted]
+        names = [*self.own_materials, *self.catalogue.materials]
+        near = nearest(wanted, names)
+        accepted = f"{near} (the nearest); " if near else ""
+        accepted += f"one of {', '.join(names)}; or a table [materials.NAME] of one's own"
+        self.problems.append(Problem(f"{table}.material", None, written(wanted), accepted, "not listed"))
+        return None
+
+
+def _sizes(table: Table) -> dict[str, Any]:
+    return {key: value for key, value in table if key != "material"}

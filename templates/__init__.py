@@ -1,0 +1,1 @@
+"""Starter designs, and the templates of the documents."""
