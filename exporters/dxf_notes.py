@@ -87,9 +87,8 @@ def hole_text(hole: Hole, thickness: float, units: Units) -> str:
     """What is done with a hole, in the order in which it is done last to first."""
     work = hole_work(hole, thickness)
     first = size(work.first_diameter, units)
-    remark = hole.note
+    remark = re.sub(r"^(ream|bore|drill|cut)\b[,;:]?\s*", "", hole.note)  # said here, by size and thickness
     if work.finish:
-        remark = re.sub(r"^(ream|bore)\b[,;:]?\s*", "", remark)
         made = "cut" if work.way == "pilot" else "drill"
         text = f"{finish_text(hole, work.finish, units)}, {made} {first} first"
     else:
@@ -162,7 +161,7 @@ def block_lines(
     falls_short: Sequence[str],
 ) -> list[str]:
     """The lines below the part: what it is, of what, how many, how the file is to be read, what falls short."""
-    hand = f", {part.hand} hand" if part.hand else ""
+    hand = f", {part.hand} hand" if part.hand and part.hand not in part.title.split() else ""
     material = ", ".join(text for text in (part.material, part.stock) if text)
     unit = "millimetres" if units == "metric" else "inches"
     mirrored = " (mirrored about x against the solid)" if part.away > 0 else ""

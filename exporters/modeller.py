@@ -3,6 +3,8 @@
 import importlib
 import re
 
+from exporters.failure import ToolFailure
+
 # Measured on a minimal Debian 12: the modeller's binaries link to these three and do not bring them along.
 # README and .ci/run give the same list; a test compares.
 DEBIAN_PACKAGES = ("libgl1", "libx11-6", "libexpat1")
@@ -12,7 +14,7 @@ INSTALL_ON_DEBIAN = "apt-get install -y --no-install-recommends " + " ".join(DEB
 _SHARED_LIBRARY = re.compile(r"\b(lib[\w+.-]*?\.so(?:\.\d+)*)\s*: cannot open shared object file")
 
 
-class ModellerMissing(RuntimeError):
+class ModellerMissing(ToolFailure):
     """The solid modeller cannot be loaded. The message is one line, meant for the person at the terminal."""
 
 

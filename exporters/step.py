@@ -142,12 +142,14 @@ def _add(document: Any, tool: Any, part: Part, shape: Shape, product_name: str, 
 
 
 def _location(location: Any) -> Location:
-    from cadquery import Location, Matrix
+    from cadquery import Location
+    from OCP.gp import gp_Trsf
 
     if isinstance(location, Location):
         return location
-    rows = [[float(v) for v in row] for row in location]
-    return Location(Matrix(rows[:3]))
+    transformation = gp_Trsf()
+    transformation.SetValues(*(float(v) for row in location[:3] for v in row))
+    return Location(transformation)
 
 
 def _write(document: Any, path: Path, remarks: Sequence[str]) -> None:

@@ -15,6 +15,7 @@ from itertools import groupby
 _TOKEN = re.compile(r"'(?:[^']|'')*'|;|#\d+|[^';#\s]+")
 # Lists that are sets: their order carries no meaning.
 _SETS = ("MECHANICAL_DESIGN_GEOMETRIC_PRESENTATION_REPRESENTATION(", "PRESENTATION_LAYER_ASSIGNMENT(")
+_QUOTE = "\\X2\\0027\\X0\\"
 _OCCURRENCE = "NEXT_ASSEMBLY_USAGE_OCCURRENCE("
 _SCHEMA = "AUTOMOTIVE_DESIGN { 1 0 10303 214 1 1 1 1 }"  # AP214
 
@@ -44,8 +45,16 @@ def entities(text: str) -> dict[str, Entity]:
             found[pieces[0]] = _entity(pieces)
             pieces = []
         else:
-            pieces.append(token if token[0] != "'" else token.replace("\n", "").replace("\r", ""))
+            pieces.append(token if token[0] != "'" else _one_line(token))
     return found
+
+
+def _one_line(quoted: str) -> str:
+    """A quoted value without the writer's line breaks, and with its inner quotes in hexadecimal.
+
+    The standard doubles them, but a widespread reader trips over a doubled quote before a bracket.
+    """
+    return "'" + quoted[1:-1].replace("\n", "").replace("\r", "").replace("''", _QUOTE) + "'"
 
 
 def _entity(pieces: list[str]) -> Entity:
@@ -70,8 +79,8 @@ def _decoded(text: str) -> str:
 
 
 def encoded(text: str) -> str:
-    """A text value as ISO 10303-21 writes it: quotes and backslashes doubled, letters outside ASCII in hexadecimal."""
-    return _ascii(text.replace("\\", "\\\\").replace("'", "''"))
+    """A text value as ISO 10303-21 writes it: backslashes doubled, quotes and letters outside ASCII in hexadecimal."""
+    return _ascii(text.replace("\\", "\\\\").replace("'", _QUOTE))
 
 
 def _ascii(text: str) -> str:

@@ -22,7 +22,9 @@ def cautions(design: Design, figures: Cycle, checks: tuple[Check, ...]) -> tuple
         "The release is NOT covered: what swing and snatch do to the parts is not in these loads and factors.",
     ]
     if design.moving is not None:
-        rows.append("[moving] was read, but the study of the release is not part of this version: nothing was made of it.")
+        rows.append(
+            "[moving] was read, but the study of the release is not part of this version: nothing was made of it."
+        )
     if design.enclosure is not None:
         rows.append("[enclosure] was read, but its study is not part of this version: no clearance to it was checked.")
     if float(at.null) < float(at.release):
@@ -36,7 +38,9 @@ def cautions(design: Design, figures: Cycle, checks: tuple[Check, ...]) -> tuple
             "there with the spring drawn."
         )
     if not design.chain.confirmed:
-        rows.append(f"The ratings of chain {design.chain.designation} are from memory: confirm them with the maker's certificate.")
+        rows.append(
+            f"The ratings of chain {design.chain.designation} are from memory: confirm them with the maker's certificate."
+        )
     memory = sorted({row.source for row in checks if "from memory" in row.source})
     if memory:
         rows.append("Values from memory stand behind some factors; confirm them with certificates before building.")

@@ -53,8 +53,8 @@ def events(machine: Linkage) -> Events:
         there = seated_line(machine, t)
         return np.stack([there.arm[0], lift(machine, there, t)[1]])
 
-    brackets = zip(first_down_crossing(x, line.arm), first_down_crossing(x, hold_on), strict=True)
-    null, release = bracketed_root(both, *(np.stack(pair) for pair in brackets))
+    lows, highs = zip(first_down_crossing(x, line.arm), first_down_crossing(x, hold_on), strict=True)
+    null, release = bracketed_root(both, np.stack(lows), np.stack(highs))
     # a link that is not pressed on its stop just behind the catch was never caught
     release = np.where(hold_on[..., 0] > 0.0, release, np.nan)
     return Events(catch, null, release, np.minimum(null, release) - machine.hold_margin)
@@ -122,9 +122,7 @@ def cycle(machine: Linkage) -> Cycle:
 def _cycle(machine: Linkage) -> Cycle:
     at = events(machine)
     zero = np.zeros(machine.shape)
-    coarse = np.concatenate(
-        [_span(zero, at.catch, STAGE), _span(at.catch, at.release, STAGE)[..., 1:]], axis=-1
-    )
+    coarse = np.concatenate([_span(zero, at.catch, STAGE), _span(at.catch, at.release, STAGE)[..., 1:]], axis=-1)
     rough = state(machine, coarse, at.catch)
     ends = {"start": zero, "catch": at.catch, "end": at.first_end, "release": at.release}
 
@@ -140,7 +138,7 @@ def _cycle(machine: Linkage) -> Cycle:
         np.stack([ends[end] for _, _, end, _ in _PEAKS], -1),
     )
     place, height = refined_peak(lambda x: _chosen(machine, at.catch, x), low, high)
-    lower = (height[..., 8] > height[..., 7])[..., None] + np.array(7)
+    lower = np.asarray(height[..., 8] > height[..., 7])[..., None] + np.array(7)
 
     hold = state(machine, at.hold[..., None], at.catch)
     draw_at_hold = hold.draw[..., 0]
@@ -154,7 +152,8 @@ def _cycle(machine: Linkage) -> Cycle:
         hold_torque=hold.torque[..., 0], mean_torque=energy / machine.efficiency / at.hold,
         largest_tension=height[..., 2], largest_crank_pin=height[..., 3], largest_stop=height[..., 4],
         largest_link_bending=height[..., 5], largest_tension_at=place[..., 2], largest_crank_pin_at=place[..., 3],
-        largest_stop_at=place[..., 4], largest_link_bending_at=place[..., 5], least_wrap=rough.wrap.min(-1), most_wrap=rough.wrap.max(-1),
+        largest_stop_at=place[..., 4], largest_link_bending_at=place[..., 5],
+        least_wrap=rough.wrap.min(-1), most_wrap=rough.wrap.max(-1),
     )  # fmt: skip
 
 
@@ -165,7 +164,7 @@ def _best_cells(x: Floats, f: Floats, start: Floats, end: Floats) -> tuple[Float
     inside = (x >= start) & (x <= end)
     index = np.argmax(np.where(inside, f, -np.inf), axis=-1)[..., None]
     # an interval that lies between two samples has none inside: take the cell that holds it
-    index = np.where(inside.any(-1)[..., None], index, np.argmax(x >= start, axis=-1)[..., None])
+    index = np.where(inside.any(-1, keepdims=True), index, np.argmax(x >= start, axis=-1)[..., None])
     low = np.take_along_axis(x, np.maximum(index - 1, 0), -1)
     high = np.take_along_axis(x, np.minimum(index + 1, x.shape[-1] - 1), -1)
     return np.maximum(low, start)[..., 0], np.minimum(high, end)[..., 0]
@@ -181,15 +180,14 @@ def _chosen(machine: Linkage, catch: Floats, x: Floats) -> Floats:
     """Values at x (..., k, cuts): in each of the k rows the quantity that is looked for there."""
     s = state(machine, x.reshape(*x.shape[:-2], -1), catch)
     found = {name: getattr(s, name).reshape(x.shape) for name in {row[0] for row in _PEAKS}}
-    return np.stack([factor * found[name][..., row, :] for row, (name, _, _, factor) in enumerate(_PEAKS)], axis=-2)
+    rows = [factor * found[name][..., row, :] for row, (name, _, _, factor) in enumerate(_PEAKS)]
+    return np.stack(rows, axis=-2)
 
 
 def _in_chunks(machine: Linkage, rows: int = 256) -> Cycle:
     """Many machines a few hundred at a time: what is in work stays in the processor's cache and in bounds."""
     parts = [cycle(machine.chunk(slice(i, i + rows))) for i in range(0, machine.shape[0], rows)]
-    joined = {
-        f.name: np.concatenate([getattr(p, f.name) for p in parts]) for f in fields(Cycle) if f.name != "events"
-    }
+    joined = {f.name: np.concatenate([getattr(p, f.name) for p in parts]) for f in fields(Cycle) if f.name != "events"}
     when = {f.name: np.concatenate([getattr(p.events, f.name) for p in parts]) for f in fields(Events)}
     return Cycle(events=Events(**when), **joined)
 
@@ -204,7 +202,7 @@ def trace_angles(figures: Cycle, step: float = np.radians(0.5)) -> Floats:
     )
     angles = np.sort(np.concatenate([steps, marks[(marks >= 0.0) & (marks <= end)]]))
     # two that print alike are one: the later is dropped, the release is kept
-    keep = np.diff(np.round(np.degrees(angles), 6), prepend=-1.0) > 0.0
+    keep = np.asarray(np.diff(np.round(np.degrees(angles), 6), prepend=-1.0) > 0.0)
     return np.asarray(angles[keep])
 
 

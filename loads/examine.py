@@ -14,7 +14,7 @@ from loads.checks.context import Context
 from loads.cycle import Cycle, cycle
 from loads.linkage import Linkage, State, chain_line, linkage_of, state
 from loads.members import History, history, load_rows, members, site_histories
-from loads.proportions import proportion
+from loads.proportions import SPIGOT, proportion
 from loads.records import Check, LoadRow, SiteHistory
 from loads.refusals import mechanism_problems
 from parts.clash import Findings, Sweep, sweep
@@ -97,11 +97,13 @@ def examine(path: Path) -> Examination:
 
 def with_friction(design: Design, machine: Linkage, sizes: Sizes) -> tuple[Linkage, tuple[Assumed, ...]]:
     """The machine with the friction of its joints, now that their radii are known."""
-    friction, assumed = design.friction, ()
+    friction = design.friction
+    assumed: tuple[Assumed, ...] = ()
     radius = friction.bearing_radius
     if radius is None:
-        radius = sizes.disc.bore / 2.0
-        assumed = (Assumed("friction.bearing_radius", radius, "length", "half the disc's bore: a shaft of that size"),)
+        radius = sizes.disc.bore / SPIGOT / 2.0
+        why = f"half of a shaft of which the disc's bore is {SPIGOT:g}"
+        assumed = (Assumed("friction.bearing_radius", radius, "length", why),)
     full = np.broadcast_to
     return replace(
         machine,
@@ -163,7 +165,6 @@ def sweep_poses(machine: Linkage, figures: Cycle) -> Sweep:
     by = ay + float(machine.link_length) * np.sin(end + np.pi + swing)
     m = machine.expanded()
 
-
     line = chain_line(m, bx, by)
     chain = float(machine.start_direction) + turn * line.direction
     return Sweep(
@@ -174,5 +175,3 @@ def sweep_poses(machine: Linkage, figures: Cycle) -> Sweep:
         free_length=np.concatenate([free_lengths(machine, s), line.free_length]),
         taut=np.concatenate([np.ones(len(winding), bool), np.zeros(len(swing), bool)]),
     )
-
-

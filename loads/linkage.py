@@ -10,6 +10,7 @@ Arrays: the fields of ``Linkage`` have the designs' leading axes (...); crank an
 from __future__ import annotations
 
 from dataclasses import dataclass, fields
+from typing import Any
 
 import numpy as np
 
@@ -47,12 +48,14 @@ class Linkage:
 
     def expanded(self) -> Linkage:
         """The same machines with one more trailing axis, to meet crank angles of shape (..., n)."""
-        return Linkage(*(_expanded(getattr(self, name)) for name in _FIELDS))
+        values: list[Any] = [_expanded(getattr(self, name)) for name in _FIELDS]
+        return Linkage(*values)
 
     def chunk(self, rows: slice) -> Linkage:
         """Some of many machines that lie along one leading axis."""
-        values = (getattr(self, name) for name in _FIELDS)
-        return Linkage(*(v.chunk(rows) if isinstance(v, SpringLaw) else v[rows] for v in values))
+        values: list[Any] = [getattr(self, name) for name in _FIELDS]
+        some: list[Any] = [v.chunk(rows) if isinstance(v, SpringLaw) else v[rows] for v in values]
+        return Linkage(*some)
 
 
 _FIELDS = tuple(f.name for f in fields(Linkage))

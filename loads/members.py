@@ -119,9 +119,7 @@ def _rank(force: Floats) -> Floats:
     return np.asarray(np.linalg.norm(force, axis=0))
 
 
-def site_histories(
-    past: History, stack: Stack, targets: Targets, bolt_radius: float
-) -> tuple[SiteHistory, ...]:
+def site_histories(past: History, stack: Stack, targets: Targets, bolt_radius: float) -> tuple[SiteHistory, ...]:
     """Loads at every site of every part, (3, n) each, in the part's frame."""
     s, m = past.state, past.machine
     f = members(past, stack, targets)
@@ -146,9 +144,7 @@ def site_histories(
         fm = mirrored(_turned(force, a), _turned(moment, a))
         return SiteHistory(part, site, "link", *fm, _rank(force) if demand is None else demand)
 
-    def in_machine(
-        part: str, site: str, force: Floats, moment: Floats, demand: Floats | None = None
-    ) -> SiteHistory:
+    def in_machine(part: str, site: str, force: Floats, moment: Floats, demand: Floats | None = None) -> SiteHistory:
         a = np.full_like(s.crank_angle, -float(m.start_direction) * turn)
         fm = mirrored(_turned(force, a), _turned(moment, a))
         return SiteHistory(part, site, "machine", *fm, _rank(force) if demand is None else demand)

@@ -19,7 +19,11 @@ def mechanism_problems(design: Design, figures: Cycle) -> tuple[Problem, ...]:
     for name, event in (("catch", at.catch), ("release", at.release), ("null", at.null)):
         if math.isnan(float(event)):
             text = f"the mechanism has no {name}: the chain never {_MISSING[name]}"
-            return (Problem("mechanism.seat_angle", None, beta, "a seat angle nearer to 0 deg, or a sheave farther away", text),)
+            return (
+                Problem(
+                    "mechanism.seat_angle", None, beta, "a seat angle nearer to 0 deg, or a sheave farther away", text
+                ),
+            )
     problems = []
     if float(figures.most_wrap) > MOST_WRAP or float(figures.least_wrap) < 0.0:
         wrap = f"a wrap of {math.degrees(figures.least_wrap):.1f} to {math.degrees(figures.most_wrap):.1f} deg over the turn"
@@ -29,7 +33,9 @@ def mechanism_problems(design: Design, figures: Cycle) -> tuple[Problem, ...]:
     slack, most_pull = design.chain.slack, float(figures.most_pull)
     if slack >= most_pull:
         text = "the slack is never taken up"
-        problems.append(Problem("chain.slack", None, f"{slack:g} mm", f"less than the whole pull, {most_pull:.2f} mm", text))
+        problems.append(
+            Problem("chain.slack", None, f"{slack:g} mm", f"less than the whole pull, {most_pull:.2f} mm", text)
+        )
     table = design.spring.table
     if table is not None and most_pull - slack > float(table[0, -1]) + 1e-9:
         problems.append(

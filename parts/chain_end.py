@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from parts.design import Design
-from parts.making import plate_stock
+from parts.making import plate_stock, turn_of, turned_round
 from parts.outline import Arc, Hole, Line, Part, Placement, Plate, Slot
 from parts.sizes import ChainEndSizes, Sizes
 from parts.stack import Stack
@@ -45,7 +45,7 @@ def outline(sizes: Sizes) -> Plate:
 
 
 def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
-    end, body = sizes.chain_end, outline(sizes)
+    end, body = sizes.chain_end, turned_round(outline(sizes), turn_of(design))
     return [
         Part(
             key=KEY,

@@ -49,10 +49,16 @@ def cap_screws() -> tuple[CapScrew, ...]:
         yield_strength = next(float(strength) for largest, strength in steps if size <= largest)
         rows.append(
             CapScrew(
-                str(row["size"]), size, float(row["clearance_hole"]), float(row["tapping_hole"]),
-                float(row["head_diameter"]), float(row["head_height"]), float(row["counterbore_diameter"]),
-                float(row["tensile_stress_area"]), yield_strength,
-            )  # fmt: skip
+                str(row["size"]),
+                size,
+                float(row["clearance_hole"]),
+                float(row["tapping_hole"]),
+                float(row["head_diameter"]),
+                float(row["head_height"]),
+                float(row["counterbore_diameter"]),
+                float(row["tensile_stress_area"]),
+                yield_strength,
+            )
         )
     return tuple(sorted(rows, key=lambda s: s.diameter))
 

@@ -31,7 +31,7 @@ def seat_direction(design: Design, sizes: Sizes) -> float:
 def block_holes(stop: StopSizes) -> dict[str, Point]:
     """Dowel and bolt holes of a stop block, in its own frame (x along the seated link, from the block's middle)."""
     names = ("dowel_hole_1", "dowel_hole_2", "bolt_hole_1", "bolt_hole_2")
-    return {name: (along, 0.0) for name, (along, _) in zip(names, block_hole_offsets(stop), strict=True)}
+    return {name: (along, across) for name, (along, across, _) in zip(names, block_hole_offsets(stop), strict=True)}
 
 
 def on_disc(design: Design, sizes: Sizes, point: Point) -> Point:

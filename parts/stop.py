@@ -30,7 +30,7 @@ def block(stop: StopSizes, turn: int) -> Plate:
     ``contact_face`` looks towards the link; the corners away from it are broken.
     """
     along, across = stop.length / 2, stop.width / 2
-    cut = min(stop.length, stop.width) / 6
+    cut = min(stop.length, stop.width) / 10
     edge = polyline(
         (
             ((cut - along, -across), "far_face"),

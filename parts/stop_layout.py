@@ -7,7 +7,7 @@ import math
 from parts.design import Mechanism
 from parts.sizes import StopSizes
 
-DOWEL_AT, BOLT_AT = 0.36, 0.13  # of the block's length, either side of its middle
+HOLES_AT = 0.25  # of the block's length and width, either side of its middle
 
 
 def stop_center(m: Mechanism, link_width: float, stop: StopSizes) -> tuple[tuple[float, float], float]:
@@ -25,9 +25,13 @@ def stop_center(m: Mechanism, link_width: float, stop: StopSizes) -> tuple[tuple
     return (x, y), direction
 
 
-def block_hole_offsets(stop: StopSizes) -> tuple[tuple[float, float], ...]:
-    """Holes of a block in the disc: place along the link from the block's middle, and diameter (mm); dowels first."""
+def block_hole_offsets(stop: StopSizes) -> tuple[tuple[float, float, float], ...]:
+    """Holes of a block in its own frame: along the link and across it from the block's middle, and diameter in the disc.
+
+    Dowels on one diagonal, bolts on the other; x runs along the seated link towards the chain pin, y towards the link in
+    a ccw machine. Dowels come first. mm.
+    """
+    x, y = HOLES_AT * stop.length, HOLES_AT * stop.width
     return (
-        (-DOWEL_AT * stop.length, stop.dowel_diameter), (DOWEL_AT * stop.length, stop.dowel_diameter),
-        (-BOLT_AT * stop.length, stop.bolt_hole), (BOLT_AT * stop.length, stop.bolt_hole),
+        (-x, -y, stop.dowel_diameter), (x, y, stop.dowel_diameter), (-x, y, stop.bolt_hole), (x, -y, stop.bolt_hole)
     )  # fmt: skip

@@ -72,7 +72,16 @@ class Context:
         )  # fmt: skip
 
     def shape_check(
-        self, part: str, site: str, check: str, wanted: float, found: float, unit: str, method: str, source: str, note: str = ""
+        self,
+        part: str,
+        site: str,
+        check: str,
+        wanted: float,
+        found: float,
+        unit: str,
+        method: str,
+        source: str,
+        note: str = "",
     ) -> Check:
         """A check of sizes, not of loads: what is there against what is wanted, target 1."""
         return Check(part, site, check, "", None, wanted, found, unit, 1.0, method, source, note)

@@ -95,23 +95,50 @@ def eye_checks(c: Context, eye: Eye, force: Floats) -> list[Check]:
     else:
         outward = np.full_like(along, eye.body + math.pi)
         pull = np.maximum(0.0, size * np.cos(along - outward))
-    sides = [edge_distance(plate, hole.center, outward + s * math.pi / 2.0, holes=True, skip=(eye.hole,)) - radius for s in (1.0, -1.0)]
+    sides = [
+        edge_distance(plate, hole.center, outward + s * math.pi / 2.0, holes=True, skip=(eye.hole,)) - radius
+        for s in (1.0, -1.0)
+    ]
     b_e = effective_width(eye.thickness, np.maximum(np.minimum(*sides), 0.0))
     net = tensile_rupture(eye.thickness, b_e, f_u)
     weaker = min(f_y, eye.pin_yield)
     t, targets = eye.thickness, c.design.targets
-    note = "" if "steel" in eye.material.kind or "plate" in eye.material.kind or "bar" in eye.material.kind else (
-        f"a rule for structural steel, applied to {eye.material.name}"
-    )  # fmt: skip
+    note = (
+        ""
+        if "steel" in eye.material.kind or "plate" in eye.material.kind or "bar" in eye.material.kind
+        else (f"a rule for structural steel, applied to {eye.material.name}")
+    )
     if eye.turns:
         press, how = turning_bearing(t, eye.pin_diameter, weaker), "0.6 t d f_y, a joint that turns"
     else:
         press, how = bearing(t, eye.pin_diameter, weaker), "1.5 t d f_y, a joint that does not turn"
     return [
-        c.worst_check(eye.part, eye.hole, "net tension", pull, net, "N", targets.ultimate, "F_u 2 t b_e, b_e = 2t + 16 mm ≤ b", AISC_D5, note),
-        c.worst_check(eye.part, eye.hole, "tear-out", size, tear, "N", targets.ultimate, "0.6 F_u 2t(a + d/2), a along the force", AISC_D5, note),
+        c.worst_check(
+            eye.part,
+            eye.hole,
+            "net tension",
+            pull,
+            net,
+            "N",
+            targets.ultimate,
+            "F_u 2 t b_e, b_e = 2t + 16 mm ≤ b",
+            AISC_D5,
+            note,
+        ),
+        c.worst_check(
+            eye.part,
+            eye.hole,
+            "tear-out",
+            size,
+            tear,
+            "N",
+            targets.ultimate,
+            "0.6 F_u 2t(a + d/2), a along the force",
+            AISC_D5,
+            note,
+        ),
         c.worst_check(eye.part, eye.hole, "bearing", size, press, "N", targets.yield_, how, EN_PINS, note),
-    ]  # fmt: skip
+    ]
 
 
 def check(c: Context) -> list[Check]:
@@ -125,15 +152,80 @@ def check(c: Context) -> list[Check]:
     tension = np.stack([length_of(c.members.chain_on_pin), along_x, along_x])
     meat = end.width - 2.0 * sum(b - a for a, b in end.slots)
     eyes = [
-        (Eye("crank_disc", "crank_disc", "crank_pin_hole", z.disc.thickness, crank_pin.diameter, crank_yield, z.disc.material, z.disc.thickness, math.pi, False),
-         c.site("crank_disc", "crank_pin_hole").force),
-        (Eye("swing_link", "swing_link", "crank_pin_eye", in_sink, crank_pin.diameter, crank_yield, link.material, link.thickness, 0.0, True),
-         c.site("swing_link", "crank_pin_eye").force),
-        (Eye("swing_link", "swing_link", "chain_pin_eye", link.thickness, chain_pin.diameter, chain_yield, link.material, link.thickness, math.pi, False),
-         c.site("swing_link", "chain_pin_eye").force),
-        (Eye("chain_end", "chain_end", "chain_pin_eye", end.width, chain_pin.middle_diameter, chain_yield, end.material, end.width, 0.0, True),
-         -tension),
-        (Eye("chain_end", "chain_end", "chain_hole", meat, end.pin_diameter, end.material.yield_strength(end.width), end.material, end.width, math.pi, False),
-         tension),
-    ]  # fmt: skip
+        (
+            Eye(
+                "crank_disc",
+                "crank_disc",
+                "crank_pin_hole",
+                z.disc.thickness,
+                crank_pin.diameter,
+                crank_yield,
+                z.disc.material,
+                z.disc.thickness,
+                math.pi,
+                False,
+            ),
+            c.site("crank_disc", "crank_pin_hole").force,
+        ),
+        (
+            Eye(
+                "swing_link",
+                "swing_link",
+                "crank_pin_eye",
+                in_sink,
+                crank_pin.diameter,
+                crank_yield,
+                link.material,
+                link.thickness,
+                0.0,
+                True,
+            ),
+            c.site("swing_link", "crank_pin_eye").force,
+        ),
+        (
+            Eye(
+                "swing_link",
+                "swing_link",
+                "chain_pin_eye",
+                link.thickness,
+                chain_pin.diameter,
+                chain_yield,
+                link.material,
+                link.thickness,
+                math.pi,
+                False,
+            ),
+            c.site("swing_link", "chain_pin_eye").force,
+        ),
+        (
+            Eye(
+                "chain_end",
+                "chain_end",
+                "chain_pin_eye",
+                end.width,
+                chain_pin.middle_diameter,
+                chain_yield,
+                end.material,
+                end.width,
+                0.0,
+                True,
+            ),
+            -tension,
+        ),
+        (
+            Eye(
+                "chain_end",
+                "chain_end",
+                "chain_hole",
+                meat,
+                end.pin_diameter,
+                end.material.yield_strength(end.width),
+                end.material,
+                end.width,
+                math.pi,
+                False,
+            ),
+            tension,
+        ),
+    ]
     return [row for eye, force in eyes for row in eye_checks(c, eye, force)]

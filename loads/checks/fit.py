@@ -30,9 +30,15 @@ def _webs(c: Context) -> list[Check]:
             diameter = max(holes.get(web.one, 0.0), holes.get(web.other, 0.0))
             wanted = max(LEAST_WEB, WEB_OVER_HOLE * diameter)
             row = c.shape_check(
-                part.key, f"{web.one} / {web.other}", "web", wanted, max(web.thickness, 0.0), "mm",
-                f"least material beside a hole, {WEB_OVER_HOLE:g} of its diameter and {LEAST_WEB:g} mm", COMMON,
-            )  # fmt: skip
+                part.key,
+                f"{web.one} / {web.other}",
+                "web",
+                wanted,
+                max(web.thickness, 0.0),
+                "mm",
+                f"least material beside a hole, {WEB_OVER_HOLE:g} of its diameter and {LEAST_WEB:g} mm",
+                COMMON,
+            )
             if worst is None or row.margin < worst.margin:
                 worst = row
         if worst is not None:
@@ -44,23 +50,40 @@ def _sinks(c: Context) -> list[Check]:
     disc, link, pin = c.sizes.disc, c.sizes.link, c.sizes.crank_pin
     rows = [
         c.shape_check(
-            "crank_disc", "hub_bolt_sink", "floor under the bolt heads", 0.3 * disc.thickness,
-            disc.thickness - disc.counterbore_depth, "mm",
-            "a third of the thickness stays under heads that lie below the face", COMMON,
+            "crank_disc",
+            "hub_bolt_sink",
+            "floor under the bolt heads",
+            0.3 * disc.thickness,
+            disc.thickness - disc.counterbore_depth,
+            "mm",
+            "a third of the thickness stays under heads that lie below the face",
+            COMMON,
         )
-    ]  # fmt: skip
+    ]
     if link.counterbore_depth > 0.0:
         rows.append(
             c.shape_check(
-                "swing_link", "crank_pin_head_sink", "pin head below the face", pin.head_thickness, link.counterbore_depth,
-                "mm", "nothing but chain pin and chain end enters the chain's plane", GEOMETRY,
-            )  # fmt: skip
+                "swing_link",
+                "crank_pin_head_sink",
+                "pin head below the face",
+                pin.head_thickness,
+                link.counterbore_depth,
+                "mm",
+                "nothing but chain pin and chain end enters the chain's plane",
+                GEOMETRY,
+            )
         )
         rows.append(
             c.shape_check(
-                "swing_link", "crank_pin_head_sink", "floor under the pin head", 0.4 * link.thickness,
-                link.thickness - link.counterbore_depth, "mm", "four tenths of the thickness stay under the head", COMMON,
-            )  # fmt: skip
+                "swing_link",
+                "crank_pin_head_sink",
+                "floor under the pin head",
+                0.4 * link.thickness,
+                link.thickness - link.counterbore_depth,
+                "mm",
+                "four tenths of the thickness stay under the head",
+                COMMON,
+            )
         )
     return rows
 
@@ -72,11 +95,17 @@ def _press(c: Context) -> list[Check]:
         held.append(("stop_seat", c.sizes.stop.diameter))
     return [
         c.shape_check(
-            "crank_disc", name, "length of the press seat", 0.6 * d, disc.thickness, "mm",
-            "a pin held at one end is held over 0.6 of its diameter", COMMON,
+            "crank_disc",
+            name,
+            "length of the press seat",
+            0.6 * d,
+            disc.thickness,
+            "mm",
+            "a pin held at one end is held over 0.6 of its diameter",
+            COMMON,
         )
         for name, d in held
-    ]  # fmt: skip
+    ]
 
 
 def _stop(c: Context) -> list[Check]:
@@ -85,21 +114,38 @@ def _stop(c: Context) -> list[Check]:
     room = min(m.stop_reach, m.link_length - m.stop_reach)
     rows = [
         c.shape_check(
-            "stop", "contact", "stays out of the chain's plane", stop.height, c.stack.plate_gap * 2.0 + link.thickness, "mm",
-            "height over the disc, up to the gap before the chain's plane", GEOMETRY,
+            "stop",
+            "contact",
+            "stays out of the chain's plane",
+            stop.height,
+            c.stack.plate_gap * 2.0 + link.thickness,
+            "mm",
+            "height over the disc, up to the gap before the chain's plane",
+            GEOMETRY,
         ),
         c.shape_check(
-            "stop", "contact", "reaches across the link", 0.5 * link.thickness,
-            max(0.0, min(stop.height - c.stack.plate_gap, link.thickness)), "mm",
-            "at least half the link's thickness touches the stop", COMMON,
+            "stop",
+            "contact",
+            "reaches across the link",
+            0.5 * link.thickness,
+            max(0.0, min(stop.height - c.stack.plate_gap, link.thickness)),
+            "mm",
+            "at least half the link's thickness touches the stop",
+            COMMON,
         ),
-    ]  # fmt: skip
+    ]
     if half:
         rows.append(
             c.shape_check(
-                "stop", "contact", "lies on the straight flank", half, room, "mm",
-                "the block touches the flank between the two pins", GEOMETRY,
-            )  # fmt: skip
+                "stop",
+                "contact",
+                "lies on the straight flank",
+                half,
+                room,
+                "mm",
+                "the block touches the flank between the two pins",
+                GEOMETRY,
+            )
         )
     return rows
 
@@ -111,10 +157,16 @@ def _spring(c: Context) -> list[Check]:
     drawn = float(c.past.figures.most_pull) - c.design.chain.slack
     return [
         c.shape_check(
-            "spring", "draw", "most draw", max(drawn, 0.0), most, "mm", "draw at the end of winding against what the spring bears",
+            "spring",
+            "draw",
+            "most draw",
+            max(drawn, 0.0),
+            most,
+            "mm",
+            "draw at the end of winding against what the spring bears",
             "the spring's maker, as given in the design",
         )
-    ]  # fmt: skip
+    ]
 
 
 def _start(c: Context) -> list[Check]:
@@ -123,11 +175,16 @@ def _start(c: Context) -> list[Check]:
     reach = m.crank_radius + m.link_length + end.length + chain.pitch
     return [
         c.shape_check(
-            "chain_end", "chain_hole", "clear of the sheave at the start", reach,
-            float(c.past.machine.sheave_distance), "mm",
-            "chain end and one pitch of chain lie before the sheave", COMMON,
+            "chain_end",
+            "chain_hole",
+            "clear of the sheave at the start",
+            reach,
+            float(c.past.machine.sheave_distance),
+            "mm",
+            "chain end and one pitch of chain lie before the sheave",
+            COMMON,
         )
-    ]  # fmt: skip
+    ]
 
 
 def _clashes(c: Context) -> list[Check]:
@@ -135,17 +192,36 @@ def _clashes(c: Context) -> list[Check]:
     method = "layer-by-layer sweep over winding and the swing after the release"
     rows = [
         Check(
-            clash.part_a, clash.part_b, "parts meet", clash.sweep, clash.crank_angle, clash.depth, 0.0, "mm", 1.0, method,
-            GEOMETRY, f"first at x {clash.x:.1f}, y {clash.y:.1f} mm in the machine frame",
+            clash.part_a,
+            clash.part_b,
+            "parts meet",
+            clash.sweep,
+            clash.crank_angle,
+            clash.depth,
+            0.0,
+            "mm",
+            1.0,
+            method,
+            GEOMETRY,
+            f"first at x {clash.x:.1f}, y {clash.y:.1f} mm in the machine frame",
         )
         for clash in c.findings.clashes
-    ]  # fmt: skip
+    ]
     rows += [
         Check(
-            part.part, "chain's plane", "stands in the chain's plane", "", part.crank_angle, part.depth, 0.0, "mm", 1.0,
-            "nothing but chain pin and chain end may enter it", GEOMETRY,
+            part.part,
+            "chain's plane",
+            "stands in the chain's plane",
+            "",
+            part.crank_angle,
+            part.depth,
+            0.0,
+            "mm",
+            1.0,
+            "nothing but chain pin and chain end may enter it",
+            GEOMETRY,
             f"meets the {part.meets.replace('_', ' ')}" if part.meets else "",
         )
         for part in c.findings.intrusions
-    ]  # fmt: skip
+    ]
     return rows or [Check("assembly", "all layers", "parts meet", "", None, 0.0, 0.0, "mm", 1.0, method, GEOMETRY)]

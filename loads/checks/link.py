@@ -45,7 +45,7 @@ def column_stress(slenderness: Floats | float, f_y: Floats | float, modulus: flo
     f_y = np.asarray(f_y, dtype=float)
     euler = math.pi**2 * modulus / np.maximum(slender, 1e-9) ** 2
     johnson = f_y - f_y**2 * slender**2 / (4.0 * math.pi**2 * modulus)
-    return np.where(slender >= np.sqrt(2.0 * math.pi**2 * modulus / f_y), euler, johnson)
+    return np.asarray(np.where(slender >= np.sqrt(2.0 * math.pi**2 * modulus / f_y), euler, johnson))
 
 
 def check(c: Context) -> list[Check]:
@@ -61,16 +61,30 @@ def check(c: Context) -> list[Check]:
     stress = section_stress(pull.force[0], bending, pull.moment[1], pull.moment[0], w, t)
     rows = [
         c.worst_check(
-            "swing_link", "stop_flank", "axial force with bending", stress, f_y, "MPa", targets.yield_,
-            "N/A + M/W about both axes, torsion by distortion energy, section w t", BEAM,
-        )  # fmt: skip
+            "swing_link",
+            "stop_flank",
+            "axial force with bending",
+            stress,
+            f_y,
+            "MPa",
+            targets.yield_,
+            "N/A + M/W about both axes, torsion by distortion energy, section w t",
+            BEAM,
+        )
     ]
     shear = np.maximum(np.abs(pull.force[1]), np.abs(push.force[1] + pull.force[1]))
     rows.append(
         c.worst_check(
-            "swing_link", "stop_flank", "shear", 1.5 * shear / (w * t), f_y / math.sqrt(3.0), "MPa", targets.yield_,
-            "1.5 V/A against f_y/√3", BEAM,
-        )  # fmt: skip
+            "swing_link",
+            "stop_flank",
+            "shear",
+            1.5 * shear / (w * t),
+            f_y / math.sqrt(3.0),
+            "MPa",
+            targets.yield_,
+            "1.5 V/A against f_y/√3",
+            BEAM,
+        )
     )
     push_in = np.maximum(0.0, -pull.force[0])
     for axis, depth in (("about the thin side", t), ("in the plane of the disc", w)):
@@ -78,9 +92,16 @@ def check(c: Context) -> list[Check]:
         capacity = float(column_stress(slenderness, f_y, material.youngs_modulus)) * w * t
         rows.append(
             c.worst_check(
-                "swing_link", "between the pins", f"strut {axis}", push_in, capacity, "N", targets.yield_,
-                f"Euler or Johnson, K = 1, L/r = {slenderness:.0f}", "Shigley, columns with central loading",
-            )  # fmt: skip
+                "swing_link",
+                "between the pins",
+                f"strut {axis}",
+                push_in,
+                capacity,
+                "N",
+                targets.yield_,
+                f"Euler or Johnson, K = 1, L/r = {slenderness:.0f}",
+                "Shigley, columns with central loading",
+            )
         )
     if float(np.max(length_of(pull.moment))) > 0.0:
         rows.append(_offset_strut(c, push_in, np.abs(pull.moment[1])))
@@ -97,6 +118,13 @@ def _offset_strut(c: Context, thrust: Floats, moment: Floats) -> Check:
     growth = 1.0 / np.maximum(1.0 - c.design.targets.yield_ * thrust / euler, 1e-6)
     stress = thrust / (w * t) + growth * 6.0 * moment / (w * t**2)
     return c.worst_check(
-        "swing_link", "between the pins", "strut with the chain's offset couple", np.where(thrust > 0.0, stress, 0.0), f_y,
-        "MPa", c.design.targets.yield_, "N/A + M/W / (1 − target N/N_E)", "Shigley, columns with eccentric loading",
-    )  # fmt: skip
+        "swing_link",
+        "between the pins",
+        "strut with the chain's offset couple",
+        np.where(thrust > 0.0, stress, 0.0),
+        f_y,
+        "MPa",
+        c.design.targets.yield_,
+        "N/A + M/W / (1 − target N/N_E)",
+        "Shigley, columns with eccentric loading",
+    )

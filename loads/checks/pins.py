@@ -68,7 +68,11 @@ def shear_and_bending_factor(shear_use: Floats, bending_use: Floats) -> Floats:
 
 
 def _note(material: Material) -> str:
-    return "" if "steel" in material.kind or "bar" in material.kind else f"a rule for structural steel, applied to {material.name}"
+    return (
+        ""
+        if "steel" in material.kind or "bar" in material.kind
+        else f"a rule for structural steel, applied to {material.name}"
+    )
 
 
 def pin_checks(
@@ -84,23 +88,61 @@ def pin_checks(
     source = BEAM if held else EN_PINS
     targets = c.design.targets
     rows = [
-        c.worst_check(part, site, "pin shear", shear, shear_capacity, "N", targets.ultimate, "0.6 A f_u, one shear plane", EN_PINS, _note(material)),
-        c.worst_check(part, site, "pin bending", moment, bending_capacity, "N·mm", targets.yield_, bending_method, source, _note(material)),
-    ]  # fmt: skip
+        c.worst_check(
+            part,
+            site,
+            "pin shear",
+            shear,
+            shear_capacity,
+            "N",
+            targets.ultimate,
+            "0.6 A f_u, one shear plane",
+            EN_PINS,
+            _note(material),
+        ),
+        c.worst_check(
+            part,
+            site,
+            "pin bending",
+            moment,
+            bending_capacity,
+            "N·mm",
+            targets.yield_,
+            bending_method,
+            source,
+            _note(material),
+        ),
+    ]
     if not held:
         rows.append(
             c.worst_check(
-                part, site, "pin bending, replaceable", moment, float(replaceable_pin_bending_capacity(d, f_y)), "N·mm", 1.0,
-                "0.8 W_el f_y at the working load, γ = 1", EN_PINS, _note(material),
-            )  # fmt: skip
+                part,
+                site,
+                "pin bending, replaceable",
+                moment,
+                float(replaceable_pin_bending_capacity(d, f_y)),
+                "N·mm",
+                1.0,
+                "0.8 W_el f_y at the working load, γ = 1",
+                EN_PINS,
+                _note(material),
+            )
         )
     factor = shear_and_bending_factor(shear / shear_capacity, moment / bending_capacity)
     both = np.where(np.isfinite(factor), 1.0 / factor, 0.0)
     rows.append(
         c.worst_check(
-            part, site, "pin shear with bending", both, 1.0, "1", targets.yield_,
-            "(M/M_R)² + (F/F_R)² = 1, all loads growing together", EN_PINS, _note(material),
-        )  # fmt: skip
+            part,
+            site,
+            "pin shear with bending",
+            both,
+            1.0,
+            "1",
+            targets.yield_,
+            "(M/M_R)² + (F/F_R)² = 1, all loads growing together",
+            EN_PINS,
+            _note(material),
+        )
     )
     return rows
 
@@ -125,13 +167,36 @@ def check(c: Context) -> list[Check]:
         )
         share = length_of(c.members.chain_side)
         rows += pin_checks(
-            c, "chain_pin", "shoulder", chain.diameter, chain.material, share, share * c.stack.link_thickness / 2.0, True
+            c,
+            "chain_pin",
+            "shoulder",
+            chain.diameter,
+            chain.material,
+            share,
+            share * c.stack.link_thickness / 2.0,
+            True,
         )
     else:
         side = length_of(c.members.chain_side)
         arm = c.stack.chain_plane_width / 2.0
-        rows += pin_checks(c, "chain_pin", "link_seat", min(chain.diameter, chain.collar_diameter), chain.material, side, side * arm, True)
         rows += pin_checks(
-            c, "chain_pin", "collar", chain.middle_diameter, chain.material, side, side * c.sizes.chain_end.width / 2.0, True
+            c,
+            "chain_pin",
+            "link_seat",
+            min(chain.diameter, chain.collar_diameter),
+            chain.material,
+            side,
+            side * arm,
+            True,
+        )
+        rows += pin_checks(
+            c,
+            "chain_pin",
+            "collar",
+            chain.middle_diameter,
+            chain.material,
+            side,
+            side * c.sizes.chain_end.width / 2.0,
+            True,
         )
     return rows

@@ -11,6 +11,7 @@ from loads.checks.pins import first_yield_bending_capacity, pin_shear_capacity, 
 from loads.records import Check
 from parts.design import Floats, Material
 from parts.hardware import cap_screw
+from parts.stop_layout import HOLES_AT
 
 HERTZ = "Johnson, Contact Mechanics, §4.2 and §6.1"
 
@@ -28,14 +29,10 @@ def line_contact_pressure(
 
     Source: Johnson, Contact Mechanics, equation 4.45.
     """
-    return np.asarray(
-        np.sqrt(np.asarray(force) * modulus / (math.pi * np.asarray(length) * np.asarray(radius)))
-    )
+    return np.asarray(np.sqrt(np.asarray(force) * modulus / (math.pi * np.asarray(length) * np.asarray(radius))))
 
 
-def line_contact_yield_force(
-    length: Floats | float, radius: Floats | float, modulus: float, f_y: float
-) -> Floats:
+def line_contact_yield_force(length: Floats | float, radius: Floats | float, modulus: float, f_y: float) -> Floats:
     """Force (N) at which a line contact first yields below its surface: p0 = 1.67 f_y (Tresca).
 
     Source: Johnson, Contact Mechanics, equation 6.4: p0 = 3.3 k = 1.67 Y.
@@ -47,6 +44,16 @@ def contact_depth(c: Context) -> float:
     """Length (mm, along z) over which stop and link touch."""
     reach = c.sizes.stop.height - c.stack.plate_gap
     return max(0.0, min(reach, c.sizes.link.thickness))
+
+
+def bolt_share(width: float) -> float:
+    """Tension of the bolt nearer the link over the tipping moment (1/mm), for a block ``width`` mm across the link.
+
+    The block tips about its edge away from the link; its two bolts stand at HOLES_AT of the width either side of its
+    middle and pull in proportion to their distance from that edge. Statics of a rigid block.
+    """
+    far, near = (0.5 - HOLES_AT) * width, (0.5 + HOLES_AT) * width
+    return near / (near**2 + far**2)
 
 
 def check(c: Context) -> list[Check]:
@@ -63,15 +70,53 @@ def _post(c: Context, push: Floats) -> list[Check]:
     moment = push * c.stack.pin_root_arm
     both = 1.0 / shear_and_bending_factor(push / shear_capacity, moment / bending_capacity)
     weaker = min(f_y, link.material.yield_strength(link.thickness))
-    contact = line_contact_yield_force(
-        contact_depth(c), d / 2.0, contact_modulus(material, link.material), weaker
-    )
+    contact = line_contact_yield_force(contact_depth(c), d / 2.0, contact_modulus(material, link.material), weaker)
     return [
-        c.worst_check("stop", "root", "post shear", push, shear_capacity, "N", targets.ultimate, "0.6 A f_u, one shear plane", EN_PINS),
-        c.worst_check("stop", "root", "post bending", moment, bending_capacity, "N·mm", targets.yield_, "W_el f_y, post held in the disc", BEAM),
-        c.worst_check("stop", "root", "post shear with bending", both, 1.0, "1", targets.yield_, "(M/M_R)² + (F/F_R)² = 1, all loads growing together", EN_PINS),
-        c.worst_check("stop", "contact", "contact", push, contact, "N", targets.yield_, "line contact, first yield at p0 = 1.67 f_y", HERTZ),
-    ]  # fmt: skip
+        c.worst_check(
+            "stop",
+            "root",
+            "post shear",
+            push,
+            shear_capacity,
+            "N",
+            targets.ultimate,
+            "0.6 A f_u, one shear plane",
+            EN_PINS,
+        ),
+        c.worst_check(
+            "stop",
+            "root",
+            "post bending",
+            moment,
+            bending_capacity,
+            "N·mm",
+            targets.yield_,
+            "W_el f_y, post held in the disc",
+            BEAM,
+        ),
+        c.worst_check(
+            "stop",
+            "root",
+            "post shear with bending",
+            both,
+            1.0,
+            "1",
+            targets.yield_,
+            "(M/M_R)² + (F/F_R)² = 1, all loads growing together",
+            EN_PINS,
+        ),
+        c.worst_check(
+            "stop",
+            "contact",
+            "contact",
+            push,
+            contact,
+            "N",
+            targets.yield_,
+            "line contact, first yield at p0 = 1.67 f_y",
+            HERTZ,
+        ),
+    ]
 
 
 def _block(c: Context, push: Floats) -> list[Check]:
@@ -81,12 +126,61 @@ def _block(c: Context, push: Floats) -> list[Check]:
     weaker = min(f_y, link.material.yield_strength(link.thickness))
     moment = push * c.stack.pin_root_arm
     bolt = cap_screw(stop.bolt_thread)
-    # the block would tip about its edge away from the link; the bolts stand in the middle of its width
-    lift_off = moment / (stop.width / 2.0)
+    lift_off = moment * bolt_share(stop.width)
     return [
-        c.worst_check("stop", "contact", "contact", push, stop.length * contact_depth(c) * weaker, "N", targets.yield_, "bearing over the area, length × depth × f_y", BEAM),
-        c.worst_check("stop", "root", "dowel shear", push, 2.0 * float(pin_shear_capacity(stop.dowel_diameter, f_u)), "N", targets.ultimate, "two dowels, 0.6 A f_u each, no stronger than the block", EN_PINS),
-        c.worst_check("stop", "root", "block shear", 1.5 * push / (stop.length * stop.width), f_y / math.sqrt(3.0), "MPa", targets.yield_, "1.5 V/A against f_y/√3", BEAM),
-        c.worst_check("stop", "root", "block bending", moment, stop.length * stop.width**2 / 6.0 * f_y, "N·mm", targets.yield_, "W f_y of the block's foot", BEAM),
-        c.worst_check("stop", "root", "bolt tension", lift_off, 2.0 * bolt.stress_area * bolt.yield_strength, "N", targets.yield_, "two bolts against tipping about the block's far edge", "ISO 898-1, statics"),
-    ]  # fmt: skip
+        c.worst_check(
+            "stop",
+            "contact",
+            "contact",
+            push,
+            stop.length * contact_depth(c) * weaker,
+            "N",
+            targets.yield_,
+            "bearing over the area, length × depth × f_y",
+            BEAM,
+        ),
+        c.worst_check(
+            "stop",
+            "root",
+            "dowel shear",
+            push,
+            2.0 * float(pin_shear_capacity(stop.dowel_diameter, f_u)),
+            "N",
+            targets.ultimate,
+            "two dowels, 0.6 A f_u each, no stronger than the block",
+            EN_PINS,
+        ),
+        c.worst_check(
+            "stop",
+            "root",
+            "block shear",
+            1.5 * push / (stop.length * stop.width),
+            f_y / math.sqrt(3.0),
+            "MPa",
+            targets.yield_,
+            "1.5 V/A against f_y/√3",
+            BEAM,
+        ),
+        c.worst_check(
+            "stop",
+            "root",
+            "block bending",
+            moment,
+            stop.length * stop.width**2 / 6.0 * f_y,
+            "N·mm",
+            targets.yield_,
+            "W f_y of the block's foot",
+            BEAM,
+        ),
+        c.worst_check(
+            "stop",
+            "root",
+            "bolt tension",
+            lift_off,
+            bolt.stress_area * bolt.yield_strength,
+            "N",
+            targets.yield_,
+            "the bolt nearer the link, block tipping about its far edge",
+            "ISO 898-1, statics",
+        ),
+    ]

@@ -14,8 +14,16 @@ def linear(preload: float, rate: float) -> SpringLaw:
 
 
 def machine(
-    r: float, length: float, reach: float, beta: float, center: tuple[float, float], radius: float,
-    side: float, spring: SpringLaw, slack: float = 0.0, **more: float,
+    r: float,
+    length: float,
+    reach: float,
+    beta: float,
+    center: tuple[float, float],
+    radius: float,
+    side: float,
+    spring: SpringLaw,
+    slack: float = 0.0,
+    **more: float,
 ) -> Linkage:
     return make_linkage(
         crank_radius=r, link_length=length, stop_reach=reach, seat_angle=np.radians(beta), sheave_x=center[0],

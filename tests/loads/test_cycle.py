@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
+
 import numpy as np
 import pytest
 from hypothesis import given, settings
@@ -57,7 +59,9 @@ def test_turning_the_near_design_clockwise() -> None:
 
 def test_first_peak_of_a_far_sheave_in_closed_form() -> None:
     c = cycle(TABLE["far"])
-    assert c.first_peak == pytest.approx(3.0 * np.sqrt(3.0) / 4.0 * 100.0 * 60.0**2, rel=5e-6)  # the sheave is 10 km away, not infinitely far
+    assert c.first_peak == pytest.approx(
+        3.0 * np.sqrt(3.0) / 4.0 * 100.0 * 60.0**2, rel=5e-6
+    )  # the sheave is 10 km away, not infinitely far
     assert np.degrees(c.first_peak_at) == pytest.approx(120.0, abs=1e-3)
 
 
@@ -96,9 +100,14 @@ def _work(m: Linkage, c: Cycle, end: float) -> float:
             corners.append((low + high) / 2)
     edges = [0.0, *sorted(x for x in corners if 0.0 < x < end), end]
     total = 0.0
-    for a, b in zip(edges[:-1], edges[1:], strict=True):
+    for a, b in pairwise(edges):
         total += quad(
-            lambda t: float(state(m, np.array([t]), c.events.catch).torque[0]), a, b, epsabs=1e-4, epsrel=1e-10, limit=200
+            lambda t: float(state(m, np.array([t]), c.events.catch).torque[0]),
+            a,
+            b,
+            epsabs=1e-4,
+            epsrel=1e-10,
+            limit=200,
         )[0]
     return total
 
@@ -145,7 +154,9 @@ def test_events_are_where_the_mechanics_puts_them(m: Linkage) -> None:
     c = cycle(m)
     at = c.events
     s = state(m, np.array([float(at.catch)]), at.catch)
-    assert s.torque[0] == pytest.approx(float(s.tension[0] * m.crank_radius * np.sin(m.seat_angle)), abs=1e-5 * (1 + s.tension[0]))
+    assert s.torque[0] == pytest.approx(
+        float(s.tension[0] * m.crank_radius * np.sin(m.seat_angle)), abs=1e-5 * (1 + s.tension[0])
+    )
     after = state(m, np.array([float(at.catch) + 1e-9, float(at.null), float(at.release)]), at.catch)
     assert after.torque[0] == pytest.approx(s.torque[0], rel=1e-5, abs=1e-6 * (1 + s.tension[0] * m.link_length))
     assert after.pull[0] == pytest.approx(s.pull[0], abs=1e-6)
@@ -181,7 +192,9 @@ def test_many_designs_at_once_are_each_as_alone() -> None:
     together = cycle(many)
     assert together.first_peak.shape == (30, 20)
     for i, k in ((0, 0), (13, 7), (29, 19)):
-        alone = cycle(machine(float(r[i, 0]), 90, 75, float(np.degrees(beta[0, k])), (420, 15), 45, 1, linear(400, 150), slack=2))
+        alone = cycle(
+            machine(float(r[i, 0]), 90, 75, float(np.degrees(beta[0, k])), (420, 15), 45, 1, linear(400, 150), slack=2)
+        )
         assert together.first_peak[i, k] == pytest.approx(float(alone.first_peak), rel=1e-9)
         assert together.events.release[i, k] == pytest.approx(float(alone.events.release), rel=1e-12)
         assert together.largest_stop[i, k] == pytest.approx(float(alone.largest_stop), rel=1e-9)
@@ -212,7 +225,8 @@ def test_trace_has_each_step_and_each_event_once() -> None:
         assert np.min(np.abs(shown - np.degrees(float(event)))) < 2e-6
     assert {round(x, 1) for x in np.arange(0, 358, 0.5)} <= {round(float(x), 6) for x in shown}
     seated = trace(TABLE["near"], c).seated
-    assert not seated[angles <= np.degrees(float(c.events.catch))].any() and seated[-1]
+    assert not seated[angles <= np.degrees(float(c.events.catch))].any()
+    assert seated[-1]
 
 
 def test_spring_table_against_a_general_purpose_integral() -> None:

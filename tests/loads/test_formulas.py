@@ -44,7 +44,9 @@ def test_double_shear_moment_is_the_beam_with_spread_loads() -> None:
     a, b, c, force = 12.0, 37.0, 1.5, 40e3
     press_inner = integrate.quad(lambda x: force / b * x, 0, b / 2)[0]
     outer_arm = b / 2 + c + a / 2
-    assert float(pins.double_shear_moment(np.array(force), a, b, c)) == pytest.approx(force / 2 * outer_arm - press_inner)
+    assert float(pins.double_shear_moment(np.array(force), a, b, c)) == pytest.approx(
+        force / 2 * outer_arm - press_inner
+    )
 
 
 def test_shear_with_bending_is_the_factor_on_all_loads() -> None:
@@ -58,19 +60,26 @@ def test_column_formulas_meet_where_they_should() -> None:
     f_y, modulus = 355.0, 210e3
     turn = math.sqrt(2 * math.pi**2 * modulus / f_y)
     low, high = float(column_stress(turn * (1 - 1e-9), f_y, modulus)), float(column_stress(turn, f_y, modulus))
-    assert low == pytest.approx(f_y / 2, rel=1e-6) and high == pytest.approx(f_y / 2, rel=1e-6)
+    assert low == pytest.approx(f_y / 2, rel=1e-6)
+    assert high == pytest.approx(f_y / 2, rel=1e-6)
     h = 1e-4
-    slopes = [float(column_stress(turn + s * h, f_y, modulus) - column_stress(turn, f_y, modulus)) / (s * h) for s in (-1, 1)]
+    slopes = [
+        float(column_stress(turn + s * h, f_y, modulus) - column_stress(turn, f_y, modulus)) / (s * h) for s in (-1, 1)
+    ]
     assert slopes[0] == pytest.approx(slopes[1], rel=1e-3)
     assert column_stress(0.0, f_y, modulus) == pytest.approx(f_y)
     assert column_stress(200.0, f_y, modulus) == pytest.approx(math.pi**2 * modulus / 200.0**2)
 
 
-@pytest.mark.parametrize(("ratio", "alpha"), [(1.0, 0.208), (1.5, 0.231), (2.0, 0.246), (3.0, 0.267), (6.0, 0.299), (10.0, 0.312)])
+@pytest.mark.parametrize(
+    ("ratio", "alpha"), [(1.0, 0.208), (1.5, 0.231), (2.0, 0.246), (3.0, 0.267), (6.0, 0.299), (10.0, 0.312)]
+)
 def test_torsion_of_a_rectangle(ratio: float, alpha: float) -> None:
     """τ = T / (α b c²), α as tabulated in Timoshenko and Goodier, Theory of Elasticity, torsion of rectangular bars."""
     b, c, torsion = 10.0 * ratio, 10.0, 1e5
-    assert float(rectangle_torsion_stress(np.array(torsion), b, c)) == pytest.approx(torsion / (alpha * b * c**2), rel=0.045)
+    assert float(rectangle_torsion_stress(np.array(torsion), b, c)) == pytest.approx(
+        torsion / (alpha * b * c**2), rel=0.045
+    )
 
 
 def test_section_stress_of_a_bar_by_hand() -> None:

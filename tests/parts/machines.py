@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
 from typing import Literal, Protocol
 
 import numpy as np
@@ -84,7 +83,7 @@ def small(rotation: Rotation = "ccw", style: Style = "post") -> tuple[Design, Si
     sheave = Sheave((40.0, sign * 300.0), 32.0, "right" if sign > 0 else "left", None, 0.97)
     sizes = Sizes(
         0.5,
-        DiscSizes(105.0, 12.0, 16.0, 64.0, 4, 5.5, np.radians(45.0), "M5", 10.0, 5.5, STEEL),
+        DiscSizes(105.0, 12.0, 16.0, 66.0, 4, 5.5, np.radians(50.0), "M5", 10.0, 5.5, STEEL),
         LinkSizes(24.0, 10.0, 17.5, 2.8, STEEL),
         StopSizes(style, 12.0, 30.0, 14.0, 10.5, 4.0, "M4", 4.5, 3.3, STEEL),
         CrankPinSizes(10.0, 16.5, 2.5, STEEL),
@@ -112,11 +111,6 @@ def stack_of(design: Design, sizes: Sizes) -> Stack:
         sizes.link.thickness,
         sizes.disc.thickness,
     )
-
-
-def chain_of(design: Design, **changes: float) -> Design:
-    """The design with another chain."""
-    return replace(design, chain=replace(design.chain, **changes))
 
 
 def _machine_direction(m: Linkage, angle: Floats) -> Floats:

@@ -16,9 +16,9 @@ from hypothesis import strategies as st
 from parts.assembly import Frame
 from parts.clash import Findings, sweep
 from parts.design import Design
-from parts.layers import Round, Shape, Strip, machine_layers, part_layers
+from parts.layers import Geometry, Round, Shape, Strip, machine_layers, part_layers
 from parts.meeting import gaps
-from parts.outline import Part
+from parts.outline import Part, Plate
 from parts.registry import make_parts
 from parts.shape import cut_area, volume
 from parts.sizes import Sizes
@@ -184,7 +184,7 @@ def test_layers_have_the_parts_volume(make: Make, style: Style) -> None:
         if bore:  # a ring counts as full: its pin is in it
             continue
         assert filled == pytest.approx(part.quantity * volume(part), rel=0.02), part.name
-        if hasattr(part.body, "holes") and not part.body.counterbores and not part.body.slots:
+        if isinstance(part.body, Plate) and not part.body.counterbores and not part.body.slots:
             area = layers[0].geometry
             assert isinstance(area, Shape)
             assert area.area.area >= cut_area(part.body)
@@ -219,7 +219,12 @@ def test_gaps_are_the_distances_of_the_shapes(dx: list[float], dy: list[float], 
     frame = Frame(np.array(dx), np.array(dy), np.array(turn))
     chain_to = np.full(6, 12.0)
     plate = shapely.difference(shapely.box(-8.0, -3.0, 8.0, 3.0), shapely.Point(4.0, 0.0).buffer(1.5))
-    shapes = [Shape(plate), Shape(shapely.box(-2.0, -2.0, 5.0, 1.0)), Round(1.0, -1.0, 2.5), Strip(-4.0, 1.5)]
+    shapes: list[Geometry] = [
+        Shape(plate),
+        Shape(shapely.box(-2.0, -2.0, 5.0, 1.0)),
+        Round(1.0, -1.0, 2.5),
+        Strip(-4.0, 1.5),
+    ]
     areas = [
         plate,
         shapely.box(-2.0, -2.0, 5.0, 1.0),

@@ -16,7 +16,7 @@ from parts.bought import bought
 from parts.clash import IN_CHAIN_PLANE
 from parts.design import Design
 from parts.lettering import text_width
-from parts.outline import Line, Mark, Part, Placement, Plate, Point, Turned
+from parts.outline import Counterbore, Hole, Line, Mark, Part, Placement, Plate, Point, Turned
 from parts.registry import make_parts
 from parts.shape import polygon, signed_area, sound
 from parts.sizes import Sizes
@@ -39,6 +39,10 @@ def plate_of(part: Part) -> Plate:
 def turned_of(part: Part) -> Turned:
     assert isinstance(part.body, Turned)
     return part.body
+
+
+def rounds(plate: Plate) -> list[Hole | Counterbore]:
+    return [*plate.holes, *plate.counterbores]
 
 
 def span(part: Part, place: Placement) -> tuple[float, float]:
@@ -133,11 +137,10 @@ def test_a_clockwise_machine_has_mirrored_parts(
         ends = {s.name: s for s in image.outline}
         for segment in plate.outline:
             assert ends[segment.name].start == pytest.approx((segment.end[0], -segment.end[1]))
-        for features, images in ((plate.holes, image.holes), (plate.counterbores, image.counterbores)):
-            assert [f.name for f in features] == [f.name for f in images]
-            for feature, its_image in zip(features, images, strict=True):
-                assert its_image.center == pytest.approx((feature.center[0], -feature.center[1]))
-                assert its_image.diameter == feature.diameter
+        assert [f.name for f in rounds(plate)] == [f.name for f in rounds(image)]
+        for feature, its_image in zip(rounds(plate), rounds(image), strict=True):
+            assert its_image.center == pytest.approx((feature.center[0], -feature.center[1]))
+            assert its_image.diameter == feature.diameter
 
 
 @kinds
@@ -235,14 +238,16 @@ def test_nothing_made_enters_the_chains_plane_and_nothing_overlaps_along_a_pin(
     stack = stack_of(design, sizes)
     parts = make_parts(design, sizes, stack)
     half = stack.chain_plane_width / 2
-    spans = {part.key: [span(part, place) for place in part.placements] for part in parts}
+    spans: dict[str, list[tuple[float, float]]] = {}
+    for part in parts:
+        spans.setdefault(part.key, []).extend(span(part, place) for place in part.placements)
     for key, copies in spans.items():
         for low, high in copies:
             assert max(abs(low), abs(high)) <= stack.disc_back + 1e-9
             if key not in IN_CHAIN_PLANE:
                 assert low >= half - 1e-9 or high <= -half + 1e-9, key
     for key in ("crank_disc", "swing_link", "stop", "crank_pin"):
-        assert sum(len(c) for k, c in spans.items() if k == key) == len(stack.sides), key
+        assert len(spans[key]) == len(stack.sides), key
 
     def towards_disc(low: float, high: float) -> float:
         return max(abs(low), abs(high)) if low * high > 0 else max(-low, 0.0)
@@ -345,7 +350,7 @@ def test_numbers_are_etched_where_there_is_room(make: Make, style: Style, rotati
             [a + steps * (b - a) for a, b in zip(corners, np.roll(corners, -1, axis=0), strict=True)]
         )
         inside = np.concatenate([around, corners.mean(axis=0)[None]])
-        for feature in (*plate.holes, *plate.counterbores):
+        for feature in rounds(plate):
             apart = np.hypot(*(inside - feature.center).T) - feature.diameter / 2
             assert apart.min() >= 2.0 - 1e-6, feature.name
         assert np.hypot(*(around[:, None] - edge[None]).transpose(2, 0, 1)).min() >= 2.0 - 0.01

@@ -1,0 +1,41 @@
+"""Sizes that the design leaves open, by trade proportion from the loads.
+
+Each is the smallest preferred size at which the check's own formula reaches its target, so proportion and check cannot
+disagree. A size that the design gives is taken as it is; where no preferred size is enough the largest is taken and the
+check says what falls short.
+"""
+
+from __future__ import annotations
+
+from loads.members import History
+from loads.proportions.basis import SPIGOT
+from loads.proportions.discs import DiscSide
+from loads.proportions.links import LinkSide
+from parts.catalogue import Catalogue
+from parts.design import Assumed, Design
+from parts.sizes import Sizes
+from parts.stack import Stack
+
+__all__ = ["SPIGOT", "proportion"]
+
+
+class _Proportioner(LinkSide, DiscSide):
+    """Settles one design's sizes, in the order in which one needs another."""
+
+    def settle(self) -> tuple[Sizes, Stack, tuple[Assumed, ...]]:
+        width, tongue, slots = self._end_width()
+        pair = self._link_and_pins(width)
+        link = self._link(pair, width)
+        bore = self._bore_for(link, pair, width)
+        stop = self._stop(link, bore)
+        crank = self._crank_pin(pair)
+        chain_pin = self._chain_pin(pair)
+        end = self._chain_end(pair, chain_pin, width, tongue, slots)
+        disc = self._disc(pair, link, stop, width, bore)
+        sizes = Sizes(self.gap, disc, link, stop, crank, chain_pin, end)
+        return sizes, self.stack(width, link.thickness, disc.thickness), tuple(self.ledger.rows)
+
+
+def proportion(design: Design, past: History, catalogue: Catalogue) -> tuple[Sizes, Stack, tuple[Assumed, ...]]:
+    """All sizes of a design, its stack, and what was assumed on the way."""
+    return _Proportioner(design, past, catalogue).settle()

@@ -1,0 +1,155 @@
+"""What all proportions share: the loads to size for, the ledger of what was assumed, preferred sizes."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+import numpy as np
+
+from loads.checks import eyes, pins
+from loads.members import History
+from parts.catalogue import Catalogue
+from parts.design import Assumed, Design, Floats, Material
+from parts.hardware import preferred
+from parts.stack import Stack, make_stack
+
+PLATE, BAR = "S690QL", "42CrMo4+QT"  # grades that parts are made of where the design names none
+LEAST_LINK = 25.0  # link length over least thickness: a plate that is not bent in handling; common practice, no source
+LEAST_BORE = 0.2  # of the crank radius; common practice, no source
+SPIGOT = 0.6  # of the shaft's diameter: the bore locates, the bolts carry; common practice, no source
+LEAST_BOLT = 0.2  # of the bore; common practice, no source
+LEAST_WIDTH = 10.0  # link length over least width; common practice, no source
+
+
+class Ledger:
+    """Collects what was assumed while the sizes are settled."""
+
+    def __init__(self) -> None:
+        self.rows: list[Assumed] = []
+
+    def take(self, key: str, given: float | None, value: float, why: str, quantity: str = "length") -> float:
+        """The given value, or the proportioned one with a line that says so."""
+        if given is not None:
+            return given
+        self.rows.append(Assumed(key, value, quantity, why))
+        return value
+
+    def material(self, key: str, given: Material | None, name: str, catalogue: Catalogue) -> Material:
+        if given is not None:
+            return given
+        self.rows.append(Assumed(key, name, "text", "grade in common use for such parts; common practice, no source"))
+        return catalogue.materials[name]
+
+
+@dataclass(frozen=True, slots=True)
+class Demands:
+    """Loads of one side over crank angle in the link frame of a ccw machine, shock and share in: N, shapes (3, n), (n)."""
+
+    chain: Floats
+    pin: Floats
+    stop: Floats
+    tension: Floats
+    whole: Floats  # chain tension of the whole machine
+    torque: Floats
+
+
+def demands(past: History, share: float, shock: float) -> Demands:
+    s = past.state
+    c, sn = np.cos(s.link_direction), np.sin(s.link_direction)
+
+    def in_link(x: Floats, y: Floats) -> Floats:
+        return np.stack([x * c + y * sn, -x * sn + y * c, np.zeros_like(x)]) * shock * share
+
+    return Demands(
+        in_link(-s.shaft_x, -s.shaft_y), in_link(s.pin_x, s.pin_y), s.stop_force * shock * share,
+        s.tension * shock * share, s.tension * shock, s.torque * shock * share,
+    )  # fmt: skip
+
+
+def first(candidates: Floats, use: Floats) -> float:
+    """The first candidate whose use of its capacity is at most 1; the least used if there is none."""
+    return float(candidates[index(use)])
+
+
+def index(use: Floats) -> int:
+    good = np.flatnonzero(use <= 1.0)
+    return int(good[0] if good.size else np.argmin(use))
+
+
+def round_up(value: float, step: float) -> float:
+    return math.ceil(value / step - 1e-9) * step
+
+
+@dataclass(frozen=True, slots=True)
+class Pair:
+    """Thickness of the link with the pins that go with it."""
+
+    thickness: float
+    crank: float
+    chain: float
+    middle: float
+    use: float  # the largest share of a capacity that is used; above 1 no preferred size is enough
+
+    @property
+    def rank(self) -> tuple[float, float]:
+        """What is enough comes first, then what is smallest."""
+        return max(self.use, 1.0), max(self.crank, self.chain) ** 2 * self.thickness
+
+
+def sink_depth(d: Floats) -> Floats:
+    """Depth (mm) of the sink for the crank pin's head: a quarter of the pin and room below the face."""
+    return np.asarray(np.maximum(2.0, np.round(0.22 * d * 2.0) / 2.0) + 0.3)
+
+
+def next_up(sizes: Floats, wanted: float) -> float:
+    above = sizes[sizes >= wanted - 1e-9]
+    return float(above[0]) if above.size else wanted
+
+
+class Basis:
+    """One design with the loads and sizes that its proportions come from."""
+
+    def __init__(self, design: Design, past: History, catalogue: Catalogue) -> None:
+        self.design, self.past = design, past
+        self.ledger = Ledger()
+        self.step = 25.4 / 16.0 if design.identity.units == "us" else 1.0
+        take, z = self.ledger.material, catalogue
+        self.disc_material = take("disc.material", design.disc.material, PLATE, z)
+        self.link_material = take("link.material", design.link.material, PLATE, z)
+        self.crank_material = take("crank_pin.material", design.crank_pin.material, BAR, z)
+        self.chain_pin_material = take("chain_pin.material", design.chain_pin.material, BAR, z)
+        self.stop_material = take("stop.material", design.stop.material, BAR, z)
+        self.end_material = take("chain_end.material", design.chain_end.material, BAR, z)
+        gap = 0.5 if design.mechanism.link_length < 60.0 else 1.0
+        self.gap = self.ledger.take(
+            "clearances.plate_gap", design.plate_gap, gap, "running gap of such plates; common practice, no source"
+        )
+        t = design.targets
+        self.ultimate, self.yields = t.ultimate, t.yield_
+        self.pins = np.array(preferred("pin_diameters", design.identity.units))
+        self.plates = np.array(preferred("plate_thicknesses", design.identity.units))
+
+        kind = self.stack(1.0, 1.0, 1.0)
+        self.headed = kind.crank_pin_headed
+        self.loads = demands(past, kind.load_share, t.shock_factor)
+
+    def stack(self, end_width: float, link: float, disc: float) -> Stack:
+        d = self.design
+        return make_stack(d.mechanism.stack, d.targets.load_share, d.chain, end_width, self.gap, link, disc)
+
+    def pin_use(self, d: Floats, material: Material, shear: float, moment: float) -> Floats:
+        """Largest use of a pin held at one end, over diameters."""
+        f_u = np.array([material.ultimate_strength(float(x)) for x in d])
+        f_y = np.array([material.yield_strength(float(x)) for x in d])
+        v = shear / pins.pin_shear_capacity(d, f_u)
+        m = moment / pins.first_yield_bending_capacity(d, f_y)
+        both = 1.0 / pins.shear_and_bending_factor(v, m)
+        return np.maximum(np.maximum(v * self.ultimate, m * self.yields), both * self.yields)
+
+    def bearing_use(
+        self, d: Floats, t: Floats | float, force: float, pin: Material, plate: Material, at: float, turns: bool
+    ) -> Floats:
+        f_y = np.array([min(pin.yield_strength(float(x)), plate.yield_strength(at)) for x in d])
+        capacity = eyes.turning_bearing(t, d, f_y) if turns else eyes.bearing(t, d, f_y)
+        return np.asarray(force * self.yields / np.maximum(capacity, 1e-9))

@@ -1,0 +1,229 @@
+"""Proportions of the link, its pins and the chain end."""
+
+from __future__ import annotations
+
+import math
+
+import numpy as np
+
+from loads.checks import eyes, pins
+from loads.checks.link import column_stress, section_stress
+from loads.proportions.basis import LEAST_LINK, LEAST_WIDTH, Basis, Pair, first, index, next_up, round_up, sink_depth
+from parts.hardware import retaining_ring
+from parts.sizes import ChainEndSizes, ChainPinSizes, CrankPinSizes, LinkSizes
+
+
+class LinkSide(Basis):
+    """Chain end, link and pins, in the order in which one size needs another."""
+
+    def _end_width(self) -> tuple[float, float, tuple[tuple[float, float], ...]]:
+        chain, wish = self.design.chain, self.design.chain_end
+        if chain.kind == "roller":
+            tongue = chain.tongue_width
+            natural = (chain.strands - 1) * chain.strand_pitch + tongue
+            width = self.ledger.take(
+                "chain_end.width", wish.width, natural, "fills the room between the chain's outermost plates"
+            )
+            slots = strand_slots(chain.strands, chain.strand_pitch, tongue)
+            if width > natural + 1e-9:
+                slots = (*slots, (natural / 2.0, width / 2.0))
+            return width, min(tongue, width), slots
+        plates, finger = chain.lacing[1], math.floor(chain.tongue_width * 0.97 * 20.0) / 20.0
+        slot = chain.plate_thickness * 1.05 + 0.1
+        natural = (plates + 1) * finger + plates * slot
+        width = self.ledger.take(
+            "chain_end.width",
+            wish.width,
+            round_up(natural, 0.5),
+            "a finger beside each plate of the chain's last link",
+        )
+        return width, finger, leaf_slots(plates, finger, slot)
+
+    def _link_and_pins(self, end_width: float) -> Pair:
+        wish = self.design
+        if wish.link.thickness is not None:
+            thicknesses = np.array([wish.link.thickness])
+        else:
+            least = max(3.0, wish.mechanism.link_length / LEAST_LINK)
+            thicknesses = self.plates[self.plates >= least] if least <= self.plates[-1] else self.plates[-1:]
+        pairs = []
+        for t in (float(x) for x in thicknesses):
+            crank, crank_use = self._crank_diameter(t, end_width)
+            journal, middle, chain_use = self._chain_diameters(t, end_width)
+            pairs.append(Pair(t, crank, journal, middle, max(crank_use, chain_use)))
+        best = min(pairs, key=lambda pair: pair.rank)
+        take = self.ledger.take
+        why = "smallest section at which the pins' shear, bending and bearing reach their targets"
+        take(
+            "link.thickness", wish.link.thickness, best.thickness, "plate at which pins and link are smallest together"
+        )
+        take("crank_pin.diameter", wish.crank_pin.diameter, best.crank, why)
+        take("chain_pin.diameter", wish.chain_pin.diameter, best.chain, why)
+        return best
+
+    def _crank_diameter(self, t: float, end_width: float) -> tuple[float, float]:
+        given = self.design.crank_pin.diameter
+        d = np.array([given]) if given is not None else self.pins
+        stack = self.stack(end_width, t, 10.0)
+        couple = -stack.pin_root_arm * self.loads.pin + stack.chain_offset * self.loads.chain
+        moment = float(np.max(np.linalg.norm(couple, axis=0)))
+        force = float(np.max(np.linalg.norm(self.loads.pin, axis=0)))
+        bearing_length = t - (sink_depth(d) if self.headed else 0.0)
+        use = self.pin_use(d, self.crank_material, force, moment)
+        use = np.maximum(
+            use,
+            self.bearing_use(
+                d, np.maximum(bearing_length, 0.0), force, self.crank_material, self.link_material, t, True
+            ),
+        )
+        if self.headed:  # four tenths of the plate stay under the head
+            use = np.where(bearing_length < 0.4 * t, np.maximum(use, 1.0 + sink_depth(d) / t), use)
+        i = index(use)
+        return float(d[i]), float(use[i])
+
+    def _chain_diameters(self, t: float, end_width: float) -> tuple[float, float, float]:
+        """Journal in the link, middle under the chain end, and the larger use of the two."""
+        given = self.design.chain_pin.diameter
+        d = np.array([given]) if given is not None else self.pins
+        m, whole = self.chain_pin_material, float(np.max(self.loads.whole))
+        side = float(np.max(self.loads.tension))
+        stack = self.stack(end_width, t, 10.0)
+        middle = self.pins
+        turning = self.bearing_use(middle, end_width, whole, m, self.end_material, end_width, True)
+        if stack.chain_pin_support == "double shear":
+            use = self.pin_use(d, m, side, side * t / 2.0)
+            gap = (stack.chain_plane_width - end_width) / 2.0
+            moment = float(pins.double_shear_moment(np.asarray(whole), t, end_width, gap))
+            f_y = np.array([m.yield_strength(float(x)) for x in middle])
+            f_u = np.array([m.ultimate_strength(float(x)) for x in middle])
+            v = side / pins.pin_shear_capacity(middle, f_u)
+            b = moment / pins.pin_bending_capacity(middle, f_y)
+            both = 1.0 / pins.shear_and_bending_factor(v, b)
+            later = moment / pins.replaceable_pin_bending_capacity(middle, f_y)
+            middle_use = np.max([v * self.ultimate, b * self.yields, both * self.yields, later, turning], axis=0)
+        else:
+            use = self.pin_use(d, m, side, side * stack.chain_plane_width / 2.0)
+            middle_use = np.maximum(self.pin_use(middle, m, side, side * end_width / 2.0), turning)
+        use = np.maximum(use, self.bearing_use(d, t, side, m, self.link_material, t, False))
+        i, k = index(use), index(middle_use)
+        journal, wanted = float(d[i]), float(middle[k])
+        if stack.chain_pin_support == "double shear":
+            wanted = max(wanted, journal + 2.0 * max(1.5, 0.1 * journal))
+        return journal, next_up(self.pins, wanted), float(max(use[i], middle_use[k]))
+
+    def _link(self, pair: Pair, end_width: float) -> LinkSizes:
+        t, m, f = pair.thickness, self.design.mechanism, self.loads
+        stack = self.stack(end_width, t, 10.0)
+        sink = float(sink_depth(np.array(pair.crank))) if self.headed else 0.0
+        least = max(
+            2.0 * pair.crank,
+            2.0 * pair.chain,
+            m.link_length / LEAST_WIDTH,
+            1.5 * self._head(pair.crank) + 1.5 if self.headed else 0.0,
+        )
+        w = np.arange(round_up(least, self.step), least + 400.0, self.step)
+        f_y, f_u = self.link_material.yield_strength(t), self.link_material.ultimate_strength(t)
+        size = np.linalg.norm(f.pin, axis=0)
+        towards_end = float(np.max(np.where(f.pin[0] <= 1e-9 * size, size, 0.0)))
+        use = np.zeros_like(w)
+        for d, thick, pull, tear in (
+            (pair.crank, t - sink, float(np.max(-f.pin[0])), towards_end),
+            (pair.chain, t, float(np.max(f.chain[0])), float(np.max(f.tension))),
+        ):
+            a = w / 2.0 - d / 2.0
+            net = eyes.tensile_rupture(thick, eyes.effective_width(thick, a), f_u)
+            out = eyes.shear_rupture(thick, a, d, f_u)
+            use = np.max([use, pull * self.ultimate / net, tear * self.ultimate / out], axis=0)
+        # transverse force stands against the distance to the flank, the same as to the end
+        out_of_plane, torsion = stack.chain_offset * f.chain[0], stack.chain_offset * f.chain[1]
+        bending = f.chain[1] * (m.link_length - m.stop_reach)
+        thrust = max(0.0, float(np.max(-f.chain[0])))
+        for i, width in enumerate(w):
+            stress = section_stress(f.chain[0], bending, out_of_plane, torsion, float(width), t)
+            strut = min(
+                float(column_stress(m.link_length * math.sqrt(12.0) / depth, f_y, self.link_material.youngs_modulus))
+                for depth in (t, float(width))
+            ) * width * t  # fmt: skip
+            euler = math.pi**2 * self.link_material.youngs_modulus * width * t**3 / (12.0 * m.link_length**2)
+            growth = 1.0 / max(1e-6, 1.0 - self.yields * thrust / euler)
+            couple = (
+                growth * 6.0 * float(np.max(np.abs(np.where(f.chain[0] < 0.0, out_of_plane, 0.0)))) / (width * t**2)
+            )
+            both = thrust / (width * t) + (couple if stack.chain_offset else 0.0)
+            use[i] = max(
+                use[i],
+                float(np.max(stress)) * self.yields / f_y,
+                thrust * self.yields / strut,
+                both * self.yields / f_y,
+            )
+            if use[i] <= 1.0:
+                break
+        else:
+            i = int(np.argmin(use))
+        width = self.ledger.take(
+            "link.width", self.design.link.width, float(w[i]),
+            "least width at which eyes, section at the stop and strut reach their targets",
+        )  # fmt: skip
+        head = self._head(pair.crank) if self.headed else 0.0
+        return LinkSizes(width, t, head + 1.0 if self.headed else 0.0, sink, self.link_material)
+
+    def _head(self, crank: float) -> float:
+        return round_up(1.4 * crank, 0.5)
+
+    def _crank_pin(self, pair: Pair) -> CrankPinSizes:
+        head = self._head(pair.crank) if self.headed else 0.0
+        thick = float(sink_depth(np.array(pair.crank))) - 0.3 if self.headed else 0.0
+        return CrankPinSizes(pair.crank, head, thick, self.crank_material)
+
+    def _chain_pin(self, pair: Pair) -> ChainPinSizes:
+        ring = retaining_ring(pair.middle)
+        collar = round_up(max(1.35 * pair.chain, pair.middle + 3.0), 0.5)
+        return ChainPinSizes(
+            pair.chain, pair.middle, collar, ring.groove_diameter, ring.groove_width,
+            max(1.5 * ring.groove_width, pair.middle - ring.groove_diameter), self.chain_pin_material,
+        )  # fmt: skip
+
+    def _chain_end(
+        self, pair: Pair, pin: ChainPinSizes, width: float, tongue: float, slots: tuple[tuple[float, float], ...]
+    ) -> ChainEndSizes:
+        chain, wish = self.design.chain, self.design.chain_end
+        own = self.ledger.take("chain_end.pin_diameter", wish.pin_diameter, chain.pin_diameter, "the chain's own pin")
+        force = float(np.max(self.loads.whole))
+        f_u = self.end_material.ultimate_strength(width)
+        meat = width - 2.0 * sum(b - a for a, b in slots)
+        least = max(1.6 * pair.middle, 2.0 * own, chain.plate_height if slots else 0.0)
+        h = np.arange(round_up(least, self.step), least + 300.0, self.step)
+        use = np.zeros_like(h)
+        for d, t in ((pair.middle, width), (own, meat)):
+            a = h / 2.0 - d / 2.0
+            net = eyes.tensile_rupture(t, eyes.effective_width(t, a), f_u)
+            out = eyes.shear_rupture(t, a, d, f_u)
+            use = np.max([use, force * self.ultimate / net, force * self.ultimate / out], axis=0)
+        height = first(h, use)
+        reach = 0.525 * chain.plate_height + 1.0
+        beside = max(pair.middle / 2.0 + 0.35 * pair.middle, pin.collar_diameter / 2.0 + 2.0)
+        length = math.ceil((beside + reach) / chain.pitch) * chain.pitch
+        return ChainEndSizes(width, height, length, own, tongue, slots, height / 2.0 + reach, self.end_material)
+
+
+def leaf_slots(plates: int, finger: float, slot: float) -> tuple[tuple[float, float], ...]:
+    """Where the slots for a leaf chain's plates lie, as distances from the block's middle (mm), both sides alike.
+
+    ``plates`` slots with a finger between each two; an odd number has one in the middle.
+    """
+    rows = [(0.0, slot / 2.0)] if plates % 2 else []
+    at = slot / 2.0 + finger if plates % 2 else finger / 2.0
+    for _ in range(plates // 2):
+        rows.append((at, at + slot))
+        at += slot + finger
+    return tuple(rows)
+
+
+def strand_slots(strands: int, pitch: float, tongue: float) -> tuple[tuple[float, float], ...]:
+    """Slots between the tongues of a roller chain's strands, as distances from the block's middle (mm)."""
+    if strands == 1:
+        return ()
+    gap = pitch - tongue
+    if strands % 2 == 0:
+        return ((0.0, gap / 2.0),)
+    return ((tongue / 2.0, tongue / 2.0 + gap),)

@@ -1,0 +1,103 @@
+"""Proportions of the stop: a post where one is enough, else a block."""
+
+from __future__ import annotations
+
+import math
+
+import numpy as np
+
+from loads.checks import pins
+from loads.checks.stop import bolt_share, contact_modulus, line_contact_yield_force
+from loads.proportions.basis import Basis, first, round_up
+from parts.design import Assumed
+from parts.hardware import cap_screws, dowel_diameters
+from parts.sizes import LinkSizes, StopSizes
+from parts.stop_layout import block_hole_offsets, stop_center
+
+
+class StopSide(Basis):
+    """The stop, and where its holes are in the disc."""
+
+    def _stop(self, link: LinkSizes, bore: float) -> StopSizes:
+        wish = self.design.stop
+        force = float(np.max(self.loads.stop))
+        arm, depth = self.gap + link.thickness / 2.0, link.thickness
+        height = self.ledger.take(
+            "stop.height", wish.height, self.gap + link.thickness, "as high as the link's face towards the chain"
+        )
+        d = np.array([wish.diameter]) if wish.diameter is not None else self.pins[self.pins >= min(6.0, self.pins[-1])]
+        weaker = np.array(
+            [min(self.stop_material.yield_strength(float(x)), self.link_material.yield_strength(depth)) for x in d]
+        )
+        modulus = contact_modulus(self.stop_material, self.link_material)
+        contact = np.array(
+            [float(line_contact_yield_force(depth, x / 2.0, modulus, float(f))) for x, f in zip(d, weaker, strict=True)]
+        )
+        use = np.maximum(self.pin_use(d, self.stop_material, force, force * arm), force * self.yields / contact)
+        post = first(d, use)
+        if wish.style is not None:
+            style = wish.style
+        else:
+            seat = StopSizes("post", post, 0.0, 0.0, height, 0.0, "", 0.0, 0.0, self.stop_material)
+            fits = bool(np.min(use) <= 1.0) and post <= 1.25 * link.width and self.clears_bore(seat, link, bore)
+            style = "post" if fits else "block"
+            self.ledger.rows.append(
+                Assumed(
+                    "stop.style", style, "text",
+                    "a post where one of at most 1.25 of the link's width bears the contact and clears the bore",
+                )
+            )  # fmt: skip
+        if style == "post":
+            diameter = self.ledger.take(
+                "stop.diameter", wish.diameter, post, "smallest at which contact, shear and bending reach their targets"
+            )
+            return StopSizes("post", diameter, 0.0, 0.0, height, 0.0, "", 0.0, 0.0, self.stop_material)
+        return self._block(force, arm, height, link, bore)
+
+    def _block(self, force: float, arm: float, height: float, link: LinkSizes, bore: float) -> StopSizes:
+        wish, material = self.design.stop, self.stop_material
+        m, depth = self.design.mechanism, link.thickness
+        dowels = np.array(dowel_diameters())
+        f_u = np.array([material.ultimate_strength(3.0 * float(x)) for x in dowels])
+        dowel = first(dowels, force * self.ultimate / (2.0 * pins.pin_shear_capacity(dowels, f_u)))
+        room = 2.0 * min(m.stop_reach, m.link_length - m.stop_reach)
+        widths = [wish.width] if wish.width is not None else list(np.arange(round_up(8.0, self.step), 200.0, self.step))
+        for width in (float(x) for x in widths):
+            tension = force * arm * bolt_share(width) * self.yields
+            bolt = next((s for s in cap_screws() if s.stress_area * s.yield_strength >= tension), cap_screws()[-1])
+            # holes a quarter from the edges and half the block apart, each with its web
+            hole = max(dowel, bolt.clearance_hole)
+            for_holes = 2.0 * hole + 4.0 * max(2.0, 0.25 * hole)
+            f_y = material.yield_strength(width)
+            weaker = min(f_y, self.link_material.yield_strength(depth))
+            length = max(
+                6.0 * force * arm * self.yields / (f_y * width**2),
+                force * self.yields / (weaker * depth),
+                1.5 * force * math.sqrt(3.0) * self.yields / (f_y * width),
+                for_holes,
+            )  # fmt: skip
+            clear = self.clears_bore(
+                StopSizes("block", 0.0, length, width, height, dowel, bolt.thread, bolt.clearance_hole, 0.0, material),
+                link,
+                bore,
+            )
+            if width >= for_holes and length <= max(room, for_holes) and clear:
+                break
+        why = "least foot at which dowels, bolts and bending reach their targets"
+        width = self.ledger.take("stop.width", wish.width, float(width), why)
+        length = self.ledger.take("stop.length", wish.length, round_up(length, self.step), why)
+        return StopSizes(
+            "block", 0.0, length, width, height, dowel, bolt.thread, bolt.clearance_hole, bolt.tapping_hole, material
+        )
+
+    def clears_bore(self, stop: StopSizes, link: LinkSizes, bore: float) -> bool:
+        holes = self.stop_holes(link, stop)
+        return all(math.hypot(x, y) - (d + bore) / 2.0 >= max(2.0, 0.25 * max(d, bore)) for x, y, d in holes)
+
+    def stop_holes(self, link: LinkSizes, stop: StopSizes) -> list[tuple[float, float, float]]:
+        """x, y and diameter of the stop's holes in the disc of a ccw machine."""
+        (x, y), direction = stop_center(self.design.mechanism, link.width, stop)
+        if stop.style == "post":
+            return [(x, y, stop.diameter)]
+        c, s = math.cos(direction), math.sin(direction)
+        return [(x + a * c - b * s, y + a * s + b * c, d) for a, b, d in block_hole_offsets(stop)]
