@@ -19,6 +19,7 @@ from parts.quantities import show
 
 GOVERNING, TIGHTEST = 3, 2
 MEMORY = "from memory"
+ONE_SIDE = ("crank_disc", "swing_link", "stop", "crank_pin", "chain_pin")  # drawn as they are behind the chain
 BAR_ENDS_AT = 3.0  # factor over target at which the margin bar is full
 
 Values = dict[str, Any]
@@ -44,9 +45,13 @@ def page(e: Examination, masses: Mapping[str, float] | None = None) -> Values:
         "key_figures": key_figures(e),
         "curve": _markup(cycle_picture(e)),
         "positions": [
-            {"name": name, "angle": angle(float(theta)), "picture": _markup(mechanism_picture(e, f"at-{name}", name, float(theta)))}
+            {
+                "name": name,
+                "angle": angle(float(theta)),
+                "picture": _markup(mechanism_picture(e, f"at-{name}", name, float(theta))),
+            }
             for name, theta in (("catch", at.catch), ("hold", at.hold))
-        ],  # fmt: skip
+        ],
         "sections": [_section(e, key, shown) for key in section_keys(e)],
         "frame": {
             "picture": _markup(frame_picture(e)),
@@ -93,7 +98,7 @@ def _section(e: Examination, key: str, shown: Shown) -> Values:
         "key": key,
         "title": part_title(e, key),
         "made": part,
-        "twin": len(e.stack.sides) > 1 and part is not None and part.key in ("crank_disc", "swing_link", "stop", "crank_pin"),
+        "twin": len(e.stack.sides) > 1 and key in ONE_SIDE,
         "picture": None if picture is None else _markup(picture),
         "captions": [row_text(e, row) for row in worst_rows(e, key)],
         "rows": _load_values(e, key, shown),
@@ -195,7 +200,9 @@ def from_memory(e: Examination) -> list[str]:
         z.disc.material, z.link.material, z.stop.material, z.crank_pin.material, z.chain_pin.material, z.chain_end.material
     ]  # fmt: skip
     found += [f"material {m.name}: {m.source}" for m in materials if not m.confirmed]
-    found += [f"{row.part}, {row.check}: {row.source}" for row in e.checks if MEMORY in row.source and row.part != "chain"]
+    found += [
+        f"{row.part}, {row.check}: {row.source}" for row in e.checks if MEMORY in row.source and row.part != "chain"
+    ]
     return list(dict.fromkeys(found))
 
 

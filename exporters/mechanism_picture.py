@@ -13,9 +13,9 @@ from exporters.shown import Shown, angle
 from exporters.site_places import AT_SHEAVE, place, spring_side, worst_rows
 from loads.examine import Examination, directions
 from loads.linkage import State, state
-from parts.assembly import placed, pose
+from parts.assembly import PlacedPart, placed, pose
 from parts.making import turn_of
-from parts.outline import Part, Plate, Point, Turned
+from parts.outline import Part, Point, Turned
 
 ROOM = (400.0, 380.0)
 TURN = 30.0  # radius of a moment's arrow
@@ -62,7 +62,7 @@ def scene(e: Examination, theta: float) -> Scene:
         meets = (pin[0] + near * math.cos(phi), pin[1] + near * math.sin(phi))
     points = [put((-e.sizes.disc.outer_diameter / 2,) * 2), put((e.sizes.disc.outer_diameter / 2,) * 2), put(pin)]
     points.append(put(meets))
-    body = [svg.line(put(pin), put(meets), "chain")]
+    body: list[str] = []
     labels = []
     if whole:
         c = put(center)
@@ -75,16 +75,22 @@ def scene(e: Examination, theta: float) -> Scene:
         far = Shown(e.design.identity.units).quantity(math.hypot(*center), "length")
         labels.append(_off(put(pin), put(meets), f"sheave {far} away"))
     first = {part.key: part for part in reversed(e.parts)}
-    copies = {}
+    copies: dict[str, PlacedPart] = {}
     for copy in placed(first.values(), at):
         copies.setdefault(copy.part.key, copy)
     body += [_drawn(copies[key].part, copies[key].at, k) for key in DRAWN if key in copies]
+    body.append(svg.line(put(pin), put(meets), "chain"))
     crank = (float(at.link.x), float(at.link.y))
     body += [svg.line(put((0.0, 0.0)), put(crank), "centre"), svg.line(put(crank), put(pin), "centre")]
+    # letters stand beside the link, whichever way it points
+    aside = k * e.sizes.link.width / 2 + 9.0
+    along = float(at.link.rotation)
+    off = (-aside * math.sin(along), -aside * math.cos(along))
+    off = off if off[1] < -0.5 * aside or off[0] < 0.0 else (-off[0], -off[1])
     for name, p in (("O", (0.0, 0.0)), ("A", crank), ("B", pin)):
         x, y = put(p)
         body.append(svg.circle((x, y), 2.5, "dot"))
-        labels.append(svg.Label(x, y - 15.0, (name,), "middle"))
+        labels.append(svg.Label(x + off[0], y + off[1], (name,), "middle"))
     return Scene(body, points, labels, k, whole, put(meets))
 
 
@@ -123,7 +129,7 @@ def _drawn(part: Part, at: tuple[float, float, float, float], k: float) -> str:
         return svg.circle(put((0.0, 0.0)), k * max(step.diameter for step in part.body.steps) / 2, "pin")
     kind = {"crank_disc": "disc", "stop": "pin"}.get(part.key, "body")
     holes: list[str] = []
-    if isinstance(part.body, Plate) and part.key == "crank_disc":
+    if part.key == "crank_disc":
         holes = [svg.circle(put(h.center), k * h.diameter / 2, "edge") for h in part.body.holes if h.name == "bore"]
     return svg.outline(part.body.outline, put, k, kind) + "".join(holes)
 
@@ -169,6 +175,8 @@ def frame_picture(e: Examination) -> str:
     labels = svg.settled(choices, busy)
     corner = (max(x for x, _ in points), _lowest(points, labels) + 30.0)
     body += scale_bar(found.scale, shown, corner, points)
-    text = "The machine at the hold, seen from the front, with the largest load at each place, whichever case it is in: "
+    text = (
+        "The machine at the hold, seen from the front, with the largest load at each place, whichever case it is in: "
+    )
     text += "; ".join(row_text(e, row) for row in rows) + "."
     return svg.picture("frame", "Forces into the frame", text, body, points, labels)

@@ -93,7 +93,9 @@ def _plate_picture(e: Examination, part: Part, plate: Plate, rows: list[LoadRow]
         span = _length(size, largest)
         run = (span * fx / size, -span * fy / size)
         pushed = row.site in PUSHED
-        tail, tip = ((site[0] - run[0], site[1] - run[1]), site) if pushed else (site, (site[0] + run[0], site[1] + run[1]))
+        tail, tip = (
+            ((site[0] - run[0], site[1] - run[1]), site) if pushed else (site, (site[0] + run[0], site[1] + run[1]))
+        )
         body.append(svg.arrow(tail, tip, acts_at=site))
         points += [tail, tip]
         busy += svg.along(tail, tip)

@@ -139,7 +139,10 @@ def around(center: Point, r: float, lines: tuple[str, ...]) -> list[Label]:
 
 def along(tail: Point, tip: Point, pieces: int = 8) -> list[Point]:
     """Points on an arrow that labels keep off."""
-    return [(tail[0] + (tip[0] - tail[0]) * i / pieces, tail[1] + (tip[1] - tail[1]) * i / pieces) for i in range(pieces + 1)]
+    return [
+        (tail[0] + (tip[0] - tail[0]) * i / pieces, tail[1] + (tip[1] - tail[1]) * i / pieces)
+        for i in range(pieces + 1)
+    ]
 
 
 def settled(choices: Iterable[Sequence[Label]], busy: Sequence[Point]) -> list[Label]:

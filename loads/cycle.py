@@ -5,16 +5,18 @@ Leading axes of the machines broadcast; nothing is picked off a grid: events are
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, fields
 
 import numpy as np
 
-from loads.linkage import Linkage, State, chain_line, free_line, lift, seated_chain_pin_at, seated_line, state
+from loads.linkage import Linkage, State, free_line, lift, seated_chain_pin_at, seated_line, state
 from loads.roots import bracketed_root, first_down_crossing, refined_peak
 from loads.spring_law import spring_energy
 from parts.design import Floats
 
 SCAN = 144  # cells in which a sign change is looked for over a turn; a coarse look, refined afterwards
+CHUNK = 256  # machines in work at once: they stay in the processor's cache and in bounds of memory
 STAGE = 90  # cells a stage in which the highest point is looked for
 
 
@@ -113,7 +115,7 @@ _PEAKS = (
 
 def cycle(machine: Linkage) -> Cycle:
     """Events, peaks and largest loads of each machine. Machines that have no cycle come out as NaN."""
-    if machine.shape and machine.shape[0] > 256:
+    if machine.shape and machine.shape[0] > CHUNK:
         return _in_chunks(machine)
     with np.errstate(invalid="ignore"):
         return _cycle(machine)
@@ -184,8 +186,7 @@ def _chosen(machine: Linkage, catch: Floats, x: Floats) -> Floats:
     return np.stack(rows, axis=-2)
 
 
-def _in_chunks(machine: Linkage, rows: int = 256) -> Cycle:
-    """Many machines a few hundred at a time: what is in work stays in the processor's cache and in bounds."""
+def _in_chunks(machine: Linkage, rows: int = CHUNK) -> Cycle:
     parts = [cycle(machine.chunk(slice(i, i + rows))) for i in range(0, machine.shape[0], rows)]
     joined = {f.name: np.concatenate([getattr(p, f.name) for p in parts]) for f in fields(Cycle) if f.name != "events"}
     when = {f.name: np.concatenate([getattr(p.events, f.name) for p in parts]) for f in fields(Events)}
@@ -211,9 +212,25 @@ def trace(machine: Linkage, figures: Cycle, step: float = np.radians(0.5)) -> St
     return state(machine, trace_angles(figures, step), figures.events.catch)
 
 
-def seated_radius(machine: Linkage) -> Floats:
-    """|OB| in mm while the link is seated: the second arm."""
-    return np.hypot(*seated_chain_pin_at(machine, np.zeros(machine.shape)))
+def curves(machine: Linkage, figures: Cycle, step: float, names: Sequence[str]) -> tuple[Floats, dict[str, Floats]]:
+    """Many machines over crank angle: the angles (n) and, for each name of ``State``, values of shape (..., n).
+
+    The angles run from 0 to the last machine's release by ``step`` rad; behind its own release a machine has NaN.
+    """
+    last = float(np.nanmax(figures.events.release))
+    theta = np.arange(0.0, last + step / 2.0, step)
+    found = {name: np.empty((*machine.shape, len(theta))) for name in names}
+    rows = [slice(None)] if not machine.shape else [slice(i, i + CHUNK) for i in range(0, machine.shape[0], CHUNK)]
+    for some in rows:
+        part = machine.chunk(some) if machine.shape else machine
+        catch = np.asarray(figures.events.catch)[some] if machine.shape else figures.events.catch
+        release = np.asarray(figures.events.release)[some] if machine.shape else figures.events.release
+        x = np.broadcast_to(theta, (*part.shape, len(theta)))
+        with np.errstate(invalid="ignore"):
+            s = state(part, x, catch)
+            beyond = x > np.asarray(release)[..., None]
+        for name in names:
+            found[name][some] = np.where(beyond, np.nan, getattr(s, name))
+    return theta, found
 
 
-__all__ = ["Cycle", "Events", "chain_line", "cycle", "events", "seated_radius", "trace", "trace_angles"]

@@ -19,6 +19,8 @@ LEAST_LINK = 25.0  # link length over least thickness: a plate that is not bent 
 LEAST_BORE = 0.2  # of the crank radius; common practice, no source
 SPIGOT = 0.6  # of the shaft's diameter: the bore locates, the bolts carry; common practice, no source
 LEAST_BOLT = 0.2  # of the bore; common practice, no source
+LEAST_PIN = 20.0  # link length over least pin diameter; common practice, no source
+EDGE = 0.9  # of the crank pin: least material between its hole and the rim; common practice, no source
 LEAST_WIDTH = 10.0  # link length over least width; common practice, no source
 
 
@@ -127,7 +129,8 @@ class Basis:
         )
         t = design.targets
         self.ultimate, self.yields = t.ultimate, t.yield_
-        self.pins = np.array(preferred("pin_diameters", design.identity.units))
+        listed = np.array(preferred("pin_diameters", design.identity.units))
+        self.pins = listed[listed >= min(design.mechanism.link_length / LEAST_PIN, listed[-1])]
         self.plates = np.array(preferred("plate_thicknesses", design.identity.units))
 
         kind = self.stack(1.0, 1.0, 1.0)

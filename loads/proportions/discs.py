@@ -7,7 +7,7 @@ import math
 import numpy as np
 
 from loads.checks import pins
-from loads.proportions.basis import LEAST_BOLT, LEAST_BORE, SPIGOT, Pair, first, next_up, round_up
+from loads.proportions.basis import EDGE, LEAST_BOLT, LEAST_BORE, SPIGOT, Pair, first, next_up, round_up
 from loads.proportions.stops import StopSide
 from parts.hardware import CapScrew, cap_screw_for_hole, cap_screws
 from parts.sizes import DiscSizes, LinkSizes, StopSizes
@@ -145,7 +145,7 @@ class DiscSide(StopSide):
         r, f_u = self.design.mechanism.crank_radius, self.disc_material.ultimate_strength(t)
         tear = pin * self.ultimate / (1.2 * f_u * t) - pair.crank / 2.0
         net = pin * self.ultimate / (2.0 * t * f_u)
-        edge = max(0.6 * pair.crank, tear, net, 4.0)
+        edge = max(EDGE * pair.crank, tear, net, 5.0)
         rim = r + pair.crank / 2.0 + edge
         (x, y), direction = stop_center(self.design.mechanism, link.width, stop)
         if stop.style == "post":

@@ -58,11 +58,11 @@ class StopSide(Basis):
         wish, material = self.design.stop, self.stop_material
         m, depth = self.design.mechanism, link.thickness
         dowels = np.array(dowel_diameters())
-        f_u = np.array([material.ultimate_strength(3.0 * float(x)) for x in dowels])
-        dowel = first(dowels, force * self.ultimate / (2.0 * pins.pin_shear_capacity(dowels, f_u)))
         room = 2.0 * min(m.stop_reach, m.link_length - m.stop_reach)
         widths = [wish.width] if wish.width is not None else list(np.arange(round_up(8.0, self.step), 200.0, self.step))
         for width in (float(x) for x in widths):
+            shear = 2.0 * pins.pin_shear_capacity(dowels, material.ultimate_strength(width))
+            dowel = first(dowels, force * self.ultimate / shear)
             tension = force * arm * bolt_share(width) * self.yields
             bolt = next((s for s in cap_screws() if s.stress_area * s.yield_strength >= tension), cap_screws()[-1])
             # holes a quarter from the edges and half the block apart, each with its web

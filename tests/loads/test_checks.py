@@ -12,6 +12,7 @@ from hypothesis import strategies as st
 
 from loads.examine import Examination
 from loads.records import Check
+from parts.design import Floats
 from tests.starters import NAMES, changed, examined, text_of
 
 
@@ -113,7 +114,7 @@ def test_pin_moment_of_a_single_stack_is_force_times_arm(tmp_path: Path) -> None
     assert root.moment.shape == root.force.shape
 
 
-def _crank_pin(e: Examination) -> tuple[list[np.ndarray], list[np.ndarray]]:  # type: ignore[type-arg]
+def _crank_pin(e: Examination) -> tuple[list[Floats], list[Floats]]:
     journal = next(x for x in e.sites if (x.part, x.site) == ("crank_pin", "journal"))
     return [-column for column in journal.force.T], list(journal.moment.T)
 

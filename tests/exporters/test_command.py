@@ -1,0 +1,127 @@
+"""The command: its exit statuses, its messages, what it leaves alone."""
+
+from __future__ import annotations
+
+import json
+import subprocess
+import sys
+from pathlib import Path
+
+import pytest
+
+from exporters.command import main
+from exporters.starters import starters
+from tests.starters import changed, text_of
+
+
+def run(monkeypatch: pytest.MonkeyPatch, *words: str) -> int:
+    monkeypatch.setattr(sys, "argv", ["drawcrank", *words])
+    with pytest.raises(SystemExit) as stop:
+        main()
+    return int(stop.value.code or 0)
+
+
+Said = pytest.CaptureFixture[str]
+
+
+def test_start_lists_and_writes(tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: Said) -> None:
+    monkeypatch.chdir(tmp_path)
+    assert run(monkeypatch, "start") == 0
+    listed = capsys.readouterr().out
+    for starter in starters():
+        assert starter.name in listed
+    assert run(monkeypatch, "start", "soil-tamper") == 0
+    path = tmp_path / "soil-tamper.toml"
+    assert path.read_text(encoding="utf-8") == text_of("soil-tamper")
+    path.write_text("mine", encoding="utf-8")
+    assert run(monkeypatch, "start", "soil-tamper") == 3
+    assert path.read_text(encoding="utf-8") == "mine"
+    assert run(monkeypatch, "start", "soil-temper") == 2
+    assert "did you mean soil-tamper?" in capsys.readouterr().err
+
+
+@pytest.mark.parametrize("name", [s.name for s in starters()])
+def test_every_line_of_a_starter_says_what_it_does(name: str) -> None:
+    for line in text_of(name).splitlines():
+        if line.strip() and not line.startswith(("#", "[")) and line.strip() != "]":
+            assert "#" in line, line
+
+
+def test_check_says_the_verdict_first_and_exits_by_it(tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: Said) -> None:
+    path = tmp_path / "d.toml"
+    path.write_text(text_of("impact-rig"), encoding="utf-8")
+    assert run(monkeypatch, "check", str(path)) == 0
+    said = capsys.readouterr().out
+    assert said.startswith("HOLDS")
+    assert max(map(len, said.splitlines())) <= 80
+    assert "can maim" in said
+    path.write_text(changed("impact-rig", chain__designation='"LH1622"'), encoding="utf-8")
+    assert run(monkeypatch, "check", str(path)) == 1
+    assert capsys.readouterr().out.startswith("FALLS SHORT")
+    assert [p.name for p in tmp_path.iterdir()] == ["d.toml"]
+
+
+def test_check_as_json(tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: Said) -> None:
+    path = tmp_path / "d.toml"
+    path.write_text(text_of("seed-thrower"), encoding="utf-8")
+    assert run(monkeypatch, "check", str(path), "--json") == 0
+    document = json.loads(capsys.readouterr().out)
+    assert document["holds"] is True
+    assert document["format"] == 1
+
+
+def test_a_design_that_cannot_be_used(tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: Said) -> None:
+    path = tmp_path / "d.toml"
+    path.write_text(text_of("impact-rig").replace('"86 mm"', '"86 N"').replace("stop_reach", "stop_reech"), encoding="utf-8")
+    for verb in ("check", "build"):
+        assert run(monkeypatch, verb, str(path)) == 2
+        said = capsys.readouterr()
+        assert said.out == ""
+        assert "mechanism.link_length" in said.err
+        assert "stop_reach" in said.err
+        assert "nothing was written" in said.err
+    assert [p.name for p in tmp_path.iterdir()] == ["d.toml"]
+    assert run(monkeypatch, "check", str(tmp_path / "absent.toml")) == 2
+    assert "absent.toml" in capsys.readouterr().err
+
+
+def test_a_place_that_cannot_be_written(tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: Said) -> None:
+    path = tmp_path / "d.toml"
+    path.write_text(text_of("seed-thrower"), encoding="utf-8")
+    assert run(monkeypatch, "build", str(path), "--to", str(path / "inside a file")) == 3
+    assert "Traceback" not in capsys.readouterr().err
+    assert run(monkeypatch, "start", "seed-thrower", "--to", str(tmp_path / "no such folder" / "d.toml")) == 3
+
+
+@pytest.mark.parametrize("words", [["--help"], ["start", "--help"], ["check", "--help"], ["build", "--help"]])
+def test_help_is_something_to_act_on(words: list[str], monkeypatch: pytest.MonkeyPatch, capsys: Said) -> None:
+    monkeypatch.setenv("COLUMNS", "80")
+    assert run(monkeypatch, *words) == 0
+    said = capsys.readouterr().out
+    assert "drawcrank" in said
+    assert max(map(len, said.splitlines())) <= 80
+
+
+def test_check_never_loads_the_solid_modeller_nor_what_only_build_needs(tmp_path: Path) -> None:
+    path = tmp_path / "d.toml"
+    path.write_text(text_of("impact-rig"), encoding="utf-8")
+    code = (
+        "import sys\nsys.argv = ['drawcrank', 'check', sys.argv[1]]\nfrom exporters.command import main\n"
+        "try:\n    main()\nexcept SystemExit:\n    pass\n"
+        "heavy = {'cadquery', 'OCP', 'ezdxf', 'trimesh', 'scipy', 'jinja2', 'matplotlib'} & set(sys.modules)\n"
+        "print('LOADED', sorted(heavy))"
+    )
+    done = subprocess.run([sys.executable, "-c", code, str(path)], capture_output=True, text=True, check=True)
+    assert done.stdout.splitlines()[-1] == "LOADED []"
+
+
+def test_messages_go_to_standard_error_and_results_to_standard_output(tmp_path: Path) -> None:
+    path = tmp_path / "d.toml"
+    path.write_text(text_of("impact-rig").replace('"58 mm"', '"58 N"'), encoding="utf-8")
+    code = "from exporters.command import main; main()"
+    done = subprocess.run(
+        [sys.executable, "-c", code, "check", str(path)], capture_output=True, text=True, check=False
+    )
+    assert done.returncode == 2
+    assert done.stdout == ""
+    assert done.stderr
