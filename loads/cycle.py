@@ -10,7 +10,7 @@ from dataclasses import dataclass, fields
 
 import numpy as np
 
-from loads.linkage import Linkage, State, free_line, lift, seated_chain_pin_at, seated_line, state
+from loads.linkage import Linkage, State, expanded_state, free_line, lift, seated_line, state
 from loads.roots import bracketed_root, first_down_crossing, refined_peak
 from loads.spring_law import spring_energy
 from parts.design import Floats
@@ -125,7 +125,8 @@ def _cycle(machine: Linkage) -> Cycle:
     at = events(machine)
     zero = np.zeros(machine.shape)
     coarse = np.concatenate([_span(zero, at.catch, STAGE), _span(at.catch, at.release, STAGE)[..., 1:]], axis=-1)
-    rough = state(machine, coarse, at.catch)
+    m, catch = machine.expanded(), at.catch[..., None]
+    rough = expanded_state(m, coarse, catch)
     ends = {"start": zero, "catch": at.catch, "end": at.first_end, "release": at.release}
 
     # rough places of the two peaks, between which the least lies
@@ -139,10 +140,10 @@ def _cycle(machine: Linkage) -> Cycle:
         np.stack([ends[start] for _, start, _, _ in _PEAKS], -1),
         np.stack([ends[end] for _, _, end, _ in _PEAKS], -1),
     )
-    place, height = refined_peak(lambda x: _chosen(machine, at.catch, x), low, high)
+    place, height = refined_peak(lambda x: _chosen(m, catch, x), low, high)
     lower = np.asarray(height[..., 8] > height[..., 7])[..., None] + np.array(7)
 
-    hold = state(machine, at.hold[..., None], at.catch)
+    hold = expanded_state(m, at.hold[..., None], catch)
     draw_at_hold = hold.draw[..., 0]
     energy = spring_energy(machine.spring, draw_at_hold)
     return Cycle(
@@ -178,9 +179,9 @@ def _highest(x: Floats, f: Floats, start: Floats, end: Floats) -> Floats:
     return np.take_along_axis(x, index, -1)[..., 0]
 
 
-def _chosen(machine: Linkage, catch: Floats, x: Floats) -> Floats:
+def _chosen(m: Linkage, catch: Floats, x: Floats) -> Floats:
     """Values at x (..., k, cuts): in each of the k rows the quantity that is looked for there."""
-    s = state(machine, x.reshape(*x.shape[:-2], -1), catch)
+    s = expanded_state(m, x.reshape(*x.shape[:-2], -1), catch)
     found = {name: getattr(s, name).reshape(x.shape) for name in {row[0] for row in _PEAKS}}
     rows = [factor * found[name][..., row, :] for row, (name, _, _, factor) in enumerate(_PEAKS)]
     return np.stack(rows, axis=-2)
@@ -232,5 +233,3 @@ def curves(machine: Linkage, figures: Cycle, step: float, names: Sequence[str]) 
         for name in names:
             found[name][some] = np.where(beyond, np.nan, getattr(s, name))
     return theta, found
-
-

@@ -197,36 +197,123 @@ def lift(m: Linkage, line: ChainLine, theta: Floats) -> Floats:
 
 @dataclass(frozen=True, slots=True)
 class State:
-    """Everything over crank angle, frictionless. Vectors in the chain frame; mm, N, N·mm, rad."""
+    """Everything over crank angle, frictionless. Vectors in the chain frame; mm, N, N·mm, rad.
 
+    What the members feel is worked out from the pull when it is asked for, so that a search which looks at the torque
+    alone pays for no more.
+    """
+
+    machine: Linkage  # expanded to meet the crank angles
     crank_angle: Floats
     seated: np.ndarray[tuple[int, ...], np.dtype[np.bool_]]
+    line: ChainLine
     pull: Floats
     draw: Floats
-    tension: Floats
-    torque: Floats
-    friction_torque: Floats
-    link_angle: Floats  # λ
-    link_direction: Floats  # of A→B, from the start direction
-    chain_direction: Floats  # φ
-    pin_x: Floats  # force of the crank pin on the link
-    pin_y: Floats
-    stop_force: Floats  # N, along n
-    link_axial: Floats  # tension positive
-    link_bending: Floats
-    shaft_x: Floats  # force of the shaft on the disc
-    shaft_y: Floats
-    sheave_x: Floats  # force of the chain on the sheave
-    sheave_y: Floats
-    wrap: Floats
+    force: Floats  # of the spring, F
+    tension: Floats  # of the chain, T
+
+    @property
+    def torque(self) -> Floats:
+        """Drive torque M = T dp/dθ."""
+        return self.tension * self.line.arm
+
+    @property
+    def friction_torque(self) -> Floats:
+        """What rubbing adds to winding and takes from unwinding: bearing always, crank pin free, chain pin seated."""
+        m = self.machine
+        pins = np.where(self.seated, m.friction_chain_pin, m.friction_crank_pin)
+        return np.asarray(self.tension * (m.friction_bearing + pins * np.abs(1.0 - self.line.turning)))
+
+    @property
+    def _alpha(self) -> Floats:
+        """Chain line against B→A of the seated link."""
+        return self.line.direction - (self.crank_angle + self.machine.seat_angle)
+
+    @property
+    def lift(self) -> Floats:
+        """sin α: the part of the chain's pull across the link; zero while the link is free."""
+        return np.where(self.seated, np.sin(self._alpha), 0.0)
+
+    @property
+    def link_angle(self) -> Floats:
+        """λ, from A→O to A→B; that of a taut chain whether or not there is slack."""
+        return np.where(self.seated, self.machine.seat_angle, np.pi + self.line.direction - self.crank_angle)
+
+    @property
+    def link_direction(self) -> Floats:
+        """Of A→B, from the start direction."""
+        seated = self.crank_angle + np.pi + self.machine.seat_angle
+        return np.where(self.seated, seated, self.line.direction)
+
+    @property
+    def chain_direction(self) -> Floats:
+        return self.line.direction
+
+    @property
+    def stop_force(self) -> Floats:
+        """N, along n: moments about A give N d = T L sin α."""
+        m = self.machine
+        return np.asarray(self.tension * m.link_length * self.lift / m.stop_reach)
+
+    @property
+    def pin_x(self) -> Floats:
+        """Force of the crank pin on the link, −T·u − N·n."""
+        n = np.sin(self.crank_angle + self.machine.seat_angle)
+        return np.asarray(-self.tension * self.line.ux - self.stop_force * n)
+
+    @property
+    def pin_y(self) -> Floats:
+        n = -np.cos(self.crank_angle + self.machine.seat_angle)
+        return np.asarray(-self.tension * self.line.uy - self.stop_force * n)
 
     @property
     def pin_force(self) -> Floats:
-        return np.hypot(self.pin_x, self.pin_y)
+        """|T·u + N·n| = sqrt(T² + N² − 2 T N sin α), because u·n = −sin α."""
+        stop = self.stop_force
+        square = self.tension**2 + stop**2 - 2.0 * self.tension * stop * self.lift
+        return np.sqrt(np.maximum(square, 0.0))
+
+    @property
+    def link_axial(self) -> Floats:
+        """T cos α, tension positive."""
+        return self.tension * np.where(self.seated, -np.cos(self._alpha), 1.0)
+
+    @property
+    def link_bending(self) -> Floats:
+        """At the stop, T |sin α| (L − d)."""
+        m = self.machine
+        return np.asarray(self.tension * np.abs(self.lift) * (m.link_length - m.stop_reach))
+
+    @property
+    def shaft_x(self) -> Floats:
+        """Force of the shaft on the disc, −T·u."""
+        return -self.tension * self.line.ux
+
+    @property
+    def shaft_y(self) -> Floats:
+        return -self.tension * self.line.uy
+
+    @property
+    def sheave_x(self) -> Floats:
+        """Force of the chain on the sheave: T towards Q, F along the exit."""
+        return np.asarray(self.shaft_x + self.force * np.cos(self._exit))
+
+    @property
+    def sheave_y(self) -> Floats:
+        return np.asarray(self.shaft_y + self.force * np.sin(self._exit))
 
     @property
     def sheave_force(self) -> Floats:
         return np.hypot(self.sheave_x, self.sheave_y)
+
+    @property
+    def _exit(self) -> Floats:
+        """Direction in which the chain leaves the sheave: it does not change over the cycle."""
+        return -self.machine.wrap_side * self.machine.start_wrap
+
+    @property
+    def wrap(self) -> Floats:
+        return self.machine.start_wrap + self.machine.wrap_side * self.line.direction
 
 
 def state(machine: Linkage, theta: Floats, catch: Floats) -> State:
@@ -234,38 +321,21 @@ def state(machine: Linkage, theta: Floats, catch: Floats) -> State:
 
     Free up to and with the catch, seated behind it. T = F(x)/η; the slack is without tension.
     """
-    m = machine.expanded()
-    seated = theta > np.asarray(catch)[..., None]
-    ax, ay = crank_pin_at(m, theta)
-    bx, by = seated_chain_pin_at(m, theta)
-    line = chain_line(m, np.where(seated, bx, ax), np.where(seated, by, ay))
-    pull = line.drawn + np.where(seated, m.link_length, 0.0)
-    taut = pull >= m.slack - TAUT_WITHIN
-    draw = np.maximum(pull - m.slack, 0.0)
-    force = np.where(taut, spring_force(m.spring, draw), 0.0)
-    tension = force / m.efficiency
-    torque = tension * line.arm
+    return expanded_state(machine.expanded(), theta, np.asarray(catch)[..., None])
 
-    alpha = line.direction - (theta + m.seat_angle)  # chain line against B→A
-    sin_a, cos_a = np.where(seated, np.sin(alpha), 0.0), np.where(seated, -np.cos(alpha), 1.0)
-    stop = tension * m.link_length * sin_a / m.stop_reach
-    link_direction = np.where(seated, theta + np.pi + m.seat_angle, line.direction)
-    nx, ny = np.sin(theta + m.seat_angle), -np.cos(theta + m.seat_angle)
-    tx, ty = tension * line.ux, tension * line.uy
-    wrap = m.start_wrap + m.wrap_side * line.direction
-    # the chain leaves the sheave where the wrap ends: its direction does not change over the cycle
-    exit_direction = -m.wrap_side * m.start_wrap
-    pins = np.where(seated, m.friction_chain_pin, m.friction_crank_pin)
-    return State(
-        crank_angle=theta, seated=seated, pull=pull, draw=draw, tension=tension, torque=torque,
-        friction_torque=tension * (m.friction_bearing + pins * np.abs(1.0 - line.turning)),
-        link_angle=np.where(seated, m.seat_angle, np.pi + line.direction - theta),
-        link_direction=link_direction, chain_direction=line.direction,
-        pin_x=-tx - stop * nx, pin_y=-ty - stop * ny, stop_force=stop, link_axial=tension * cos_a,
-        link_bending=tension * np.abs(sin_a) * (m.link_length - m.stop_reach),
-        shaft_x=-tx, shaft_y=-ty,
-        sheave_x=-tx + force * np.cos(exit_direction), sheave_y=-ty + force * np.sin(exit_direction), wrap=wrap,
-    )  # fmt: skip
+
+def expanded_state(m: Linkage, theta: Floats, catch: Floats) -> State:
+    """``state`` for machines and catch that have been given the crank angles' axis already."""
+    seated = theta > catch
+    # of the crank pin while the link is free, of the chain pin while it is seated: a point fixed to the disc either way
+    x = m.crank_radius - np.where(seated, m.link_length * np.cos(m.seat_angle), 0.0)
+    y = np.where(seated, -m.link_length * np.sin(m.seat_angle), 0.0)
+    c, s = np.cos(theta), np.sin(theta)
+    line = chain_line(m, x * c - y * s, x * s + y * c)
+    pull = line.drawn + np.where(seated, m.link_length, 0.0)
+    draw = np.maximum(pull - m.slack, 0.0)
+    force = np.where(pull >= m.slack - TAUT_WITHIN, spring_force(m.spring, draw), 0.0)
+    return State(m, theta, seated, line, pull, draw, force, force / m.efficiency)
 
 
 def to_machine(m: Linkage, x: Floats, y: Floats) -> tuple[Floats, Floats]:

@@ -12,6 +12,8 @@ import numpy as np
 
 from parts.design import Floats
 
+SLOW = 14  # steps of false position before bisection takes over
+
 
 def first_down_crossing(x: Floats, f: Floats) -> tuple[Floats, Floats]:
     """Bracket of the first place where sampled ``f`` goes from above zero to zero or below.
@@ -27,35 +29,30 @@ def first_down_crossing(x: Floats, f: Floats) -> tuple[Floats, Floats]:
 
 
 def bracketed_root(function: Callable[[Floats], Floats], low: Floats, high: Floats, tolerance: float = 1e-13) -> Floats:
-    """Root of ``function`` in each bracket [low, high], by inverse quadratic interpolation guarded by bisection.
+    """Root of ``function`` in each bracket [low, high]: false position, with bisection where that is slow.
 
     All arrays have one shape; a NaN bracket gives NaN. ``tolerance`` is absolute, in the unit of the bracket.
-    Source: T. R. Chandrupatla, A new hybrid quadratic/bisection algorithm, Advances in Engineering Software 28 (1997).
+    Source: N. Anderson and A. Björck, A new high order method of regula falsi type, BIT 13 (1973).
     """
-    b, a = np.array(low, dtype=float), np.array(high, dtype=float)
+    a, b = np.array(low, dtype=float), np.array(high, dtype=float)
     fa, fb = function(a), function(b)
-    c, fc = a.copy(), fa.copy()
-    t = np.full_like(a, 0.5)
     best = np.where(np.abs(fa) < np.abs(fb), a, b)
-    for _ in range(80):
-        x = a + t * (b - a)
-        fx = function(x)
-        same = np.sign(fx) == np.sign(fa)
-        c, fc = np.where(same, a, b), np.where(same, fa, fb)
-        b, fb = np.where(same, b, a), np.where(same, fb, fa)
-        a, fa = x, fx
-        best = np.where(np.abs(fa) < np.abs(fb), a, b)
-        width = np.abs(b - a)
-        if not np.any((width > 2.0 * tolerance) & (np.where(np.abs(fa) < np.abs(fb), fa, fb) != 0.0)):
-            break
+    for step in range(90):
         with np.errstate(divide="ignore", invalid="ignore"):
-            xi = (a - b) / (c - b)
-            phi = (fa - fb) / (fc - fb)
-            t_quadratic = fa / (fb - fa) * fc / (fb - fc) + (c - a) / (b - a) * fa / (fc - fa) * fb / (fc - fb)
-            inside = (1.0 - np.sqrt(1.0 - xi) < phi) & (phi < np.sqrt(xi))
-            edge = np.minimum(0.5, tolerance / width)
-        t = np.where(inside & np.isfinite(t_quadratic), t_quadratic, 0.5)
-        t = np.clip(t, edge, 1.0 - edge)
+            x = b - fb * (b - a) / (fb - fa)
+        if step >= SLOW:  # far more than a smooth function takes
+            x = 0.5 * (a + b)
+        x = np.where((x - a) * (x - b) <= 0.0, x, np.where(np.isnan(b), b, 0.5 * (a + b)))
+        fx = function(x)
+        moved = np.abs(x - best)
+        best = x
+        crossed = fx * fb < 0.0
+        with np.errstate(divide="ignore", invalid="ignore"):
+            shrink = 1.0 - fx / fb
+        fa = np.where(crossed, fb, fa * np.where(shrink > 0.0, shrink, 0.5))
+        a, b, fb = np.where(crossed, b, a), x, fx
+        if not np.any((fx != 0.0) & (np.minimum(moved, np.abs(b - a)) > tolerance)):
+            break
     return best
 
 

@@ -20,7 +20,12 @@ def changed(name: str, **values: str | None) -> str:
     text = text_of(name)
     for where, value in values.items():
         table, key = where.split("__")
-        text = re.sub(rf"(?ms)(^\[{table}\]\n(?:(?!^\[)[^\n]*\n)*?){key} *=(?: \[ *(?:#[^\n]*)?\n.*?^\]|[^\n]*)\n", r"\1", text, count=1)
+        text = re.sub(
+            rf"(?ms)(^\[{table}\]\n(?:(?!^\[)[^\n]*\n)*?){key} *=(?: \[ *(?:#[^\n]*)?\n.*?^\]|[^\n]*)\n",
+            r"\1",
+            text,
+            count=1,
+        )
         if value is None:
             continue
         if f"[{table}]\n" in text:

@@ -19,9 +19,9 @@ def main() -> None:
     design, folder = Path(sys.argv[1]), Path(sys.argv[2])
     e = examine(design)
     import cadquery
-    import ezdxf
     import numpy as np
     import trimesh
+    from ezdxf.filemanagement import new, readfile
 
     folder.mkdir(parents=True)
     whole = cadquery.Assembly(name="assembly")
@@ -34,13 +34,13 @@ def main() -> None:
         points, triangles = shape.tessellate(0.02, 0.2)
         trimesh.Trimesh(np.array([p.toTuple() for p in points]), np.array(triangles))
         if isinstance(part.body, Plate):
-            document = ezdxf.new("R2000")
+            document = new("R2000")
             space = document.modelspace()
             space.add_lwpolyline(polygon(part.body, 0.05), close=True)
             for hole in part.body.holes:
                 space.add_circle(hole.center, hole.diameter / 2)
             document.saveas(folder / f"{part.name}.dxf")
-            ezdxf.readfile(folder / f"{part.name}.dxf").audit()
+            readfile(folder / f"{part.name}.dxf").audit()
     whole.export(str(folder / "assembly.step"))
 
 

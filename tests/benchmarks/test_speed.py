@@ -101,7 +101,9 @@ def test_build_against_the_bare_calls(tmp_path: Path) -> None:
     )
     build = _median(
         lambda: subprocess.run(
-            [_drawcrank(), "build", str(design), "--to", str(tmp_path / f"built{next(count)}")], check=True, capture_output=True
+            [_drawcrank(), "build", str(design), "--to", str(tmp_path / f"built{next(count)}")],
+            check=True,
+            capture_output=True,
         ),
         3,
     )

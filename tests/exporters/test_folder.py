@@ -66,9 +66,14 @@ def test_a_newcomer_gets_a_folder_for_each_starter(
     steps = {f"step/{who.number}-{p.name}-{who.revision}.step" for p in e.parts}
     assert steps | {f"step/{who.number}-assembly-{who.revision}.step"} == {p for p in listed if p.startswith("step/")}
     assert {p for p in listed if p.startswith("dxf/")} <= {p.replace("step", "dxf") for p in steps}
-    assert {"check.json", "cycle.csv", "bill_of_loads.csv", "bill_of_loads.json", "bill_of_loads.html", "parts_list.csv"} <= set(
-        listed
-    )
+    assert {
+        "check.json",
+        "cycle.csv",
+        "bill_of_loads.csv",
+        "bill_of_loads.json",
+        "bill_of_loads.html",
+        "parts_list.csv",
+    } <= set(listed)
     whole = read_back(out / f"step/{who.number}-assembly-{who.revision}.step")
     assert whole.solids == sum(p.quantity for p in e.parts)
     assert whole.valid
@@ -210,7 +215,10 @@ def test_a_real_limit_on_what_can_be_written(tmp_path: Path) -> None:
         "resource.setrlimit(resource.RLIMIT_FSIZE, (8000, 8000)); main()"
     )
     done = subprocess.run(
-        [sys.executable, "-c", code, "build", str(design), "--to", str(out)], capture_output=True, text=True, check=False
+        [sys.executable, "-c", code, "build", str(design), "--to", str(out)],
+        capture_output=True,
+        text=True,
+        check=False,
     )
     assert done.returncode == 3
     assert "Traceback" not in done.stderr
@@ -250,9 +258,10 @@ def test_a_kill_between_the_two_moves_is_put_right(tmp_path: Path) -> None:
     build_folder(examine(design), out, quiet)
     before = contents(out)
     out.rename(tmp_path / ".out.building-999999999-abc-old")
+    (tmp_path / ".out.building-999999999-abc-old" / "note.txt").write_text("x", encoding="utf-8")
+    e = examine(design)
     with pytest.raises(NotOurs):  # the old one is back first, and then guarded like any other
-        (tmp_path / ".out.building-999999999-abc-old" / "note.txt").write_text("x", encoding="utf-8")
-        build_folder(examine(design), out, quiet)
+        build_folder(e, out, quiet)
     (out / "note.txt").unlink()
     assert contents(out) == before
 

@@ -25,13 +25,25 @@ def test_a_starter_meets_its_targets(name: str, tmp_path: Path) -> None:
     e = examined(tmp_path, text_of(name))
     assert e.holds, short(e)
     wanted = {
-        ("chain", "tension"), ("crank_pin", "pin shear"), ("crank_pin", "pin bending"), ("crank_pin", "pin shear with bending"),
-        ("chain_pin", "pin shear"), ("chain_pin", "pin bending"), ("chain_pin", "pin shear with bending"),
-        ("swing_link", "net tension"), ("swing_link", "tear-out"), ("swing_link", "bearing"), ("chain_end", "net tension"),
-        ("crank_disc", "net tension"), ("crank_disc", "tear-out"), ("crank_disc", "bearing"),
-        ("swing_link", "axial force with bending"), ("swing_link", "strut about the thin side"), ("stop", "contact"),
+        ("chain", "tension"),
+        ("crank_pin", "pin shear"),
+        ("crank_pin", "pin bending"),
+        ("crank_pin", "pin shear with bending"),
+        ("chain_pin", "pin shear"),
+        ("chain_pin", "pin bending"),
+        ("chain_pin", "pin shear with bending"),
+        ("swing_link", "net tension"),
+        ("swing_link", "tear-out"),
+        ("swing_link", "bearing"),
+        ("chain_end", "net tension"),
+        ("crank_disc", "net tension"),
+        ("crank_disc", "tear-out"),
+        ("crank_disc", "bearing"),
+        ("swing_link", "axial force with bending"),
+        ("swing_link", "strut about the thin side"),
+        ("stop", "contact"),
         ("chain_end", "chain's own pin passes"),
-    }  # fmt: skip
+    }
     assert wanted <= {(c.part, c.check) for c in e.checks}
     assert all(c.method and c.source for c in e.checks)
     assert all(math.isfinite(c.demand) and math.isfinite(c.capacity) for c in e.checks)
@@ -49,30 +61,73 @@ def test_safety_factor_is_capacity_over_demand_and_no_demand_holds() -> None:
 
 WEAK: dict[str, tuple[str, dict[str, str | None], set[tuple[str, str]], set[str]]] = {
     # name: starter, changes, what must fall short, parts that alone may fall short
-    "thin link": ("impact-rig", {"link__thickness": '"4 mm"', "crank_pin__diameter": '"14 mm"', "chain_pin__diameter": '"14 mm"',
-                                 "link__width": '"28 mm"'},
-                  {("swing_link", "bearing")}, {"swing_link"}),
-    "slender link": ("soil-tamper", {"link__thickness": '"2 mm"', "link__width": '"16 mm"', "chain_pin__diameter": '"6 mm"',
-                                     "crank_pin__diameter": '"6 mm"'},
-                     {("swing_link", "strut about the thin side")}, {"swing_link", "stop"}),
-    "narrow link": ("impact-rig", {"link__width": '"18 mm"'},
-                    {("swing_link", "axial force with bending"), ("swing_link", "web")}, {"swing_link"}),
-    "soft pin": ("impact-rig", {"crank_pin__diameter": '"14 mm"', "crank_pin__material": '"S235JR"', "disc__thickness": '"15 mm"'},
-                 {("crank_pin", "pin bending"), ("crank_pin", "pin shear with bending")},
-                 {"crank_pin", "swing_link", "crank_disc"}),
-    "small chain": ("impact-rig", {"chain__designation": '"LH1622"', "chain_end__pin_diameter": None},
-                    {("chain", "tension")}, {"chain"}),
-    "short edge": ("impact-rig", {"disc__outer_diameter": '"135 mm"', "stop__width": '"18 mm"'},
-                   {("crank_disc", "web")}, {"crank_disc", "stop"}),
-    "thick pin in the chain": ("seed-thrower", {"chain_end__pin_diameter": '"3.6 mm"'},
-                               {("chain_end", "chain's own pin passes")}, {"chain_end"}),
-    "stop in the chain's plane": ("soil-tamper", {"stop__height": '"14 mm"'},
-                                  {("stop", "stays out of the chain's plane")}, {"stop", "chain", "chain_end", "chain_pin"}),
+    "thin link": (
+        "impact-rig",
+        {
+            "link__thickness": '"4 mm"',
+            "crank_pin__diameter": '"14 mm"',
+            "chain_pin__diameter": '"14 mm"',
+            "link__width": '"28 mm"',
+        },
+        {("swing_link", "bearing")},
+        {"swing_link"},
+    ),
+    "slender link": (
+        "soil-tamper",
+        {
+            "link__thickness": '"2 mm"',
+            "link__width": '"16 mm"',
+            "chain_pin__diameter": '"6 mm"',
+            "crank_pin__diameter": '"6 mm"',
+        },
+        {("swing_link", "strut about the thin side")},
+        {"swing_link", "stop"},
+    ),
+    "narrow link": (
+        "impact-rig",
+        {"link__width": '"18 mm"'},
+        {("swing_link", "axial force with bending"), ("swing_link", "web")},
+        {"swing_link"},
+    ),
+    "soft pin": (
+        "impact-rig",
+        {"crank_pin__diameter": '"14 mm"', "crank_pin__material": '"S235JR"', "disc__thickness": '"15 mm"'},
+        {("crank_pin", "pin bending"), ("crank_pin", "pin shear with bending")},
+        {"crank_pin", "swing_link", "crank_disc"},
+    ),
+    "small chain": (
+        "impact-rig",
+        {"chain__designation": '"LH1622"', "chain_end__pin_diameter": None},
+        {("chain", "tension")},
+        {"chain"},
+    ),
+    "short edge": (
+        "impact-rig",
+        {"disc__outer_diameter": '"135 mm"', "stop__width": '"18 mm"'},
+        {("crank_disc", "web")},
+        {"crank_disc", "stop"},
+    ),
+    "thick pin in the chain": (
+        "seed-thrower",
+        {"chain_end__pin_diameter": '"3.6 mm"'},
+        {("chain_end", "chain's own pin passes")},
+        {"chain_end"},
+    ),
+    "stop in the chain's plane": (
+        "soil-tamper",
+        {"stop__height": '"14 mm"'},
+        {("stop", "stays out of the chain's plane")},
+        {"stop", "chain", "chain_end", "chain_pin"},
+    ),
     "overdrawn spring": ("seed-thrower", {"spring__most_draw": '"80 mm"'}, {("spring", "most draw")}, {"spring"}),
     "thin post": ("soil-tamper", {"stop__diameter": '"5 mm"'}, {("stop", "contact")}, {"stop"}),
-    "sheave too near": ("seed-thrower", {"sheave__center": '["105 mm", "-10 mm"]'},
-                        {("chain_end", "clear of the sheave at the start")}, {"chain_end", "sheave", "chain", "swing_link"}),
-}  # fmt: skip
+    "sheave too near": (
+        "seed-thrower",
+        {"sheave__center": '["105 mm", "-10 mm"]'},
+        {("chain_end", "clear of the sheave at the start")},
+        {"chain_end", "sheave", "chain", "swing_link"},
+    ),
+}
 
 
 @pytest.mark.parametrize("name", WEAK)
@@ -120,18 +175,39 @@ def _crank_pin(e: Examination) -> tuple[list[Floats], list[Floats]]:
 
 
 STRENGTH = {
-    "pin shear", "pin bending", "pin bending, replaceable", "pin shear with bending", "net tension", "tear-out", "bearing",
-    "axial force with bending", "shear", "strut about the thin side", "strut in the plane of the disc",
-    "strut with the chain's offset couple", "contact", "dowel shear", "block shear", "block bending", "bolt tension",
-    "post shear", "post bending", "post shear with bending",
-}  # fmt: skip
+    "pin shear",
+    "pin bending",
+    "pin bending, replaceable",
+    "pin shear with bending",
+    "net tension",
+    "tear-out",
+    "bearing",
+    "axial force with bending",
+    "shear",
+    "strut about the thin side",
+    "strut in the plane of the disc",
+    "strut with the chain's offset couple",
+    "contact",
+    "dowel shear",
+    "block shear",
+    "block bending",
+    "bolt tension",
+    "post shear",
+    "post bending",
+    "post shear with bending",
+}
 
 
 @settings(max_examples=40, deadline=None, suppress_health_check=[HealthCheck.function_scoped_fixture])
 @given(
-    radius=st.floats(20, 120), ratio=st.floats(1.25, 1.9), force=st.floats(100, 15000), beta=st.floats(-3, 6),
-    twin=st.booleans(), turn=st.sampled_from(["ccw", "cw"]), units=st.sampled_from(["metric", "us"]),
-)  # fmt: skip
+    radius=st.floats(20, 120),
+    ratio=st.floats(1.25, 1.9),
+    force=st.floats(100, 15000),
+    beta=st.floats(-3, 6),
+    twin=st.booleans(),
+    turn=st.sampled_from(["ccw", "cw"]),
+    units=st.sampled_from(["metric", "us"]),
+)
 def test_proportions_meet_the_checks_that_they_are_made_from(
     tmp_path: Path, radius: float, ratio: float, force: float, beta: float, twin: bool, turn: str, units: str
 ) -> None:

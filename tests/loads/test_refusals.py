@@ -13,16 +13,27 @@ from parts.problems import DesignRefused
 from tests.starters import changed, examined
 
 CANNOT_EXIST = {
-    "wrap over 270": (changed("impact-rig", sheave__exit_angle='"60 deg"'), ("sheave.exit_angle",), "within 0 and 270 deg"),
-    "table too short": (
-        changed("impact-rig", spring__table='[["0 mm", "0 N"], ["100 mm", "10 kN"]]'), ("spring.table",), "largest draw, 172",
+    "wrap over 270": (
+        changed("impact-rig", sheave__exit_angle='"60 deg"'),
+        ("sheave.exit_angle",),
+        "within 0 and 270 deg",
     ),
-    "slack never taken up": (changed("seed-thrower", chain__slack='"95 mm"'), ("chain.slack",), "less than the whole pull, 92"),
+    "table too short": (
+        changed("impact-rig", spring__table='[["0 mm", "0 N"], ["100 mm", "10 kN"]]'),
+        ("spring.table",),
+        "largest draw, 172",
+    ),
+    "slack never taken up": (
+        changed("seed-thrower", chain__slack='"95 mm"'),
+        ("chain.slack",),
+        "less than the whole pull, 92",
+    ),
     "two at once": (
         changed("impact-rig", sheave__exit_angle='"60 deg"', spring__table='[["0 mm", "0 N"], ["100 mm", "10 kN"]]'),
-        ("sheave.exit_angle", "spring.table"), "",
+        ("sheave.exit_angle", "spring.table"),
+        "",
     ),
-}  # fmt: skip
+}
 
 
 @pytest.mark.parametrize("name", CANNOT_EXIST)
