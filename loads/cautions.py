@@ -7,14 +7,16 @@ import math
 from loads.cycle import Cycle
 from loads.records import Check
 from parts.design import Design
+from parts.quantities import show
+from parts.sizes import Sizes
 
 
-def cautions(design: Design, figures: Cycle, checks: tuple[Check, ...]) -> tuple[str, ...]:
+def cautions(design: Design, figures: Cycle, sizes: Sizes, checks: tuple[Check, ...]) -> tuple[str, ...]:
     """One sentence a caution, the general ones first."""
-    energy = float(figures.stored_energy) / 1000.0
+    energy = show(float(f"{float(figures.stored_energy):.3g}"), "energy", design.identity.units)
     at = figures.events
     rows = [
-        f"Stored energy: at the hold the spring holds {energy:.0f} J. It can maim or kill without warning.",
+        f"Stored energy: at the hold the spring holds {energy}. It can maim or kill without warning.",
         "Keep clear of the line of fire and of the chain's plane whenever the spring may be drawn.",
         "Unwind the spring and lock the drive out before reaching in (ISO 14118: unexpected start-up).",
         "Work behind a guard and with a second person; reduce risk in the order that ISO 12100 gives.",
@@ -41,7 +43,12 @@ def cautions(design: Design, figures: Cycle, checks: tuple[Check, ...]) -> tuple
         rows.append(
             f"The ratings of chain {design.chain.designation} are from memory: confirm them with the maker's certificate."
         )
-    memory = sorted({row.source for row in checks if "from memory" in row.source})
+    parts = (sizes.disc, sizes.link, sizes.stop, sizes.crank_pin, sizes.chain_pin, sizes.chain_end)
+    memory = sorted({p.material.name for p in parts if not p.material.confirmed})
     if memory:
-        rows.append("Values from memory stand behind some factors; confirm them with certificates before building.")
+        rows.append(
+            f"The strengths of {', '.join(memory)} are from memory: confirm them with certificates before building."
+        )
+    if any("from memory" in row.source for row in checks):
+        rows.append("Some checks stand on other values from memory; their sources say which.")
     return tuple(rows)

@@ -203,8 +203,8 @@ def trace_angles(figures: Cycle, step: float = np.radians(0.5)) -> Floats:
         [figures.first_peak_at, figures.second_peak_at, figures.middle_least_at, at.catch, at.null, at.hold, end]
     )
     angles = np.sort(np.concatenate([steps, marks[(marks >= 0.0) & (marks <= end)]]))
-    # two that print alike are one: the later is dropped, the release is kept
-    keep = np.asarray(np.diff(np.round(np.degrees(angles), 6), prepend=-1.0) > 0.0)
+    # two that print alike are one: the last is kept, so that the release is
+    keep = np.asarray(np.diff(np.round(np.degrees(angles), 6), append=np.inf) > 0.0)
     return np.asarray(angles[keep])
 
 

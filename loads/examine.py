@@ -91,8 +91,22 @@ def examine(path: Path) -> Examination:
     return Examination(
         design=design, machine=machine, figures=figures, past=past, sizes=sizes, stack=stack, parts=parts, sites=sites,
         loads=load_rows(past, sites), checks=checks, findings=findings,
-        assumed=(*design.assumed, *rubbing, *proportioned), cautions=cautions(design, figures, checks),
+        assumed=(*_as_solved(design, machine, len(stack.sides) > 1), *rubbing, *proportioned),
+        cautions=cautions(design, figures, sizes, checks),
     )  # fmt: skip
+
+
+def _as_solved(design: Design, machine: Linkage, shares: bool) -> tuple[Assumed, ...]:
+    """What the reading assumed, with the values that only the mechanism gives, and without what plays no part in it."""
+    half_a_wrap = float(machine.start_direction) + np.pi
+    rows = []
+    for row in design.assumed:
+        if row.key == "sheave.exit_angle":
+            angle = float(np.mod(half_a_wrap + np.pi, 2.0 * np.pi) - np.pi)
+            rows.append(replace(row, value=angle, quantity="angle"))
+        elif row.key != "targets.load_share" or shares:
+            rows.append(row)
+    return tuple(rows)
 
 
 def with_friction(design: Design, machine: Linkage, sizes: Sizes) -> tuple[Linkage, tuple[Assumed, ...]]:

@@ -124,7 +124,15 @@ def _source(row: Mapping[str, object] | None, own: Mapping[str, object]) -> str:
     if row is None:
         return "the design file"
     source = str(row.get("source", ""))
+    memory = [key for key in _keys(row, "from_memory") if key not in own]
+    if memory:
+        source += f"; {', '.join(memory)} from memory, confirm with the maker"
     return f"{source}; {', '.join(own)} from the design file" if own else source
+
+
+def _keys(row: Mapping[str, object], name: str) -> list[str]:
+    value = row.get(name)
+    return [str(key) for key in value] if isinstance(value, (list, tuple)) else []
 
 
 def _number(row: Mapping[str, object], key: str) -> float | None:

@@ -82,6 +82,14 @@ def dowel_diameters() -> tuple[float, ...]:
     return tuple(sorted(float(row["diameter"]) for row in _table()["dowel"]))
 
 
+def property_class_source() -> str:
+    """Where the screws' strength comes from, for the bill."""
+    row = _table()["property_class"]
+    return f"{row['source']}, class {row['name']}" + (
+        "" if row["confirmed"] else " (from memory, confirm with the maker's certificate)"
+    )
+
+
 def retaining_ring(shaft: float) -> RetainingRing:
     """The ring for a shaft of ``shaft`` mm: the largest listed that is not larger than it."""
     rows = sorted(_table()["retaining_ring"], key=lambda r: float(r["shaft"]))

@@ -10,7 +10,7 @@ import numpy as np
 
 from loads.members import History, Members
 from loads.records import Check, SiteHistory
-from parts.design import Design, Floats
+from parts.design import Design, Floats, Material
 from parts.outline import Part, Plate
 from parts.sizes import Sizes
 from parts.stack import Stack
@@ -90,3 +90,11 @@ class Context:
 def length_of(vector: Floats) -> Floats:
     """Length (n) of vectors (3, n)."""
     return np.asarray(np.linalg.norm(vector, axis=0))
+
+
+STEELS = frozenset({"structural steel", "quenched and tempered plate", "through-hardening bar", "case-hardening bar"})
+
+
+def rule_note(material: Material) -> str:
+    """What is to be said where a rule of a structural-steel standard meets another metal."""
+    return "" if material.kind in STEELS else f"a rule for structural steel, applied to {material.name}"

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from loads.checks.context import AISC_D5, EN_PINS, Context, length_of
+from loads.checks.context import AISC_D5, EN_PINS, Context, length_of, rule_note
 from loads.records import Check
 from parts.design import Floats, Material
 from parts.shape import edge_distance
@@ -103,11 +103,7 @@ def eye_checks(c: Context, eye: Eye, force: Floats) -> list[Check]:
     net = tensile_rupture(eye.thickness, b_e, f_u)
     weaker = min(f_y, eye.pin_yield)
     t, targets = eye.thickness, c.design.targets
-    note = (
-        ""
-        if "steel" in eye.material.kind or "plate" in eye.material.kind or "bar" in eye.material.kind
-        else (f"a rule for structural steel, applied to {eye.material.name}")
-    )
+    note = rule_note(eye.material)
     if eye.turns:
         press, how = turning_bearing(t, eye.pin_diameter, weaker), "0.6 t d f_y, a joint that turns"
     else:

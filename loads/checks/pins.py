@@ -6,7 +6,7 @@ import math
 
 import numpy as np
 
-from loads.checks.context import BEAM, EN_PINS, Context, length_of
+from loads.checks.context import BEAM, EN_PINS, Context, length_of, rule_note
 from loads.records import Check
 from parts.design import Floats, Material
 
@@ -67,14 +67,6 @@ def shear_and_bending_factor(shear_use: Floats, bending_use: Floats) -> Floats:
     return np.where(use > 0.0, 1.0 / np.maximum(use, 1e-300), np.inf)
 
 
-def _note(material: Material) -> str:
-    return (
-        ""
-        if "steel" in material.kind or "bar" in material.kind
-        else f"a rule for structural steel, applied to {material.name}"
-    )
-
-
 def pin_checks(
     c: Context, part: str, site: str, d: float, material: Material, shear: Floats, moment: Floats, held: bool
 ) -> list[Check]:
@@ -98,7 +90,7 @@ def pin_checks(
             targets.ultimate,
             "0.6 A f_u, one shear plane",
             EN_PINS,
-            _note(material),
+            rule_note(material),
         ),
         c.worst_check(
             part,
@@ -110,7 +102,7 @@ def pin_checks(
             targets.yield_,
             bending_method,
             source,
-            _note(material),
+            rule_note(material),
         ),
     ]
     if not held:
@@ -125,7 +117,7 @@ def pin_checks(
                 1.0,
                 "0.8 W_el f_y at the working load, γ = 1",
                 EN_PINS,
-                _note(material),
+                rule_note(material),
             )
         )
     factor = shear_and_bending_factor(shear / shear_capacity, moment / bending_capacity)
@@ -141,7 +133,7 @@ def pin_checks(
             targets.yield_,
             "(M/M_R)² + (F/F_R)² = 1, all loads growing together",
             EN_PINS,
-            _note(material),
+            rule_note(material),
         )
     )
     return rows

@@ -10,7 +10,7 @@ from loads.checks.context import BEAM, EN_PINS, Context, length_of
 from loads.checks.pins import first_yield_bending_capacity, pin_shear_capacity, shear_and_bending_factor
 from loads.records import Check
 from parts.design import Floats, Material
-from parts.hardware import cap_screw
+from parts.hardware import cap_screw, property_class_source
 from parts.stop_layout import HOLES_AT
 
 HERTZ = "Johnson, Contact Mechanics, §4.2 and §6.1"
@@ -181,6 +181,6 @@ def _block(c: Context, push: Floats) -> list[Check]:
             "N",
             targets.yield_,
             "the bolt nearer the link, block tipping about its far edge",
-            "ISO 898-1, statics",
+            property_class_source(),
         ),
     ]
