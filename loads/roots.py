@@ -37,22 +37,23 @@ def bracketed_root(function: Callable[[Floats], Floats], low: Floats, high: Floa
     a, b = np.array(low, dtype=float), np.array(high, dtype=float)
     fa, fb = function(a), function(b)
     best = np.where(np.abs(fa) < np.abs(fb), a, b)
+    open_ = np.isfinite(best) & (fa != 0.0) & (fb != 0.0)
     for step in range(90):
+        if not np.any(open_):
+            break
         with np.errstate(divide="ignore", invalid="ignore"):
             x = b - fb * (b - a) / (fb - fa)
-        if step >= SLOW:  # far more than a smooth function takes
-            x = 0.5 * (a + b)
-        x = np.where((x - a) * (x - b) <= 0.0, x, np.where(np.isnan(b), b, 0.5 * (a + b)))
+        # far more steps than a smooth function takes, or a step out of the bracket
+        x = np.where(((x - a) * (x - b) <= 0.0) & (step < SLOW), x, 0.5 * (a + b))
         fx = function(x)
         moved = np.abs(x - best)
-        best = x
+        best = np.where(open_, x, best)
         crossed = fx * fb < 0.0
         with np.errstate(divide="ignore", invalid="ignore"):
             shrink = 1.0 - fx / fb
         fa = np.where(crossed, fb, fa * np.where(shrink > 0.0, shrink, 0.5))
         a, b, fb = np.where(crossed, b, a), x, fx
-        if not np.any((fx != 0.0) & (np.minimum(moved, np.abs(b - a)) > tolerance)):
-            break
+        open_ = open_ & (fx != 0.0) & (np.minimum(moved, np.abs(b - a)) > tolerance)
     return best
 
 

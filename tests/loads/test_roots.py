@@ -58,3 +58,9 @@ def test_peaks_smooth_kinked_and_cut_off() -> None:
     )
     assert place == pytest.approx([0.123456, 0.7, 1.0, 0.4], abs=1e-6)
     assert height == pytest.approx([0.0, 0.0, 1.0, 1.6], abs=1e-5)
+
+
+def test_a_root_that_is_found_stays_while_others_are_looked_for() -> None:
+    k = np.array([1.375, 0.125])
+    root = bracketed_root(lambda x: np.tanh(k * x) + 0.1 * x**3, np.full(2, -4.0), np.full(2, 5.0))
+    assert root == pytest.approx([0.0, 0.0], abs=1e-11)
