@@ -10,6 +10,7 @@ import numpy as np
 
 from exporters.bill import bill_csv, bill_html, bill_json
 from exporters.check_json import check_document, dump
+from exporters.confirm import RECORD_VOLUME_LIMIT, Confirmation, confirm
 from exporters.cycle_csv import cycle_csv
 from exporters.failure import ToolFailure
 from exporters.manifest import may_be_replaced, write_manifest
@@ -49,18 +50,19 @@ def build_folder(e: Examination, target: Path, report: Report) -> None:
     recover(target)
     may_be_replaced(target)
     need_modeller()
-    steps = list(_steps(e))
+    confirmed: list[dict[str, object]] = []
+    steps = list(_steps(e, confirmed))
     with beside(target) as folder:
         for i, (what, write) in enumerate(steps):
             report(what, i, len(steps))
             write(folder)
         report("manifest", len(steps), len(steps))
-        write_manifest(folder, e.design)
+        write_manifest(folder, e.design, confirmed)
         put_in_place(folder, target)
 
 
-def _steps(e: Examination) -> Iterator[Step]:
-    """What is written, one step a file or a part, in the order of writing."""
+def _steps(e: Examination, confirmed: list[dict[str, object]]) -> Iterator[Step]:
+    """What is written, one step a file or a part, in the order of writing; ``confirmed`` takes a row a solid."""
     from parts.solids import named_faces, solid
 
     shapes: dict[str, Shape] = {}
@@ -69,7 +71,6 @@ def _steps(e: Examination) -> Iterator[Step]:
 
     def write_part(part: Part) -> Callable[[Path], None]:
         def write(folder: Path) -> None:
-            from exporters.confirm import confirm
             from exporters.step import write_part as write_step
 
             shape = solid(part)
@@ -78,6 +79,7 @@ def _steps(e: Examination) -> Iterator[Step]:
             if not found.holds:
                 raise Unconfirmed("; ".join(found.failing))
             shapes[part.name], faces[part.name] = shape, named
+            confirmed.append(_confirmed(found))
             masses[part.name] = found.volume * part.density * 1e-9
             path = folder / "step" / f"{stem(e, part.name)}.step"
             path.parent.mkdir(exist_ok=True)
@@ -133,6 +135,18 @@ def _steps(e: Examination) -> Iterator[Step]:
     yield text("bill_of_loads.json", lambda: bill_json(e))
     yield text("bill_of_loads.html", lambda: bill_html(e))
     yield text("parts_list.csv", lambda: parts_list_csv(e, masses))
+
+
+def _confirmed(found: Confirmation) -> dict[str, object]:
+    """How a solid agrees with its mesh and with the outline or profile that it was made from; differences are relative."""
+    return {
+        "part": found.part,
+        "volume_mm3": float(f"{found.volume:.7g}"),
+        "mesh_watertight": found.watertight,
+        "mesh_volume_difference": float(f"{found.mesh_volume_difference:.1e}"),
+        "mesh_center_difference": float(f"{found.mesh_center_difference:.1e}"),
+        "outline_volume_within": RECORD_VOLUME_LIMIT,
+    }
 
 
 def _put(path: Path, text: str) -> None:

@@ -5,6 +5,7 @@ from __future__ import annotations
 import hashlib
 import json
 import sys
+from collections.abc import Mapping, Sequence
 from importlib.metadata import PackageNotFoundError, version
 from pathlib import Path
 from typing import Any
@@ -26,8 +27,8 @@ def digest_of(path: Path) -> str:
     return hashlib.sha256(path.read_bytes()).hexdigest()
 
 
-def write_manifest(folder: Path, design: Design) -> None:
-    """Write the manifest of all files that are in ``folder``."""
+def write_manifest(folder: Path, design: Design, solids: Sequence[Mapping[str, object]] = ()) -> None:
+    """Write the manifest of all files that are in ``folder``, with how each solid was confirmed."""
     files = sorted(p for p in folder.rglob("*") if p.is_file() and p.name != NAME)
     document = {
         "format": FORMAT,
@@ -37,6 +38,7 @@ def write_manifest(folder: Path, design: Design) -> None:
             "digest": design.digest,
         },
         "versions": _versions(),
+        "solids": list(solids),
         "files": [
             {"path": p.relative_to(folder).as_posix(), "size": p.stat().st_size, "sha256": digest_of(p)} for p in files
         ],

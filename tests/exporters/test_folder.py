@@ -74,6 +74,8 @@ def test_a_newcomer_gets_a_folder_for_each_starter(
         "bill_of_loads.html",
         "parts_list.csv",
     } <= set(listed)
+    assert [row["part"] for row in manifest["solids"]] == [p.name for p in e.parts]
+    assert all(row["mesh_watertight"] for row in manifest["solids"])
     whole = read_back(out / f"step/{who.number}-assembly-{who.revision}.step")
     assert whole.solids == sum(p.quantity for p in e.parts)
     assert whole.valid
