@@ -7,13 +7,14 @@ import math
 from loads.cycle import Cycle
 from loads.records import Check
 from parts.design import Design
-from parts.quantities import show
+from parts.quantities import KINDS, factor
 from parts.sizes import Sizes
 
 
 def cautions(design: Design, figures: Cycle, sizes: Sizes, checks: tuple[Check, ...]) -> tuple[str, ...]:
     """One sentence a caution, the general ones first."""
-    energy = show(float(f"{float(figures.stored_energy):.3g}"), "energy", design.identity.units)
+    unit = KINDS["energy"].metric if design.identity.units == "metric" else KINDS["energy"].us
+    energy = f"{float(figures.stored_energy) / factor('energy', unit):.3g} {unit}"
     at = figures.events
     rows = [
         f"Stored energy: at the hold the spring holds {energy}. It can maim or kill without warning.",

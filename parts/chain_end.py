@@ -56,7 +56,7 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
             frame="chain end",
             material=end.material.name,
             density=end.material.density,
-            stock=plate_stock(end.width),
+            stock=plate_stock(end.width, design.identity.units),
             process="cut, bore, ream" + (", mill the slots" if body.slots else ""),
             placements=(Placement("chain_end", (0.0, 0.0, end.width / 2)),),
             color=COLOR,

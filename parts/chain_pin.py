@@ -65,7 +65,7 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
             frame="link",
             material=pin.material.name,
             density=pin.material.density,
-            stock=bar_stock(max(s.diameter for s in body.steps)),
+            stock=bar_stock(max(s.diameter for s in body.steps), design.identity.units),
             process="turn, harden, grind",
             placements=(Placement("link", (design.mechanism.link_length, 0.0, 0.0)),),
             color=COLOR,

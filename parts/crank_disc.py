@@ -107,7 +107,7 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
             frame="disc",
             material=sizes.disc.material.name,
             density=sizes.disc.material.density,
-            stock=plate_stock(sizes.disc.thickness),
+            stock=plate_stock(sizes.disc.thickness, design.identity.units),
             process="cut, face, bore, drill, ream" + (", counterbore" if has_sinks(sizes) else ""),
             placements=copy.placements("disc", (0.0, 0.0)),
             color=COLOR,

@@ -58,7 +58,7 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
             frame="disc",
             material=pin.material.name,
             density=pin.material.density,
-            stock=bar_stock(max(p.diameter for p in pieces)),
+            stock=bar_stock(max(p.diameter for p in pieces), design.identity.units),
             process="turn, harden, grind",
             placements=copy.placements("disc", at),
             color=COLOR,

@@ -5,11 +5,13 @@ from __future__ import annotations
 import tomllib
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
+from fractions import Fraction
 from functools import lru_cache
 from importlib.resources import files
 from typing import Any, NamedTuple
 
 from parts.design import Design
+from parts.hardware import preferred
 from parts.outline import Line, Mark, Placement, Plate, Point, Step, Turned
 from parts.shape import mirrored
 from parts.stack import Stack
@@ -114,15 +116,32 @@ def _next(size: float, kept: list[float]) -> float:
     return next((s for s in kept if s >= size - 1e-9), size)
 
 
-def plate_stock(thickness: float) -> str:
-    """The plate to buy for a finished thickness in mm."""
+def plate_stock(thickness: float, units: str) -> str:
+    """The plate to buy for a finished thickness in mm, in the sizes of the unit system."""
+    if units == "us":
+        return f"plate {_inches(_next(thickness, list(preferred('plate_thicknesses', units))))}"
     return f"plate {_next(thickness, _stock()['plate']):g} mm"
 
 
-def bar_stock(diameter: float) -> str:
-    """The round bar to buy for a finished largest diameter in mm."""
+def bar_stock(diameter: float, units: str) -> str:
+    """The round bar to buy for a finished largest diameter in mm, in the sizes of the unit system."""
     table = _stock()
-    return f"round bar {_next(diameter + table['turning_allowance'], table['round_bar']):g} mm"
+    rough = diameter + table["turning_allowance"]
+    if units == "us":
+        return f"round bar {_inches(_next(rough, list(preferred('pin_diameters', units))))}"
+    return f"round bar {_next(rough, table['round_bar']):g} mm"
+
+
+def _inches(size: float) -> str:
+    """A bought size (mm) in inches: as a fraction to sixteenths where it is one."""
+    sixteenths = size / 25.4 * 16.0
+    if abs(sixteenths - round(sixteenths)) > 1e-6:
+        return f"{size / 25.4:.4g} in"
+    whole, rest = divmod(round(sixteenths), 16)
+    if not rest:
+        return f"{whole} in"
+    fraction = Fraction(rest, 16)
+    return f"{whole} {fraction} in" if whole else f"{fraction} in"
 
 
 def spacer_material() -> tuple[str, float]:

@@ -20,7 +20,7 @@ WORTH = 0.5  # mm of room beyond the gap under which the chain end needs no ring
 
 
 def _ring(
-    key: str, title: str, bore: float, outer: float, depth: float, thickness: float, stack: Stack, mover: str,
+    design: Design, key: str, title: str, bore: float, outer: float, depth: float, thickness: float, stack: Stack, mover: str,
     at: tuple[float, float],
 ) -> list[Part]:  # fmt: skip
     material, density = spacer_material()
@@ -34,7 +34,7 @@ def _ring(
             frame=mover,
             material=material,
             density=density,
-            stock=bar_stock(outer),
+            stock=bar_stock(outer, design.identity.units),
             process="turn, part off",
             placements=copy.placements(mover, at),
             color=COLOR,
@@ -51,7 +51,9 @@ def crank_spacers(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
     pin = sizes.crank_pin.diameter
     depth = stack.disc_face - stack.plate_gap + END_PLAY / 2
     at = flipped(crank_pin(design), turn_of(design))
-    return _ring(CRANK_KEY, "Spacer, disc to link", pin + LOOSE, WIDE * pin, depth, thickness, stack, "disc", at)
+    return _ring(
+        design, CRANK_KEY, "Spacer, disc to link", pin + LOOSE, WIDE * pin, depth, thickness, stack, "disc", at
+    )
 
 
 def chain_spacers(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
@@ -66,7 +68,7 @@ def chain_spacers(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
     outer = max(bore + 2 * LEAST_WALL, min(WIDE * pin.middle_diameter, end.height, clear))
     depth = end.width / 2 + END_PLAY / 2
     at = (design.mechanism.link_length, 0.0)
-    return _ring(CHAIN_KEY, "Spacer, link to chain end", bore, outer, depth, room - END_PLAY, stack, "link", at)
+    return _ring(design, CHAIN_KEY, "Spacer, link to chain end", bore, outer, depth, room - END_PLAY, stack, "link", at)
 
 
 def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:

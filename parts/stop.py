@@ -80,7 +80,9 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
                 frame="disc",
                 material=stop.material.name,
                 density=stop.material.density,
-                stock=bar_stock(stop.diameter) if is_post else plate_stock(stop.height),
+                stock=bar_stock(stop.diameter, design.identity.units)
+                if is_post
+                else plate_stock(stop.height, design.identity.units),
                 process="turn, grind" if is_post else "cut, mill the contact face, ream, tap",
                 placements=copy.placements("disc", at, angle),
                 color=COLOR,

@@ -98,7 +98,7 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
             frame="link",
             material=sizes.link.material.name,
             density=sizes.link.material.density,
-            stock=plate_stock(sizes.link.thickness),
+            stock=plate_stock(sizes.link.thickness, design.identity.units),
             process="cut, mill the stop flank, bore, ream" + (", counterbore" if handed else ""),
             placements=copy.placements("link", (0.0, 0.0)),
             color=COLOR,
