@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from parts.design import Design
+from parts.quantities import show
 from parts.sizes import Sizes
 from parts.stack import Stack
 
@@ -18,15 +19,20 @@ class Bought:
 
 
 def bought(design: Design, sizes: Sizes, stack: Stack) -> list[Bought]:
-    """Everything the machine needs that is not one of its made parts. Notes carry sizes in mm."""
+    """Everything the machine needs that is not one of its made parts. Notes are in the design's units."""
     sides, disc, stop, chain = len(stack.sides), sizes.disc, sizes.stop, design.chain
+    units = design.identity.units
+
+    def size(value: float) -> str:
+        return show(value, "length", units)
+
     strands = f", {chain.strands} strands" if chain.strands > 1 else ""
-    slack = f"{chain.slack:g} mm longer than taut" if chain.slack else "taut"
+    slack = f"{size(chain.slack)} longer than taut" if chain.slack else "taut"
     rows = [
         Bought("chain", "Chain", 1, f"{chain.designation}{strands}; cut to be {slack} at the start dead centre"),
         Bought(
             "chain_connecting_pin", "Connecting pin of the chain", 1,
-            f"the chain's own, diameter {sizes.chain_end.pin_diameter:g} mm, locked; joins chain and chain end",
+            f"the chain's own, diameter {size(sizes.chain_end.pin_diameter)}, locked; joins chain and chain end",
         ),
         Bought("hub_bolt", "Hub bolt", disc.bolt_count * sides, f"ISO 4762 {disc.bolt_thread}, head flush in the disc"),
     ]  # fmt: skip
@@ -46,7 +52,8 @@ def bought(design: Design, sizes: Sizes, stack: Stack) -> list[Bought]:
             ),
         ]
     if stack.chain_pin_support == "cantilever":
-        ring = f"DIN 471, for a shaft of {sizes.chain_pin.middle_diameter:g} mm"
+        standard = "DIN 471" if units == "metric" else "external, inch series"
+        ring = f"{standard}, for a shaft of {size(sizes.chain_pin.middle_diameter)}"
         rows.append(Bought("retaining_ring", "Retaining ring of the chain pin", 1, ring))
     return [
         *rows,
@@ -54,21 +61,25 @@ def bought(design: Design, sizes: Sizes, stack: Stack) -> list[Bought]:
             "sheave",
             "Sheave",
             1,
-            f"pitch radius {design.sheave.pitch_radius:g} mm, for {chain.designation}, on its own pin",
+            f"pitch radius {size(design.sheave.pitch_radius)}, for {chain.designation}, on its own pin",
         ),
         Bought("spring", "Spring", 1, _spring(design)),
         Bought(
             "hub",
             "Hub and shaft",
             sides,
-            f"to fit a bore of {disc.bore:g} mm; nothing proud of the disc's chain face",
+            f"to fit a bore of {size(disc.bore)}; nothing proud of the disc's chain face",
         ),
         Bought("motor", "Motor and drive", 1, "for the torque in the bill of loads; turns one way only"),
     ]
 
 
 def _spring(design: Design) -> str:
-    spring = design.spring
+    spring, units = design.spring, design.identity.units
     if spring.table is not None:
-        return f"force {spring.table[1, -1]:g} N at a draw of {spring.table[0, -1]:g} mm; see the design's table"
-    return f"preload {spring.preload:g} N, rate {spring.rate:g} N/mm"
+        force, draw = (
+            show(float(spring.table[1, -1]), "force", units),
+            show(float(spring.table[0, -1]), "length", units),
+        )
+        return f"force {force} at a draw of {draw}; see the design's table"
+    return f"preload {show(spring.preload, 'force', units)}, rate {show(spring.rate, 'rate', units)}"
