@@ -17,6 +17,7 @@ from parts.design import Floats
 
 SCAN = 144  # cells in which a sign change is looked for over a turn; a coarse look, refined afterwards
 CHUNK = 256  # machines in work at once: they stay in the processor's cache and in bounds of memory
+RIVAL = 0.02  # of a quantity's range
 STAGE = 90  # cells a stage in which the highest point is looked for
 
 
@@ -115,8 +116,10 @@ _PEAKS = (
 
 def cycle(machine: Linkage) -> Cycle:
     """Events, peaks and largest loads of each machine. Machines that have no cycle come out as NaN."""
-    if machine.shape and machine.shape[0] > CHUNK:
-        return _in_chunks(machine)
+    corners = 1 if machine.spring.draws is None else len(machine.spring.draws)
+    rows = max(1, CHUNK // (1 + corners // 16))  # a table of many corners takes its room too
+    if machine.shape and machine.shape[0] > rows:
+        return _in_chunks(machine, rows)
     with np.errstate(invalid="ignore"):
         return _cycle(machine)
 
@@ -126,6 +129,9 @@ def _cycle(machine: Linkage) -> Cycle:
     zero = np.zeros(machine.shape)
     coarse = np.concatenate([_span(zero, at.catch, STAGE), _span(at.catch, at.release, STAGE)[..., 1:]], axis=-1)
     m, catch = machine.expanded(), at.catch[..., None]
+    corners = _corners(m, catch, coarse)
+    if corners.shape[-1]:
+        coarse = np.sort(np.concatenate([coarse, np.minimum(corners, coarse[..., -1:])], axis=-1), axis=-1)
     rough = expanded_state(m, coarse, catch)
     ends = {"start": zero, "catch": at.catch, "end": at.first_end, "release": at.release}
 
@@ -140,7 +146,13 @@ def _cycle(machine: Linkage) -> Cycle:
         np.stack([ends[start] for _, start, _, _ in _PEAKS], -1),
         np.stack([ends[end] for _, _, end, _ in _PEAKS], -1),
     )
+    # the two highest humps of each: which is the higher shows when both are refined
     place, height = refined_peak(lambda x: _chosen(m, catch, x), low, high)
+    humps = (*height.shape[:-1], -1, len(_PEAKS))
+    place, height = place.reshape(humps), height.reshape(humps)
+    which = np.argmax(height, axis=-2)[..., None, :]
+    place = np.take_along_axis(place, which, -2)[..., 0, :]
+    height = np.take_along_axis(height, which, -2)[..., 0, :]
     lower = np.asarray(height[..., 8] > height[..., 7])[..., None] + np.array(7)
 
     hold = expanded_state(m, at.hold[..., None], catch)
@@ -160,17 +172,59 @@ def _cycle(machine: Linkage) -> Cycle:
     )  # fmt: skip
 
 
+def _corners(m: Linkage, catch: Floats, x: Floats) -> Floats:
+    """Crank angles (..., k) at which the slack is taken up or the draw passes a corner of the spring's table.
+
+    Each level is passed upwards in the free stage, upwards in the seated stage and, with a link that seats late,
+    downwards between; a passage that is not there comes out as 0. ``m`` and ``catch`` are expanded, ``x`` the samples.
+    """
+    knots = np.zeros(1) if m.spring.draws is None else m.spring.draws[:-1]
+    if m.spring.draws is None and not np.any(m.slack > 0.0):
+        return np.empty((*x.shape[:-1], 0))
+    level = m.slack + knots
+    pull = expanded_state(m, x, catch).pull[..., None, :]
+    angles = np.broadcast_to(x[..., None, :], (*level.shape, x.shape[-1]))
+    short = level[..., None] - pull
+    ways = (
+        first_down_crossing(angles[..., : STAGE + 1], short[..., : STAGE + 1]),
+        first_down_crossing(angles[..., STAGE:], short[..., STAGE:]),
+        first_down_crossing(angles, -short),
+    )
+    low, high = (np.concatenate([way[end] for way in ways], axis=-1) for end in (0, 1))
+    levels = np.concatenate([level] * len(ways), axis=-1)
+    places = bracketed_root(lambda t: levels - expanded_state(m, t, catch).pull, low, high)
+    return np.nan_to_num(places, nan=0.0)
+
+
 def _best_cells(x: Floats, f: Floats, start: Floats, end: Floats) -> tuple[Floats, Floats]:
-    """The two cells around the highest sample within [start, end], cut off at its ends."""
+    """The cells around the highest sample within [start, end] and around the next highest hump, cut off at its ends.
+
+    ``f`` has shape (..., k, n); the ends of the cells come back as (..., 2k), the highest first, or as (..., k) where no
+    next hump comes near the highest.
+    """
     start, end = start[..., None], end[..., None]
     x = np.broadcast_to(x, f.shape)
     inside = (x >= start) & (x <= end)
-    index = np.argmax(np.where(inside, f, -np.inf), axis=-1)[..., None]
+    g = np.where(inside, f, -np.inf)
+    edge = np.full((*g.shape[:-1], 1), -np.inf)
+    hump = inside & (g >= np.concatenate([edge, g[..., :-1]], -1)) & (g >= np.concatenate([g[..., 1:], edge], -1))
+    humps = np.where(hump, g, -np.inf)
+    first = np.argmax(humps, axis=-1)[..., None]
     # an interval that lies between two samples has none inside: take the cell that holds it
-    index = np.where(inside.any(-1, keepdims=True), index, np.argmax(x >= start, axis=-1)[..., None])
-    low = np.take_along_axis(x, np.maximum(index - 1, 0), -1)
-    high = np.take_along_axis(x, np.minimum(index + 1, x.shape[-1] - 1), -1)
-    return np.maximum(low, start)[..., 0], np.minimum(high, end)[..., 0]
+    first = np.where(inside.any(-1, keepdims=True), first, np.argmax(x >= start, axis=-1)[..., None])
+    here = np.arange(f.shape[-1])
+    others = np.where(np.abs(here - first) > 1, humps, -np.inf)
+    second = np.argmax(others, axis=-1)[..., None]
+    second = np.where(np.isfinite(np.take_along_axis(others, second, -1)), second, first)
+    # a hump this much lower than the best between samples that lie so close can not be the higher one
+    rival = np.take_along_axis(g, second, -1) > np.take_along_axis(g, first, -1) - RIVAL * np.ptp(f, -1, keepdims=True)
+    humps_worth = (first, second) if np.any(rival & (second != first)) else (first,)
+    ends = []
+    for index, side in ((-1, np.maximum), (1, np.minimum)):
+        cut = start if index < 0 else end
+        at = [np.take_along_axis(x, np.clip(i + index, 0, x.shape[-1] - 1), -1) for i in humps_worth]
+        ends.append(np.concatenate([side(a, cut)[..., 0] for a in at], axis=-1))
+    return ends[0], ends[1]
 
 
 def _highest(x: Floats, f: Floats, start: Floats, end: Floats) -> Floats:
@@ -180,18 +234,29 @@ def _highest(x: Floats, f: Floats, start: Floats, end: Floats) -> Floats:
 
 
 def _chosen(m: Linkage, catch: Floats, x: Floats) -> Floats:
-    """Values at x (..., k, cuts): in each of the k rows the quantity that is looked for there."""
+    """Values at x (..., k or 2k, cuts): in each row the quantity that is looked for there, the k in turn."""
     s = expanded_state(m, x.reshape(*x.shape[:-2], -1), catch)
     found = {name: getattr(s, name).reshape(x.shape) for name in {row[0] for row in _PEAKS}}
-    rows = [factor * found[name][..., row, :] for row, (name, _, _, factor) in enumerate(_PEAKS)]
+    rows = [
+        factor * found[name][..., row, :]
+        for row, (name, _, _, factor) in enumerate(_PEAKS * (x.shape[-2] // len(_PEAKS)))
+    ]
     return np.stack(rows, axis=-2)
 
 
-def _in_chunks(machine: Linkage, rows: int = CHUNK) -> Cycle:
+def _in_chunks(machine: Linkage, rows: int) -> Cycle:
     parts = [cycle(machine.chunk(slice(i, i + rows))) for i in range(0, machine.shape[0], rows)]
     joined = {f.name: np.concatenate([getattr(p, f.name) for p in parts]) for f in fields(Cycle) if f.name != "events"}
     when = {f.name: np.concatenate([getattr(p.events, f.name) for p in parts]) for f in fields(Events)}
     return Cycle(events=Events(**when), **joined)
+
+
+def corner_angles(machine: Linkage, figures: Cycle) -> Floats:
+    """Crank angles (rad) of one design at which its spring or its slack makes a corner, 0 to the release."""
+    at = figures.events
+    x = np.concatenate([_span(np.zeros(()), at.catch, STAGE), _span(at.catch, at.release, STAGE)[1:]])
+    angles = _corners(machine.expanded(), at.catch[..., None], x)
+    return angles[(angles > 0.0) & (angles < float(at.release))]
 
 
 def trace_angles(figures: Cycle, step: float = np.radians(0.5)) -> Floats:

@@ -8,15 +8,16 @@ from pathlib import Path
 import numpy as np
 
 from loads.catalogue import load_catalogue
-from loads.cautions import cautions
+from loads.cautions import cautions, chain_cautions
+from loads.chain_study import ChainStudy, chain_study
 from loads.checks import all_checks
 from loads.checks.context import Context
 from loads.cycle import Cycle, cycle
-from loads.linkage import Linkage, State, chain_line, linkage_of, state
+from loads.linkage import Linkage, State, chain_line, free_line, linkage_of, state
 from loads.members import History, history, load_rows, members, site_histories
 from loads.proportions import SPIGOT, proportion
 from loads.records import Check, LoadRow, SiteHistory
-from loads.refusals import mechanism_problems
+from loads.refusals import given_size_problems, mechanism_problems, proportioned_size_problems
 from parts.clash import Findings, Sweep, sweep
 from parts.design import Assumed, Design, Floats
 from parts.outline import Part
@@ -44,6 +45,7 @@ class Examination:
     loads: tuple[LoadRow, ...]
     checks: tuple[Check, ...]
     findings: Findings
+    chain: ChainStudy
     assumed: tuple[Assumed, ...]
     cautions: tuple[str, ...]
 
@@ -70,13 +72,15 @@ def examine(path: Path) -> Examination:
         raise DesignRefused(path, problems)
     machine = linkage_of(design)
     figures = cycle(machine)
-    found = mechanism_problems(design, figures)
+    found = (*mechanism_problems(design, figures), *given_size_problems(design, catalogue))
     problems += tuple(replace(p, line=reading.locate(p.key)) for p in found)
     if problems:
         raise DesignRefused(path, problems)
 
     plain = history(machine, figures)
     sizes, stack, proportioned = proportion(design, plain, catalogue)
+    if found := proportioned_size_problems(design, sizes):
+        raise DesignRefused(path, tuple(replace(p, line=reading.locate(p.key)) for p in found))
     machine, rubbing = with_friction(design, machine, sizes)
     past = history(machine, figures)
     parts = make_parts(design, sizes, stack)
@@ -88,11 +92,12 @@ def examine(path: Path) -> Examination:
         sites={(s.part, s.site): s for s in sites}, findings=findings,
     )  # fmt: skip
     checks = all_checks(context)
+    chain = chain_study(design, machine, figures, past, sizes)
     return Examination(
         design=design, machine=machine, figures=figures, past=past, sizes=sizes, stack=stack, parts=parts, sites=sites,
-        loads=load_rows(past, sites), checks=checks, findings=findings,
+        loads=load_rows(past, sites), checks=checks, findings=findings, chain=chain,
         assumed=(*_as_solved(design, machine, len(stack.sides) > 1), *rubbing, *proportioned),
-        cautions=cautions(design, figures, sizes, checks),
+        cautions=(*cautions(design, figures, sizes, checks), *chain_cautions(chain)),
     )  # fmt: skip
 
 
@@ -170,7 +175,8 @@ def sweep_poses(machine: Linkage, figures: Cycle) -> Sweep:
     s = state(machine, winding, at.catch)
     d = directions(machine, s)
     turn, beta = float(machine.turn), float(machine.seat_angle)
-    swing = np.linspace(beta, np.pi, 1 + round((np.pi - beta) / float(SWEEP_STEP)))
+    straight = float(np.mod(np.pi + float(free_line(machine, np.asarray(end)).direction) - end, 2.0 * np.pi))
+    swing = np.linspace(beta, straight, 1 + round((straight - beta) / float(SWEEP_STEP)))
     disc = np.full_like(swing, d.disc[-1])
     link = disc + turn * (np.pi + swing)
     # in the swing the chain end hangs on the chain pin and points at the sheave

@@ -12,7 +12,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from loads.cycle import Cycle, trace_angles
+from loads.cycle import Cycle, corner_angles, trace_angles
 from loads.linkage import Linkage, State, state
 from loads.records import CASES, FIRST_HALF, HOLD, SECOND_HALF, LoadRow, SiteHistory
 from parts.design import Floats, Targets
@@ -23,7 +23,8 @@ from parts.stack import Stack
 class History:
     """One design's state over crank angle, with the rows that belong to each case.
 
-    The angles hold each step, each event and each refined peak, so that a worst case is never a neighbour of the worst.
+    The angles hold each step, each event, each refined peak and each corner of the spring, so that a worst case is the
+    worst, or within half a degree of it where nothing has a peak of its own.
     """
 
     machine: Linkage
@@ -48,7 +49,9 @@ class History:
 
     def worst(self, demand: Floats, case: str) -> int:
         rows = self.rows(case)
-        return int(rows[np.argmax(demand[rows])])
+        here = demand[rows]
+        # of angles that are equally bad to a rounding's width the first, so that noise does not choose
+        return int(rows[np.argmax(here >= here.max() * (1.0 - 1e-9))])
 
 
 def history(machine: Linkage, figures: Cycle) -> History:
@@ -56,7 +59,8 @@ def history(machine: Linkage, figures: Cycle) -> History:
     extra = [figures.largest_crank_pin_at, figures.largest_stop_at, figures.largest_link_bending_at]
     extra += [figures.largest_tension_at, np.nextafter(figures.events.catch, np.inf)]
     end = float(figures.events.release)
-    theta = np.unique(np.concatenate([trace_angles(figures), [float(x) for x in extra]]))
+    corners = corner_angles(machine, figures)
+    theta = np.unique(np.concatenate([trace_angles(figures), corners, [float(x) for x in extra]]))
     theta = theta[theta <= end]
     hold_index = int(np.argmin(np.abs(theta - float(figures.events.hold))))
     return History(machine, figures, state(machine, theta, figures.events.catch), hold_index)
@@ -176,9 +180,9 @@ def site_histories(past: History, stack: Stack, targets: Targets, bolt_radius: f
         in_machine("chain_end", "chain_pin_eye", -f.chain_on_pin, none),
         in_machine("chain_end", "chain_hole", f.chain_on_pin, none),
         in_machine("chain", "strand", f.chain_on_pin, none),
-        in_machine("main_bearing", "hub_face", f.chain_side, tilt - twist_side),
+        in_machine("main_bearing", "hub_face", f.chain_side, tilt - twist_side, bolts),
         in_machine("sheave", "groove", sheave, rub),
-        in_machine("sheave_pin", "journal", sheave, none),
+        in_machine("sheave_pin", "journal", sheave, rub),
         in_machine("spring_anchor", "anchor", -f.spring_pull, none),
         in_machine("frame", "main_bearing", f.chain_on_pin, none),
         in_machine("frame", "sheave", sheave, rub),

@@ -7,10 +7,16 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from loads.checks import bth, oblique
 from loads.checks.context import AISC_D5, EN_PINS, Context, length_of, rule_note
 from loads.records import Check
+from parts.contact_lengths import chain_pin_in_link, crank_pin_in_link, pin_in_disc
 from parts.design import Floats, Material
+from parts.fits import covers, interference
 from parts.shape import edge_distance
+
+CHAINS_OWN_PIN = "H8/h9"  # what the chain's maker holds its pins to; common practice, no source
+LEAST_A = 1.33  # of b_e, that a must be at least: AISC 360-16 §D5.2; b_e counts up to what meets it
 
 
 def effective_width(t: Floats | float, b: Floats | float) -> Floats:
@@ -60,6 +66,19 @@ def gross_yield(t: Floats | float, width: Floats | float, f_y: Floats | float) -
     return np.asarray(np.asarray(f_y) * np.asarray(t) * np.asarray(width))
 
 
+def end_pressed_force(force: Floats, moment: Floats, t: float) -> Floats:
+    """Force (N) that, spread evenly over ``t`` mm, presses as hard as force and couple do at the worse end of the hole.
+
+    A stiff pin in a hole of length t presses with F/t in the middle and F/t ± 6 (z × M)/t² at its ends; F and M (3, n) are
+    the pin's force on the part and its moment about the middle of the hole. Source: statics of a stiff pin, as for a pin
+    held at one end in Roloff/Matek, Maschinenelemente (from memory).
+    """
+    if t <= 0.0:
+        return np.where(length_of(force) > 0.0, np.inf, 0.0)
+    tilt = 6.0 / t * np.stack([-moment[1], moment[0], np.zeros_like(moment[0])])
+    return np.maximum(length_of(force + tilt), length_of(force - tilt))
+
+
 @dataclass(frozen=True, slots=True)
 class Eye:
     """One eye: where its hole is, what it is made of, and the direction in which the rest of the part lies (rad)."""
@@ -67,74 +86,151 @@ class Eye:
     part: str
     plate: str
     hole: str
-    thickness: float  # that bears
+    thickness: float  # that carries
+    touch: float  # over which pin and hole really touch
     pin_diameter: float
+    play: float  # most by which the hole is larger than the pin
     pin_yield: float
     material: Material
     plate_thickness: float  # which the material's strength goes by
     body: float | None  # direction from the hole to the rest of the part, in the part frame; None: along the force
     turns: bool
+    oblique: bool = False  # a lug proper, whose force turns across it
 
 
-def eye_checks(c: Context, eye: Eye, force: Floats) -> list[Check]:
-    """Net tension, tear-out and bearing of an eye under forces (3, n) of the pin on it, in the part frame.
+@dataclass(frozen=True, slots=True)
+class Around:
+    """Material from a hole's edge (mm): along the force, across the eye's axis, and along it away from the body."""
+
+    along: Floats
+    side: Floats | float
+    ahead: Floats | float
+
+
+@dataclass(frozen=True, slots=True)
+class Rule:
+    """One rule's capacity (N) of an eye against the pull along its axis, or against the whole force."""
+
+    check: str
+    of_pull: bool
+    by_yield: bool
+    capacity: Floats
+    method: str
+    source: str
+
+
+def eye_rules(t: float, d: float, play: float, f_y: float, f_u: float, around: Around) -> list[Rule]:
+    """AISC §D5 and BTH-1 §3-3.3 side by side, but for bearing: carrying thickness t, pin d and play in mm, MPa."""
+    hole = d + play
+    side, ahead = np.asarray(around.side, dtype=float), np.asarray(around.ahead, dtype=float)
+    b_e = effective_width(t, np.minimum(side, ahead / LEAST_A))
+    c_r, b_eff = bth.clearance_factor(d, hole), bth.effective_width(side, t, hole, f_y, f_u)
+    loose = f"C_r = {float(c_r):.4g}"
+    rows = [
+        ("net tension", True, False, tensile_rupture(t, b_e, f_u), "F_u 2 t b_e, b_e = 2t + 16 mm ≤ b, a/1.33", AISC_D5),
+        ("net tension, BTH-1", True, False, bth.tensile_strength(c_r, f_u, t, b_eff),
+         f"C_r F_u 2 t b_eff, b_eff ≤ 4t, 0.6 b_e F_u/F_y √(D_h/b_e), N_d = 1; {loose}", bth.BTH),
+        ("single-plane fracture, BTH-1", True, False,
+         bth.single_plane_strength(c_r, f_u, t, ahead + hole / 2.0, hole, side),
+         f"C_r F_u [1.13 (R − D_h/2) + 0.92 b_e/(1 + b_e/D_h)] t, N_d = 1; {loose}", bth.BTH),
+        ("gross yield", True, True, gross_yield(t, 2.0 * side + d, f_y), "F_y t (2b + d)", AISC_D5),
+        ("tear-out", False, False, shear_rupture(t, around.along, d, f_u), "0.6 F_u 2t(a + d/2), a along the force", AISC_D5),
+        ("tear-out, BTH-1", False, False, bth.shear_strength(f_u, t, around.along, d, hole),
+         "0.70 F_u 2t [a + D_p/2 (1 − cos φ)], φ = 55° D_p/D_h, a along the force, N_d = 1", bth.BTH),
+    ]  # fmt: skip
+    return [Rule(*row) for row in rows]
+
+
+def bearing_rules(t: Floats | float, d: Floats | float, f_y: Floats | float, turns: bool) -> list[Rule]:
+    """Bearing by EN 1993-1-8 and by BTH-1, and by AISC where the joint does not turn. Touching length t, pin d (mm)."""
+    if turns:
+        return [
+            Rule("bearing", False, True, turning_bearing(t, d, f_y), "0.6 t d f_y, a joint that turns", EN_PINS),
+            Rule("bearing, BTH-1", False, True, bth.turning_bearing_strength(f_y, t, d),
+                 "0.63 F_y D_p t, a joint that turns under load, N_d = 1", bth.BTH),
+        ]  # fmt: skip
+    return [
+        Rule("bearing", False, True, bearing(t, d, f_y), "1.5 t d f_y, a joint that does not turn", EN_PINS),
+        Rule("bearing, BTH-1", False, True, bth.bearing_strength(f_y, t, d), "1.25 F_y D_p t, N_d = 1", bth.BTH),
+        Rule("bearing, AISC", False, True, static_bearing(t, d, f_y), "1.8 F_y t d", "AISC 360-16 §J7"),
+    ]
+
+
+def eye_oblique_use(
+    t: float, d: float, play: float, f_y: float, f_u: float, around: Around, pull: Floats, across: Floats
+) -> Floats:
+    """Melcon and Hoblit's use of an eye over crank angle, its axial capacity the least that the other rules give."""
+    straight = Around(np.asarray(around.ahead, dtype=float), around.side, around.ahead)
+    ultimate = np.min([r.capacity for r in eye_rules(t, d, play, f_y, f_u, straight) if not r.by_yield], axis=0)
+    return oblique.oblique_use(
+        pull,
+        across,
+        np.maximum(oblique.axial_yield(ultimate, d, t, f_y, f_u), 1e-9),
+        np.maximum(oblique.transverse_yield(around.side, around.ahead, d, t, f_y), 1e-9),
+    )
+
+
+def eye_checks(c: Context, eye: Eye, force: Floats, moment: Floats) -> list[Check]:
+    """All rules for an eye under forces and couples (3, n) of the pin on it, in the part frame.
 
     Tear-out and bearing take the whole force in its own direction, with the edge distance that the outline has there;
-    net tension takes the part of it that points away from the rest of the part, across which the section is cut.
+    tension takes the part of it that points away from the rest of the part, across which the section is cut. Where it
+    points towards the rest of the part nothing of the eye is pulled: bearing and, for its part across, the oblique load.
     """
-    plate = c.plate(eye.plate)
-    hole = next(h for h in plate.holes if h.name == eye.hole)
     size = length_of(force)
     along = np.arctan2(force[1], force[0])
-    radius = hole.diameter / 2.0
+    outward = along if eye.body is None else np.asarray(eye.body + math.pi)
+    pull = size if eye.body is None else np.maximum(0.0, size * np.cos(along - outward))
+    around = _around(c, eye, along, outward)
     f_y, f_u = eye.material.yield_strength(eye.plate_thickness), eye.material.ultimate_strength(eye.plate_thickness)
-    edge = edge_distance(plate, hole.center, along, holes=True, skip=(eye.hole,)) - radius
-    tear = shear_rupture(eye.thickness, np.maximum(edge, 0.0), eye.pin_diameter, f_u)
-    if eye.body is None:
-        outward, pull = along, size
-    else:
-        outward = np.full_like(along, eye.body + math.pi)
-        pull = np.maximum(0.0, size * np.cos(along - outward))
-    sides = [
-        edge_distance(plate, hole.center, outward + s * math.pi / 2.0, holes=True, skip=(eye.hole,)) - radius
-        for s in (1.0, -1.0)
-    ]
-    b_e = effective_width(eye.thickness, np.maximum(np.minimum(*sides), 0.0))
-    net = tensile_rupture(eye.thickness, b_e, f_u)
-    weaker = min(f_y, eye.pin_yield)
-    t, targets = eye.thickness, c.design.targets
-    note = rule_note(eye.material)
-    if eye.turns:
-        press, how = turning_bearing(t, eye.pin_diameter, weaker), "0.6 t d f_y, a joint that turns"
-    else:
-        press, how = bearing(t, eye.pin_diameter, weaker), "1.5 t d f_y, a joint that does not turn"
-    return [
-        c.worst_check(
-            eye.part,
-            eye.hole,
-            "net tension",
-            pull,
-            net,
-            "N",
-            targets.ultimate,
-            "F_u 2 t b_e, b_e = 2t + 16 mm ≤ b",
-            AISC_D5,
-            note,
-        ),
-        c.worst_check(
-            eye.part,
-            eye.hole,
-            "tear-out",
-            size,
-            tear,
-            "N",
-            targets.ultimate,
-            "0.6 F_u 2t(a + d/2), a along the force",
-            AISC_D5,
-            note,
-        ),
-        c.worst_check(eye.part, eye.hole, "bearing", size, press, "N", targets.yield_, how, EN_PINS, note),
-    ]
+    t, d, targets, note = eye.thickness, eye.pin_diameter, c.design.targets, rule_note(eye.material)
+    rows = []
+    for rule in eye_rules(t, d, eye.play, f_y, f_u, around):
+        demand, target = pull if rule.of_pull else size, targets.yield_ if rule.by_yield else targets.ultimate
+        rows.append(
+            c.worst_check(
+                eye.part, eye.hole, rule.check, demand, rule.capacity, "N", target, rule.method, rule.source, note
+            )
+        )
+    if eye.oblique:
+        use = eye_oblique_use(t, d, eye.play, f_y, f_u, around, pull, size * np.sin(along - outward))
+        how = "R_a^1.6 + R_tr^1.6 = 1 on yield, to 90° off the axis; beyond, R_a = 0 and the axial part is bearing's"
+        rows.append(
+            c.worst_check(
+                eye.part, eye.hole, "oblique load", use, 1.0, "1", targets.yield_, how, oblique.MELCON_HOBLIT, note
+            )
+        )
+    pressed = end_pressed_force(force, moment, eye.touch)
+    where = f"; t = {eye.touch:.4g} mm that touch"
+    if float(np.max(length_of(moment))) > 0.0:
+        where += ", force at the harder pressed end, |F ± 6 (z × M)/t|"
+    for rule in bearing_rules(eye.touch, d, min(f_y, eye.pin_yield), eye.turns):
+        rows.append(
+            c.worst_check(
+                eye.part, eye.hole, rule.check, pressed, rule.capacity, "N", targets.yield_, rule.method + where,
+                rule.source, note,
+            )
+        )  # fmt: skip
+    return rows
+
+
+def _around(c: Context, eye: Eye, along: Floats, outward: Floats) -> Around:
+    """What the plate's outline and other holes leave around an eye; a direction that comes often is met once."""
+    plate = c.plate(eye.plate)
+    hole = next(h for h in plate.holes if h.name == eye.hole)
+    beside = [outward + math.pi / 2.0, outward - math.pi / 2.0, outward]
+    wanted = np.round(np.concatenate([np.atleast_1d(x) for x in (along, *beside)]), 12)
+    angles, back = np.unique(wanted, return_inverse=True)
+    met = edge_distance(plate, hole.center, angles, holes=True, skip=(eye.hole,)) - hole.diameter / 2.0
+    room = np.maximum(met, 0.0)[back]
+    n, k = along.size, np.atleast_1d(outward).size
+    left, right, ahead = room[n : n + k], room[n + k : n + 2 * k], room[n + 2 * k :]
+    return Around(room[:n], np.minimum(left, right), ahead)
+
+
+def largest_play(fit: str, nominal: float) -> float:
+    """Most by which a hole is larger than its pin (mm) in a fit such as "H8/f7"; 0 in a press fit or beyond the tables."""
+    return max(0.0, -interference(fit, nominal)[0]) if covers(nominal) else 0.0
 
 
 def check(c: Context) -> list[Check]:
@@ -147,81 +243,62 @@ def check(c: Context) -> list[Check]:
     along_x = np.zeros_like(c.members.torque)
     tension = np.stack([length_of(c.members.chain_on_pin), along_x, along_x])
     meat = end.width - 2.0 * sum(b - a for a, b in end.slots)
+    none = np.zeros_like(tension)
+    headed = c.stack.crank_pin_headed
+    in_link = crank_pin_in_link(crank_pin.diameter, link.thickness, link.counterbore_depth, headed)
+    at_chain = chain_pin_in_link(chain_pin.diameter, link.thickness)
+    in_disc = pin_in_disc(crank_pin.diameter, z.disc.thickness)
+    end_yield = end.material.yield_strength(end.width)
+    disc_hole, crank_eye = c.site("crank_disc", "crank_pin_hole"), c.site("swing_link", "crank_pin_eye")
+    chain_eye = c.site("swing_link", "chain_pin_eye")
+    t = z.disc.thickness
+    fits, crank_d, chain_d = z.fits, crank_pin.diameter, chain_pin.diameter
+    middle = chain_pin.middle_diameter
+    held, runs = largest_play(fits.crank_pin_disc, crank_d), largest_play(fits.crank_pin_link, crank_d)
+    pressed, hangs = largest_play(fits.chain_pin_link, chain_d), largest_play(fits.chain_end, middle)
+    own = largest_play(CHAINS_OWN_PIN, end.pin_diameter)
+    disc, steel = z.disc.material, link.material
+    # fmt: off
     eyes = [
-        (
-            Eye(
-                "crank_disc",
-                "crank_disc",
-                "crank_pin_hole",
-                z.disc.thickness,
-                crank_pin.diameter,
-                crank_yield,
-                z.disc.material,
-                z.disc.thickness,
-                math.pi,
-                False,
-            ),
-            c.site("crank_disc", "crank_pin_hole").force,
-        ),
-        (
-            Eye(
-                "swing_link",
-                "swing_link",
-                "crank_pin_eye",
-                in_sink,
-                crank_pin.diameter,
-                crank_yield,
-                link.material,
-                link.thickness,
-                0.0,
-                True,
-            ),
-            c.site("swing_link", "crank_pin_eye").force,
-        ),
-        (
-            Eye(
-                "swing_link",
-                "swing_link",
-                "chain_pin_eye",
-                link.thickness,
-                chain_pin.diameter,
-                chain_yield,
-                link.material,
-                link.thickness,
-                math.pi,
-                False,
-            ),
-            c.site("swing_link", "chain_pin_eye").force,
-        ),
-        (
-            Eye(
-                "chain_end",
-                "chain_end",
-                "chain_pin_eye",
-                end.width,
-                chain_pin.middle_diameter,
-                chain_yield,
-                end.material,
-                end.width,
-                0.0,
-                True,
-            ),
-            -tension,
-        ),
-        (
-            Eye(
-                "chain_end",
-                "chain_end",
-                "chain_hole",
-                meat,
-                end.pin_diameter,
-                end.material.yield_strength(end.width),
-                end.material,
-                end.width,
-                math.pi,
-                False,
-            ),
-            tension,
-        ),
+        (Eye("crank_disc", "crank_disc", "crank_pin_hole", t, in_disc, crank_d, held, crank_yield, disc, t, math.pi, False),
+         disc_hole.force, disc_hole.moment),
+        (Eye("swing_link", "swing_link", "crank_pin_eye", in_sink, in_link, crank_d, runs, crank_yield, steel,
+             link.thickness, 0.0, True, oblique=True),
+         crank_eye.force, crank_eye.moment),
+        (Eye("swing_link", "swing_link", "chain_pin_eye", link.thickness, at_chain, chain_d, pressed, chain_yield, steel,
+             link.thickness, math.pi, False, oblique=True),
+         chain_eye.force, chain_eye.moment),
+        (Eye("chain_end", "chain_end", "chain_pin_eye", end.width, end.width, middle, hangs, chain_yield, end.material,
+             end.width, 0.0, True),
+         -tension, none),
+        (Eye("chain_end", "chain_end", "chain_hole", meat, meat, end.pin_diameter, own, end_yield, end.material, end.width,
+             math.pi, False),
+         tension, none),
     ]
-    return [row for eye, force in eyes for row in eye_checks(c, eye, force)]
+    # fmt: on
+    return [row for eye, force, moment in eyes for row in eye_checks(c, eye, force, moment)] + _stop_seat(c)
+
+
+def _stop_seat(c: Context) -> list[Check]:
+    """A post in the disc: bearing with the moment that it brings."""
+    stop, disc = c.sizes.stop, c.sizes.disc
+    if stop.style != "post":
+        return []
+    site = c.site("crank_disc", "stop_seat")
+    t = pin_in_disc(stop.diameter, disc.thickness)
+    weaker = min(disc.material.yield_strength(disc.thickness), stop.material.yield_strength(stop.diameter))
+    how = f"1.5 t d f_y, t = {t:.4g} mm that touch, force at the harder pressed end, |F ± 6 (z × M)/t|"
+    return [
+        c.worst_check(
+            "crank_disc",
+            "stop_seat",
+            "bearing",
+            end_pressed_force(site.force, site.moment, t),
+            bearing(t, stop.diameter, weaker),
+            "N",
+            c.design.targets.yield_,
+            how,
+            EN_PINS,
+            rule_note(disc.material),
+        )
+    ]

@@ -48,6 +48,10 @@ def column_stress(slenderness: Floats | float, f_y: Floats | float, modulus: flo
     return np.asarray(np.where(slender >= np.sqrt(2.0 * math.pi**2 * modulus / f_y), euler, johnson))
 
 
+# effective length factor out of the disc's plane: the crank pin's joint holds one end, nothing but the chain the other
+FREE_END = 2.0
+
+
 def check(c: Context) -> list[Check]:
     """Section at the stop in axial force with bending; strut about both axes."""
     link, targets = c.sizes.link, c.design.targets
@@ -87,8 +91,8 @@ def check(c: Context) -> list[Check]:
         )
     )
     push_in = np.maximum(0.0, -pull.force[0])
-    for axis, depth in (("about the thin side", t), ("in the plane of the disc", w)):
-        slenderness = m.link_length / (depth / math.sqrt(12.0))
+    for axis, depth, k in (("about the thin side", t, FREE_END), ("in the plane of the disc", w, 1.0)):
+        slenderness = k * m.link_length / (depth / math.sqrt(12.0))
         capacity = float(column_stress(slenderness, f_y, material.youngs_modulus)) * w * t
         rows.append(
             c.worst_check(
@@ -99,7 +103,7 @@ def check(c: Context) -> list[Check]:
                 capacity,
                 "N",
                 targets.yield_,
-                f"Euler or Johnson, K = 1, L/r = {slenderness:.0f}",
+                f"Euler or Johnson, K = {k:g}, K L/r = {slenderness:.0f}",
                 "Shigley, columns with central loading",
             )
         )
@@ -113,7 +117,7 @@ def _offset_strut(c: Context, thrust: Floats, moment: Floats) -> Check:
     link, m = c.sizes.link, c.design.mechanism
     w, t, material = link.width, link.thickness, link.material
     f_y = material.yield_strength(t)
-    slenderness = m.link_length * math.sqrt(12.0) / t
+    slenderness = FREE_END * m.link_length * math.sqrt(12.0) / t
     euler = math.pi**2 * material.youngs_modulus * w * t / slenderness**2
     growth = 1.0 / np.maximum(1.0 - c.design.targets.yield_ * thrust / euler, 1e-6)
     stress = thrust / (w * t) + growth * 6.0 * moment / (w * t**2)

@@ -9,6 +9,7 @@ import numpy as np
 from loads.checks.context import BEAM, EN_PINS, Context, length_of
 from loads.checks.pins import first_yield_bending_capacity, pin_shear_capacity, shear_and_bending_factor
 from loads.records import Check
+from parts.contact_lengths import stop_on_link
 from parts.design import Floats, Material
 from parts.hardware import cap_screw, property_class_source
 from parts.stop_layout import HOLES_AT
@@ -42,8 +43,8 @@ def line_contact_yield_force(length: Floats | float, radius: Floats | float, mod
 
 def contact_depth(c: Context) -> float:
     """Length (mm, along z) over which stop and link touch."""
-    reach = c.sizes.stop.height - c.stack.plate_gap
-    return max(0.0, min(reach, c.sizes.link.thickness))
+    stop = c.sizes.stop
+    return stop_on_link(stop.style, stop.diameter, stop.height, c.sizes.link.thickness, c.stack.plate_gap)
 
 
 def bolt_share(width: float) -> float:

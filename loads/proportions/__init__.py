@@ -25,7 +25,7 @@ class _Proportioner(LinkSide, DiscSide):
     def settle(self) -> tuple[Sizes, Stack, tuple[Assumed, ...]]:
         width, tongue, slots = self._end_width()
         pair = self._link_and_pins(width)
-        link = self._link(pair, width)
+        link = self._link(pair)
         bore = self._bore_for(link, pair, width)
         stop = self._stop(link, bore)
         crank = self._crank_pin(pair)

@@ -20,6 +20,7 @@ LEAST_BORE = 0.2  # of the crank radius; common practice, no source
 SPIGOT = 0.6  # of the shaft's diameter: the bore locates, the bolts carry; common practice, no source
 LEAST_BOLT = 0.2  # of the bore; common practice, no source
 LEAST_PIN = 20.0  # link length over least pin diameter; common practice, no source
+LOOK_AT = 5  # plates of which the link's width is worked out
 EDGE = 0.9  # of the crank pin: least material between its hole and the rim; common practice, no source
 LEAST_WIDTH = 10.0  # link length over least width; common practice, no source
 
@@ -91,12 +92,14 @@ class Pair:
     crank: float
     chain: float
     middle: float
+    width: float  # of the link, 0 before it is known
     use: float  # the largest share of a capacity that is used; above 1 no preferred size is enough
 
     @property
     def rank(self) -> tuple[float, float]:
         """What is enough comes first, then what is smallest."""
-        return max(self.use, 1.0), max(self.crank, self.chain) ** 2 * self.thickness
+        across = self.width if self.width > 0.0 else max(self.crank, self.chain) ** 2
+        return max(self.use, 1.0), across * self.thickness
 
 
 def sink_depth(d: Floats) -> Floats:
@@ -141,6 +144,11 @@ class Basis:
         d = self.design
         return make_stack(d.mechanism.stack, d.targets.load_share, d.chain, end_width, self.gap, link, disc)
 
+    def within(self, sizes: Floats, material: Material) -> Floats:
+        """The sizes (mm) that the material's table covers; the smallest of them where it covers none."""
+        inside = sizes[[material.covers(float(x)) for x in sizes]]
+        return inside if inside.size else sizes[:1]
+
     def pin_use(self, d: Floats, material: Material, shear: float, moment: float) -> Floats:
         """Largest use of a pin held at one end, over diameters."""
         f_u = np.array([material.ultimate_strength(float(x)) for x in d])
@@ -151,8 +159,16 @@ class Basis:
         return np.maximum(np.maximum(v * self.ultimate, m * self.yields), both * self.yields)
 
     def bearing_use(
-        self, d: Floats, t: Floats | float, force: float, pin: Material, plate: Material, at: float, turns: bool
+        self,
+        d: Floats,
+        t: Floats | float,
+        force: Floats | float,
+        pin: Material,
+        plate: Material,
+        at: float,
+        turns: bool,
     ) -> Floats:
+        """Share of the bearing capacity that is used, over pin diameters; ``at`` is the thickness that strength goes by."""
         f_y = np.array([min(pin.yield_strength(float(x)), plate.yield_strength(at)) for x in d])
         capacity = eyes.turning_bearing(t, d, f_y) if turns else eyes.bearing(t, d, f_y)
         return np.asarray(force * self.yields / np.maximum(capacity, 1e-9))

@@ -6,11 +6,14 @@ import math
 
 import numpy as np
 
-from loads.checks import pins
+from loads.checks import eyes, pins
 from loads.proportions.basis import EDGE, LEAST_BOLT, LEAST_BORE, SPIGOT, Pair, first, next_up, round_up
 from loads.proportions.stops import StopSide
+from parts.contact_lengths import pin_in_disc
+from parts.design import Floats
 from parts.hardware import CapScrew, cap_screw_for_hole, cap_screws
 from parts.sizes import DiscSizes, LinkSizes, StopSizes
+from parts.stack import Stack
 from parts.stop_layout import stop_center
 
 
@@ -38,15 +41,13 @@ class DiscSide(StopSide):
                 "count",
             )
         )
-        plates = np.array([wish.thickness]) if wish.thickness is not None else self.plates[self.plates >= seat]
-        for t in plates if plates.size else self.plates[-1:]:
+        there_are = self.within(self.plates, self.disc_material)
+        plates = np.array([wish.thickness]) if wish.thickness is not None else there_are[there_are >= seat]
+        for t in plates if plates.size else there_are[-1:]:
             stack = self.stack(end_width, link.thickness, float(t))
             tilt = pull * (stack.disc_back - stack.link_middle + stack.chain_offset)
             screw = self._hub_bolt(count, bore, tilt, pull, torque, wish.bolt_hole)
-            bearing = self.bearing_use(
-                np.array([pair.crank]), float(t), pin, self.crank_material, self.disc_material, float(t), False
-            )
-            if (screw.head_height + 0.5) <= 0.7 * t and float(bearing[0]) <= 1.0:
+            if (screw.head_height + 0.5) <= 0.7 * t and self._seats_use(pair, stop, stack, float(t)) <= 1.0:
                 break
         thickness = take(
             "disc.thickness",
@@ -88,6 +89,25 @@ class DiscSide(StopSide):
             screw.head_height + 0.5,
             self.disc_material,
         )
+
+    def _seats_use(self, pair: Pair, stop: StopSizes, stack: Stack, t: float) -> float:
+        """Share of the bearing capacity that crank pin and post use in a disc of thickness ``t``."""
+        f, arm = self.loads, stack.disc_middle - stack.link_middle
+
+        def couple(depth: float, force: Floats) -> Floats:
+            return depth * np.stack([-force[1], force[0], np.zeros_like(force[0])])
+
+        seats = [(pair.crank, self.crank_material, -f.pin, couple(arm, -f.pin) + couple(stack.chain_offset, f.chain))]
+        if stop.style == "post":
+            push = np.stack([np.zeros_like(f.stop), f.stop, np.zeros_like(f.stop)])
+            seats.append((stop.diameter, self.stop_material, push, couple(arm, push)))
+        uses = []
+        for d, material, force, moment in seats:
+            touch = pin_in_disc(d, t)
+            pressed = float(np.max(eyes.end_pressed_force(force, moment, touch)))
+            use = self.bearing_use(np.array([d]), touch, pressed, material, self.disc_material, t, False)
+            uses.append(float(use[0]))
+        return max(uses)
 
     def _bore(self, tilt: float, pull: float) -> float:
         least = max(8.0, LEAST_BORE * self.design.mechanism.crank_radius)

@@ -3,12 +3,26 @@
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 
 import numpy as np
 
 from loads.checks import eyes, pins
-from loads.checks.link import column_stress, section_stress
-from loads.proportions.basis import LEAST_LINK, LEAST_WIDTH, Basis, Pair, first, index, next_up, round_up, sink_depth
+from loads.checks.link import FREE_END, column_stress, section_stress
+from loads.proportions.basis import (
+    LEAST_LINK,
+    LEAST_WIDTH,
+    LOOK_AT,
+    Basis,
+    Pair,
+    first,
+    index,
+    next_up,
+    round_up,
+    sink_depth,
+)
+from parts.contact_lengths import chain_pin_in_link, crank_pin_in_link
+from parts.design import Floats
 from parts.hardware import retaining_ring
 from parts.sizes import ChainEndSizes, ChainPinSizes, CrankPinSizes, LinkSizes
 
@@ -45,13 +59,20 @@ class LinkSide(Basis):
             thicknesses = np.array([wish.link.thickness])
         else:
             least = max(3.0, wish.mechanism.link_length / LEAST_LINK)
-            thicknesses = self.plates[self.plates >= least] if least <= self.plates[-1] else self.plates[-1:]
+            plates = self.within(self.plates, self.link_material)
+            thicknesses = plates[plates >= least] if least <= plates[-1] else plates[-1:]
         pairs = []
         for t in (float(x) for x in thicknesses):
             crank, crank_use = self._crank_diameter(t, end_width)
             journal, middle, chain_use = self._chain_diameters(t, end_width)
-            pairs.append(Pair(t, crank, journal, middle, max(crank_use, chain_use)))
-        best = min(pairs, key=lambda pair: pair.rank)
+            pairs.append(Pair(t, crank, journal, middle, 0.0, max(crank_use, chain_use)))
+        # the width takes longer to find: only of those whose pins are small and enough
+        pairs = sorted(pairs, key=lambda pair: pair.rank)[:LOOK_AT]
+        wide = []
+        for pair in pairs:
+            width, use = self._width(pair, end_width)
+            wide.append(replace(pair, width=width, use=max(pair.use, use)))
+        best = min(wide, key=lambda pair: pair.rank)
         take = self.ledger.take
         why = "smallest section at which the pins' shear, bending and bearing reach their targets"
         take(
@@ -68,27 +89,30 @@ class LinkSide(Basis):
         couple = -stack.pin_root_arm * self.loads.pin + stack.chain_offset * self.loads.chain
         moment = float(np.max(np.linalg.norm(couple, axis=0)))
         force = float(np.max(np.linalg.norm(self.loads.pin, axis=0)))
-        bearing_length = t - (sink_depth(d) if self.headed else 0.0)
+        sink = sink_depth(d) if self.headed else np.zeros_like(d)
+        touch = np.array([crank_pin_in_link(float(x), t, float(z), self.headed) for x, z in zip(d, sink, strict=True)])
+        pressed = np.array([self._pressed(self.loads.pin, stack.chain_offset, float(x)) for x in touch])
         use = self.pin_use(d, self.crank_material, force, moment)
-        use = np.maximum(
-            use,
-            self.bearing_use(
-                d, np.maximum(bearing_length, 0.0), force, self.crank_material, self.link_material, t, True
-            ),
-        )
+        use = np.maximum(use, self.bearing_use(d, touch, pressed, self.crank_material, self.link_material, t, True))
         if self.headed:  # four tenths of the plate stay under the head
-            use = np.where(bearing_length < 0.4 * t, np.maximum(use, 1.0 + sink_depth(d) / t), use)
+            use = np.where(touch < 0.4 * t, np.maximum(use, 1.0 + sink / t), use)
         i = index(use)
         return float(d[i]), float(use[i])
+
+    def _pressed(self, force: Floats, offset: float, t: float) -> float:
+        """Largest force at the harder pressed end of an eye that also takes the chain's offset couple."""
+        couple = offset * np.stack([-self.loads.chain[1], self.loads.chain[0], np.zeros_like(self.loads.torque)])
+        return float(np.max(eyes.end_pressed_force(force, couple, t)))
 
     def _chain_diameters(self, t: float, end_width: float) -> tuple[float, float, float]:
         """Journal in the link, middle under the chain end, and the larger use of the two."""
         given = self.design.chain_pin.diameter
-        d = np.array([given]) if given is not None else self.pins
+        pins_there_are = self.within(self.pins, self.chain_pin_material)
+        d = np.array([given]) if given is not None else pins_there_are
         m, whole = self.chain_pin_material, float(np.max(self.loads.whole))
         side = float(np.max(self.loads.tension))
         stack = self.stack(end_width, t, 10.0)
-        middle = self.pins
+        middle = pins_there_are
         turning = self.bearing_use(middle, end_width, whole, m, self.end_material, end_width, True)
         if stack.chain_pin_support == "double shear":
             use = self.pin_use(d, m, side, side * t / 2.0)
@@ -104,68 +128,85 @@ class LinkSide(Basis):
         else:
             use = self.pin_use(d, m, side, side * stack.chain_plane_width / 2.0)
             middle_use = np.maximum(self.pin_use(middle, m, side, side * end_width / 2.0), turning)
-        use = np.maximum(use, self.bearing_use(d, t, side, m, self.link_material, t, False))
+        touch = np.array([chain_pin_in_link(float(x), t) for x in d])
+        pressed = np.array([self._pressed(self.loads.chain, stack.chain_offset, float(x)) for x in touch])
+        use = np.maximum(use, self.bearing_use(d, touch, pressed, m, self.link_material, t, False))
         i, k = index(use), index(middle_use)
         journal, wanted = float(d[i]), float(middle[k])
         if stack.chain_pin_support == "double shear":
             wanted = max(wanted, journal + 2.0 * max(1.5, 0.1 * journal))
         return journal, next_up(self.pins, wanted), float(max(use[i], middle_use[k]))
 
-    def _link(self, pair: Pair, end_width: float) -> LinkSizes:
-        t, m, f = pair.thickness, self.design.mechanism, self.loads
-        stack = self.stack(end_width, t, 10.0)
-        sink = float(sink_depth(np.array(pair.crank))) if self.headed else 0.0
+    def _width(self, pair: Pair, end_width: float) -> tuple[float, float]:
+        """Least width of the link (mm), and the share of a capacity that it uses there."""
         least = max(
             2.0 * pair.crank,
             2.0 * pair.chain,
-            m.link_length / LEAST_WIDTH,
+            self.design.mechanism.link_length / LEAST_WIDTH,
             1.5 * self._head(pair.crank) + 1.5 if self.headed else 0.0,
         )
-        w = np.arange(round_up(least, self.step), least + 400.0, self.step)
+        widths = np.arange(round_up(least, self.step), least + 400.0, self.step)
+        if self.design.link.width is not None:
+            widths = np.array([self.design.link.width])
+        low, high = 0, len(widths) - 1
+        if self._width_use(float(widths[high]), pair, end_width) > 1.0:
+            low = high
+        while low < high:  # every use falls as the link gets wider
+            middle = (low + high) // 2
+            if self._width_use(float(widths[middle]), pair, end_width) <= 1.0:
+                high = middle
+            else:
+                low = middle + 1
+        width = float(widths[high])
+        return width, self._width_use(width, pair, end_width)
+
+    def _width_use(self, w: float, pair: Pair, end_width: float) -> float:
+        """Largest use of a link ``w`` mm wide: eyes, section at the stop, strut."""
+        t, m, f = pair.thickness, self.design.mechanism, self.loads
+        stack = self.stack(end_width, t, 10.0)
+        sink = float(sink_depth(np.array(pair.crank))) if self.headed else 0.0
         f_y, f_u = self.link_material.yield_strength(t), self.link_material.ultimate_strength(t)
         size = np.linalg.norm(f.pin, axis=0)
         towards_end = float(np.max(np.where(f.pin[0] <= 1e-9 * size, size, 0.0)))
-        use = np.zeros_like(w)
+        uses = []
         for d, thick, pull, tear in (
             (pair.crank, t - sink, float(np.max(-f.pin[0])), towards_end),
             (pair.chain, t, float(np.max(f.chain[0])), float(np.max(f.tension))),
         ):
-            a = w / 2.0 - d / 2.0
-            net = eyes.tensile_rupture(thick, eyes.effective_width(thick, a), f_u)
-            out = eyes.shear_rupture(thick, a, d, f_u)
-            use = np.max([use, pull * self.ultimate / net, tear * self.ultimate / out], axis=0)
-        # transverse force stands against the distance to the flank, the same as to the end
+            a = w / 2.0 - d / 2.0  # the same to the end, to the flanks and across a transverse force
+            net = eyes.tensile_rupture(thick, eyes.effective_width(thick, a / eyes.LEAST_A), f_u)
+            uses += [
+                pull * self.ultimate / float(net),
+                tear * self.ultimate / float(eyes.shear_rupture(thick, a, d, f_u)),
+            ]
         out_of_plane, torsion = stack.chain_offset * f.chain[0], stack.chain_offset * f.chain[1]
         bending = f.chain[1] * (m.link_length - m.stop_reach)
+        stress = float(np.max(section_stress(f.chain[0], bending, out_of_plane, torsion, w, t)))
         thrust = max(0.0, float(np.max(-f.chain[0])))
-        for i, width in enumerate(w):
-            stress = section_stress(f.chain[0], bending, out_of_plane, torsion, float(width), t)
-            strut = min(
-                float(column_stress(m.link_length * math.sqrt(12.0) / depth, f_y, self.link_material.youngs_modulus))
-                for depth in (t, float(width))
-            ) * width * t  # fmt: skip
-            euler = math.pi**2 * self.link_material.youngs_modulus * width * t**3 / (12.0 * m.link_length**2)
-            growth = 1.0 / max(1e-6, 1.0 - self.yields * thrust / euler)
-            couple = (
-                growth * 6.0 * float(np.max(np.abs(np.where(f.chain[0] < 0.0, out_of_plane, 0.0)))) / (width * t**2)
-            )
-            both = thrust / (width * t) + (couple if stack.chain_offset else 0.0)
-            use[i] = max(
-                use[i],
-                float(np.max(stress)) * self.yields / f_y,
-                thrust * self.yields / strut,
-                both * self.yields / f_y,
-            )
-            if use[i] <= 1.0:
-                break
-        else:
-            i = int(np.argmin(use))
+        modulus = self.link_material.youngs_modulus
+        column = min(
+            float(column_stress(k * m.link_length * math.sqrt(12.0) / depth, f_y, modulus))
+            for depth, k in ((t, FREE_END), (w, 1.0))
+        )
+        uses += [stress * self.yields / f_y, thrust * self.yields / (column * w * t)]
+        if stack.chain_offset:
+            euler = math.pi**2 * modulus * w * t**3 / (12.0 * (FREE_END * m.link_length) ** 2)
+            if self.yields * thrust >= euler:
+                return math.inf
+            couple = float(np.max(np.abs(np.where(f.chain[0] < 0.0, out_of_plane, 0.0))))
+            both = thrust / (w * t) + 6.0 * couple / (w * t**2) / (1.0 - self.yields * thrust / euler)
+            uses.append(both * self.yields / f_y)
+        return max(uses)
+
+    def _link(self, pair: Pair) -> LinkSizes:
+        sink = float(sink_depth(np.array(pair.crank))) if self.headed else 0.0
         width = self.ledger.take(
-            "link.width", self.design.link.width, float(w[i]),
+            "link.width", self.design.link.width, pair.width,
             "least width at which eyes, section at the stop and strut reach their targets",
         )  # fmt: skip
-        head = self._head(pair.crank) if self.headed else 0.0
-        return LinkSizes(width, t, head + 1.0 if self.headed else 0.0, sink, self.link_material)
+        return LinkSizes(
+            width, pair.thickness, self._head(pair.crank) + 1.0 if self.headed else 0.0, sink, self.link_material
+        )
 
     def _head(self, crank: float) -> float:
         return round_up(1.4 * crank, 0.5)
@@ -196,7 +237,7 @@ class LinkSide(Basis):
         use = np.zeros_like(h)
         for d, t in ((pair.middle, width), (own, meat)):
             a = h / 2.0 - d / 2.0
-            net = eyes.tensile_rupture(t, eyes.effective_width(t, a), f_u)
+            net = eyes.tensile_rupture(t, eyes.effective_width(t, a / eyes.LEAST_A), f_u)
             out = eyes.shear_rupture(t, a, d, f_u)
             use = np.max([use, force * self.ultimate / net, force * self.ultimate / out], axis=0)
         height = first(h, use)

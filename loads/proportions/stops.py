@@ -9,6 +9,7 @@ import numpy as np
 from loads.checks import pins
 from loads.checks.stop import bolt_share, contact_modulus, line_contact_yield_force
 from loads.proportions.basis import Basis, first, round_up
+from parts.contact_lengths import stop_on_link
 from parts.design import Assumed
 from parts.hardware import cap_screws, dowel_diameters
 from parts.sizes import LinkSizes, StopSizes
@@ -25,15 +26,23 @@ class StopSide(Basis):
         height = self.ledger.take(
             "stop.height", wish.height, self.gap + link.thickness, "as high as the link's face towards the chain"
         )
-        d = np.array([wish.diameter]) if wish.diameter is not None else self.pins[self.pins >= min(6.0, self.pins[-1])]
+        d = self.within(self.pins[self.pins >= min(6.0, self.pins[-1])], self.stop_material)
+        if wish.diameter is not None:
+            d = np.array([wish.diameter])
         weaker = np.array(
             [min(self.stop_material.yield_strength(float(x)), self.link_material.yield_strength(depth)) for x in d]
         )
         modulus = contact_modulus(self.stop_material, self.link_material)
+        touch = [stop_on_link("post", float(x), height, depth, self.gap) for x in d]
         contact = np.array(
-            [float(line_contact_yield_force(depth, x / 2.0, modulus, float(f))) for x, f in zip(d, weaker, strict=True)]
+            [
+                float(line_contact_yield_force(t, x / 2.0, modulus, float(f)))
+                for t, x, f in zip(touch, d, weaker, strict=True)
+            ]
         )
-        use = np.maximum(self.pin_use(d, self.stop_material, force, force * arm), force * self.yields / contact)
+        use = np.maximum(
+            self.pin_use(d, self.stop_material, force, force * arm), force * self.yields / np.maximum(contact, 1e-9)
+        )
         post = first(d, use)
         if wish.style is not None:
             style = wish.style
@@ -59,7 +68,9 @@ class StopSide(Basis):
         m, depth = self.design.mechanism, link.thickness
         dowels = np.array(dowel_diameters())
         room = 2.0 * min(m.stop_reach, m.link_length - m.stop_reach)
-        widths = [wish.width] if wish.width is not None else list(np.arange(round_up(8.0, self.step), 200.0, self.step))
+        widths = list(self.within(np.arange(round_up(8.0, self.step), 200.0, self.step), material))
+        if wish.width is not None:
+            widths = [wish.width]
         for width in (float(x) for x in widths):
             shear = 2.0 * pins.pin_shear_capacity(dowels, material.ultimate_strength(width))
             dowel = first(dowels, force * self.ultimate / shear)

@@ -85,7 +85,12 @@ WEAK: dict[str, tuple[str, dict[str, str | None], set[tuple[str, str]], set[str]
     ),
     "narrow link": (
         "impact-rig",
-        {"link__width": '"18 mm"'},
+        {
+            "link__width": '"20 mm"',
+            "link__thickness": '"8 mm"',
+            "chain_pin__diameter": '"14 mm"',
+            "crank_pin__diameter": '"16 mm"',
+        },
         {("swing_link", "axial force with bending"), ("swing_link", "web")},
         {"swing_link"},
     ),

@@ -249,3 +249,31 @@ def test_far_sheave_events_in_closed_form(beta: float) -> None:
     at = events(machine(60, 90, 80, beta, FAR, 0, 1, linear(0, 100)))
     assert np.degrees(at.catch) == pytest.approx(180.0 - beta, abs=1e-3)
     assert np.degrees(at.release) == pytest.approx(360.0 - beta, abs=1e-3)
+
+
+NARROW = {
+    "a bump before the free peak": [(0, 0), (60, 6000), (61, 9000), (62, 6000), (200, 20000)],
+    "a spike between samples": [(0, 0), (60, 6000), (60.4, 25000), (60.8, 6000), (200, 20000)],
+    "a step down": [(0, 500), (100, 9000), (100.001, 2000), (200, 20000)],
+    "many corners": [(x, 3000 + 2500 * ((7 * i) % 5)) for i, x in enumerate(range(0, 210, 5))],
+}
+
+
+@pytest.mark.parametrize("name", NARROW)
+@pytest.mark.parametrize("beta", [-3.0, 3.0])
+def test_narrow_features_of_a_spring_table_are_not_missed(name: str, beta: float) -> None:
+    """The torque is highest at a corner of the table that lies between the samples of a coarse look."""
+    draws, forces = (np.array(column, dtype=float) for column in zip(*NARROW[name], strict=True))
+    law = SpringLaw(np.asarray(0.0), np.asarray(0.0), draws, forces)
+    m = machine(58, 86, 71, beta, (460, 30), 65, 1, law)
+    c = cycle(m)
+    fine = np.linspace(0.0, float(c.events.release), 400_001)
+    s = state(m, fine, c.events.catch)
+    free, seated = fine <= float(c.events.catch), (fine > float(c.events.catch)) & (fine <= float(c.events.first_end))
+    for found, wanted in (
+        (c.first_peak, s.torque[free].max()), (c.second_peak, s.torque[seated].max()),
+        (c.largest_tension, s.tension.max()), (c.largest_crank_pin, s.pin_force.max()),
+        (c.largest_stop, s.stop_force.max()), (c.largest_link_bending, s.link_bending.max()),
+    ):  # fmt: skip
+        assert found >= wanted * (1 - 1e-9)
+        assert found == pytest.approx(wanted, rel=5e-3)  # what a step of 0.001° misses of a spike
