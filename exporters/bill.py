@@ -13,6 +13,7 @@ from importlib.resources import files
 from typing import TYPE_CHECKING, Any
 
 from exporters.check_json import FORMAT, Row, check_row, design_row, dump, frame_rows, load_rows
+from exporters.from_memory import from_memory
 from exporters.parts_list import plain
 from exporters.shown import shortfall
 from loads.examine import Examination
@@ -44,6 +45,7 @@ def bill_document(e: Examination) -> Row:
         "loads": load_rows(e),
         "frame_forces": frame_rows(e),
         "checks": [check_row(row) for row in e.checks],
+        "from_memory": from_memory(e),
     }
 
 

@@ -5,8 +5,11 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
+from exporters.chain_rows import chain_values
 from exporters.check_json import FRAME, degrees
 from exporters.curves import cycle_picture
+from exporters.fatigue_rows import fatigue_values
+from exporters.from_memory import from_memory
 from exporters.mechanism_picture import frame_picture, mechanism_picture
 from exporters.part_pictures import part_picture, row_text
 from exporters.parts_list import items
@@ -14,11 +17,10 @@ from exporters.shown import TITLES, Shown, angle, factor_text, figures
 from exporters.site_places import made, worst_rows
 from loads.examine import Examination
 from loads.records import Check, LoadRow
-from parts.design import Assumed, Material
+from parts.design import Assumed
 from parts.quantities import show
 
 GOVERNING, TIGHTEST = 3, 2
-MEMORY = "from memory"
 ONE_SIDE = ("crank_disc", "swing_link", "stop", "crank_pin", "chain_pin")  # drawn as they are behind the chain
 BAR_ENDS_AT = 3.0  # factor over target at which the margin bar is full
 
@@ -60,6 +62,8 @@ def page(e: Examination, masses: Mapping[str, float] | None = None) -> Values:
         },
         "items": [{"item": row, "mass": _mass(row.mass_kg, shown)} for row in items(e, masses)],
         "assumed": [_assumed(row, shown) for row in e.assumed],
+        "chain": chain_values(e),
+        "fatigue": fatigue_values(e),
         "memory": from_memory(e),
     }
 
@@ -189,21 +193,6 @@ def _assumed(row: Assumed, shown: Shown) -> Values:
 
 def _mass(kilograms: float | None, shown: Shown) -> str:
     return "" if kilograms is None else shown.number(kilograms, "mass", 3)
-
-
-def from_memory(e: Examination) -> list[str]:
-    """What nobody has looked up yet and certificates have to confirm: the chain, materials, other sources of checks."""
-    z, chain, found = e.sizes, e.design.chain, []
-    if not chain.confirmed:
-        found.append(f"chain {chain.designation}: {chain.source}")
-    materials: list[Material] = [
-        z.disc.material, z.link.material, z.stop.material, z.crank_pin.material, z.chain_pin.material, z.chain_end.material
-    ]  # fmt: skip
-    found += [f"material {m.name}: {m.source}" for m in materials if not m.confirmed]
-    found += [
-        f"{row.part}, {row.check}: {row.source}" for row in e.checks if MEMORY in row.source and row.part != "chain"
-    ]
-    return list(dict.fromkeys(found))
 
 
 def _markup(text: str) -> Any:

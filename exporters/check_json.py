@@ -134,6 +134,10 @@ def cycle_row(e: Examination) -> Row:
 
 def check_document(e: Examination) -> Row:
     """Everything that is known of the machine, in the order in which it is printed."""
+    from exporters.chain_rows import adjustment_rows, chain_row  # here, for they round by this module
+    from exporters.fatigue_rows import studies
+    from exporters.from_memory import from_memory
+
     units = e.design.identity.units
     return {
         "format": FORMAT,
@@ -144,7 +148,10 @@ def check_document(e: Examination) -> Row:
         "frame_forces": frame_rows(e),
         "checks": [check_row(row) for row in e.checks],
         "assumed": [assumed_row(row, units) for row in e.assumed],
-        "studies": {},
+        "from_memory": from_memory(e),
+        "chain": chain_row(e),
+        "adjustment": adjustment_rows(e),
+        "studies": studies(e),
         "cautions": list(e.cautions),
         "holds": bool(e.holds),
     }

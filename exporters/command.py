@@ -1,25 +1,34 @@
 """The command line. Messages go to standard error, results to standard output.
 
 Exit status: 0 done and every target holds; 1 done, but a target falls short; 2 the input cannot be used; 3 something
-outside the design failed.
+outside the design failed; 130 stopped by the person.
 """
 
 from __future__ import annotations
 
-import os
-import sys
-from collections.abc import Callable
+import textwrap
 from importlib.metadata import version
 from pathlib import Path
-from typing import Annotated
+from typing import TYPE_CHECKING, Annotated
 
 import typer
-from rich.console import Console
 
-from exporters.failure import ToolFailure
-from parts.problems import DesignRefused
+from exporters.terminal import (
+    FAILED,
+    HOLDS,
+    INTERRUPTED,
+    REFUSED,
+    STOPPED,
+    Shown,
+    console,
+    emit,
+    finish,
+    guarded,
+    message,
+)
 
-HOLDS, FALLS_SHORT, REFUSED, FAILED = 0, 1, 2, 3
+if TYPE_CHECKING:
+    from loads.examine import Examination
 
 app = typer.Typer(
     name="drawcrank",
@@ -30,7 +39,7 @@ app = typer.Typer(
         "A drawn spring can maim without warning: read the cautions that check prints."
     ),
     epilog="Exit status: 0 every target holds; 1 a target falls short; 2 the design cannot be used; 3 disk, permissions "
-    "or a missing system library.",
+    "or a missing system library; 130 stopped.",
     add_completion=False,
     no_args_is_help=True,
     pretty_exceptions_enable=False,
@@ -38,10 +47,6 @@ app = typer.Typer(
 )
 
 File = Annotated[Path, typer.Argument(metavar="FILE", help="The design file (TOML).", show_default=False)]
-
-
-def _message(text: str) -> None:
-    typer.echo(text, err=True)
 
 
 def _version(wanted: bool) -> None:
@@ -75,18 +80,19 @@ def start(
     known = {s.name: s for s in starters()}
     if name is None:
         if to is not None:
-            _message(f"--to {to} needs the name of a starter design: {', '.join(known)}")
+            message(f"--to {to} needs the name of a starter design: {', '.join(known)}")
             raise typer.Exit(REFUSED)
         width = max(map(len, known))
         for starter in known.values():
-            typer.echo(f"{starter.name:{width}}  {starter.about}")
-        _message("Write one with: drawcrank start NAME --to FILE")
+            lines = textwrap.wrap(starter.about, 78 - width)
+            typer.echo(f"{starter.name:{width}}  " + f"\n{'':{width + 2}}".join(lines))
+        message("Write one with: drawcrank start NAME --to FILE")
         return
     if name not in known:
         import difflib
 
         near = difflib.get_close_matches(name, known, n=1, cutoff=0.4)
-        _message(
+        message(
             f"no starter design {name!r}"
             + (f"; did you mean {near[0]}?" if near else f"; there are {', '.join(known)}")
         )
@@ -96,7 +102,7 @@ def start(
         with path.open("x", encoding="utf-8", newline="\n") as file:
             file.write(known[name].text)
     except FileExistsError:
-        _message(f"{path} is there already and is left as it is; name another file with --to")
+        message(f"{path} is there already and is left as it is; name another file with --to")
         raise typer.Exit(FAILED) from None
     typer.echo(f"{path} written; next: drawcrank check {path}")
 
@@ -111,12 +117,10 @@ def check(
 
     e = examine(file)
     if json:
-        typer.echo(dump(check_document(e)), nl=False)
+        emit(dump(check_document(e)))
     else:
-        from exporters.summary import print_summary
-
-        print_summary(e, _console())
-    raise typer.Exit(HOLDS if e.holds else FALLS_SHORT)
+        emit(summary(e))
+    finish(e.holds)
 
 
 @app.command(help="Write solids, cut files, bill of loads and parts list into one folder.")
@@ -128,63 +132,73 @@ def build(
     ] = None,
 ) -> None:
     from exporters.folder import build_folder
-    from exporters.summary import print_summary
     from loads.examine import examine
 
     e = examine(file)
     target = to or Path(f"{e.design.identity.number}-{e.design.identity.revision}")
-    with _progress() as report:
-        build_folder(e, target, report)
-    print_summary(e, _console())
-    typer.echo(f"\nFolder: {target}")
-    raise typer.Exit(HOLDS if e.holds else FALLS_SHORT)
+    try:
+        with Shown() as report:
+            build_folder(e, target, report)
+    except KeyboardInterrupt:
+        message(INTERRUPTED)
+        raise typer.Exit(STOPPED) from None
+    emit(summary(e) + f"\nFolder: {target}\n")
+    finish(e.holds)
 
 
-def _console() -> Console:
-    """A console of at most 80 columns, whatever the window; plain text when the output is not a terminal."""
-    out = Console()
-    return Console(width=min(80, out.width) if out.is_terminal else 80, highlight=False)
+@app.command(help="List chains, ropes, materials, fits and bearings; say which values are from memory.")
+def ratings(
+    table: Annotated[
+        str | None,
+        typer.Argument(
+            metavar="[TABLE]", help="chains, ropes, materials, fits or bearings; without it, what there is.",
+            show_default=False,
+        ),
+    ] = None,
+    like: Annotated[
+        str | None,
+        typer.Option("--like", metavar="TEXT", help="Only rows whose name or kind has these words.", show_default=False),
+    ] = None,
+    json: Annotated[bool, typer.Option("--json", help="Print the rows as JSON, each with its source.")] = False,
+) -> None:  # fmt: skip
+    from exporters import ratings as listed
+
+    if table is not None and table not in listed.TABLES:
+        import difflib
+
+        near = difflib.get_close_matches(table, listed.TABLES, n=1, cutoff=0.4)
+        message(f"no table {table!r}; " + (f"did you mean {near[0]}?" if near else f"of {', '.join(listed.TABLES)}"))
+        raise typer.Exit(REFUSED)
+    names = list(listed.TABLES) if table is None else [table]
+    if table is None and like is None and not json:
+        for line in listed.overview():
+            typer.echo(line)
+        message("List one with: drawcrank ratings TABLE --like TEXT")
+        return
+    found = listed.sections(names, like or "")
+    if not found:
+        near = listed.nearest(names, like or "")
+        message(f"nothing like {like!r}" + (f"; the nearest are {', '.join(near)}" if near else " is listed"))
+        raise typer.Exit(REFUSED)
+    if json:
+        from exporters.check_json import dump
+
+        typer.echo(dump(listed.document(found)), nl=False)
+        return
+    for line in listed.lines(found):
+        typer.echo(line)
 
 
-class _progress:
-    """Progress of long work on standard error; nothing where that is not a terminal."""
+def summary(e: Examination) -> str:
+    """The summary as it is shown on this output."""
+    from exporters.summary import print_summary
 
-    def __enter__(self) -> Callable[[str, int, int], None]:
-        self.bar = None
-        if not sys.stderr.isatty():
-            return lambda what, done, of: None
-        from rich.progress import BarColumn, Progress, TextColumn
-
-        self.bar = Progress(
-            TextColumn("{task.description:<40}"), BarColumn(bar_width=24), TextColumn("{task.completed}/{task.total}"),
-            console=Console(stderr=True, width=80), transient=True,
-        )  # fmt: skip
-        self.bar.start()
-        task = self.bar.add_task("", total=None)
-        bar = self.bar
-        return lambda what, done, of: bar.update(task, description=what, completed=done, total=of)
-
-    def __exit__(self, *_: object) -> None:
-        if self.bar is not None:
-            self.bar.stop()
+    out = console()
+    with out.capture() as text:
+        print_summary(e, out)
+    return text.get()
 
 
 def main() -> None:
-    """Run the command; what cannot be done is said in one line each, never as a traceback."""
-    try:
-        app()
-    except DesignRefused as refused:
-        _message(str(refused))
-        count = len(refused.problems)
-        _message(f"{count} problem{'s' if count != 1 else ''}; nothing was written")
-        sys.exit(REFUSED)
-    except BrokenPipeError:
-        # whoever read the output has gone, such as head
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
-        sys.exit(FAILED)
-    except (OSError, ToolFailure) as failure:
-        _message(f"drawcrank: {failure}")
-        sys.exit(FAILED)
-    except KeyboardInterrupt:
-        _message("drawcrank: stopped; nothing was changed")
-        sys.exit(FAILED)
+    """Run the command."""
+    guarded(app)

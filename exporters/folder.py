@@ -22,6 +22,7 @@ from loads.examine import Examination, directions
 from loads.linkage import state
 from parts.assembly import Pose, matrix, placed, pose
 from parts.outline import Part, Plate
+from parts.shape import sound
 
 if TYPE_CHECKING:
     from cadquery import Face, Shape
@@ -74,9 +75,9 @@ def _steps(e: Examination, confirmed: list[dict[str, object]]) -> Iterator[Step]
             from exporters.step import write_part as write_step
 
             shape = solid(part)
-            named = named_faces(part, shape)
+            named = named_faces(part, shape) if is_sound(part) else {}
             found = confirm(part, shape)
-            if not found.holds:
+            if not found.holds and is_sound(part):
                 raise Unconfirmed("; ".join(found.failing))
             shapes[part.name], faces[part.name] = shape, named
             confirmed.append(_confirmed(found))
@@ -103,7 +104,8 @@ def _steps(e: Examination, confirmed: list[dict[str, object]]) -> Iterator[Step]
                 revision=who.revision,
                 falls_short=falls_short(e, part.key),
             )
-            audit(path, part)
+            if is_sound(part):
+                audit(path, part)
 
         return write
 
@@ -135,6 +137,11 @@ def _steps(e: Examination, confirmed: list[dict[str, object]]) -> Iterator[Step]
     yield text("bill_of_loads.json", lambda: bill_json(e))
     yield text("bill_of_loads.html", lambda: bill_html(e))
     yield text("parts_list.csv", lambda: parts_list_csv(e, masses))
+
+
+def is_sound(part: Part) -> bool:
+    """Whether a part can be one piece; if not, a check says so and its files are written as far as they can be."""
+    return not isinstance(part.body, Plate) or not sound(part.body)
 
 
 def _confirmed(found: Confirmation) -> dict[str, object]:

@@ -6,6 +6,8 @@ import re
 from textwrap import wrap
 from typing import TYPE_CHECKING
 
+from exporters.chain_rows import adjustment_line
+from exporters.fatigue_rows import fatigue_line
 from exporters.shown import Shown, angle, factor_text
 from loads.examine import Examination
 from loads.records import Check
@@ -48,7 +50,10 @@ def print_summary(e: Examination, console: Console) -> None:
         say(f"  {name:<25}{value}")
     say()
     count = len(e.assumed)
-    say(f"{count} value{' was' if count == 1 else 's were'} assumed; --json lists them with their reasons.")
+    say(f"{count} value{' was' if count == 1 else 's were'} assumed; check --json lists them with their reasons.")
+    for text in (adjustment_line(e), fatigue_line(e)):
+        for line in wrap(text or "", width):
+            say(line)
     say()
     say("Cautions", "bold yellow")
     for caution in e.cautions:

@@ -1,8 +1,9 @@
-"""The listed chains and materials, read from their tables once."""
+"""The listed chains, materials, ropes and bearings, read from their tables once."""
 
 from __future__ import annotations
 
 import tomllib
+from dataclasses import dataclass
 from functools import lru_cache
 from importlib.resources import files
 from typing import Any
@@ -23,6 +24,142 @@ def load_catalogue() -> Catalogue:
     )
 
 
+@dataclass(frozen=True, slots=True)
+class Rope:
+    """A wire rope: mm, N at the rope grades 1770 and 1960, kg/m."""
+
+    construction: str
+    diameter: float
+    breaking_force_1770: float
+    breaking_force_1960: float
+    mass_per_metre: float
+    least_sheave_ratio: float
+    source: str
+    confirmed: bool
+    from_memory: tuple[str, ...]
+
+    @property
+    def designation(self) -> str:
+        return f"{self.construction} {self.diameter:g}"
+
+
+@dataclass(frozen=True, slots=True)
+class RopeEnd:
+    """How a rope ends; ``efficiency`` is the share of its breaking force that the end carries."""
+
+    name: str
+    efficiency: float
+    source: str
+    confirmed: bool
+
+
+@dataclass(frozen=True, slots=True)
+class Webbing:
+    """A flat woven sling: mm, kg straight, N."""
+
+    width: float
+    working_load: float
+    breaking_force: float
+    source: str
+    confirmed: bool
+
+    @property
+    def designation(self) -> str:
+        return f"polyester webbing {self.width:g}"
+
+
+@dataclass(frozen=True, slots=True)
+class Bearing:
+    """A deep groove ball bearing: mm, N; ``static_rating`` is C0 of ISO 76."""
+
+    designation: str
+    bore: float
+    outer_diameter: float
+    width: float
+    dynamic_rating: float
+    static_rating: float
+    source: str
+    confirmed: bool
+
+
+G = 9.80665  # m/s²
+
+
+def rope_breaking_force(k: float, d: float, r_r: float) -> float:
+    """Least breaking force (N) of a stranded wire rope.
+
+    ``k``: breaking force factor K of the construction; ``d``: nominal diameter, mm, 6 to 60; ``r_r``: rope grade R_r, MPa.
+    Source: EN 12385-4 (and ISO 2408), F_min = K d² R_r / 1000 kN.
+
+    >>> round(rope_breaking_force(0.332, 10.0, 1770.0))
+    58764
+    """
+    return k * d**2 * r_r
+
+
+def rope_mass(w: float, d: float) -> float:
+    """Mass (kg/m) of a wire rope. ``w``: length mass factor W; ``d``: mm. Source: EN 12385-4, M = W d² kg/100 m.
+
+    >>> round(rope_mass(0.345, 10.0), 3)
+    0.345
+    """
+    return w * d**2 / 100.0
+
+
+@lru_cache(maxsize=1)
+def ropes() -> tuple[Rope, ...]:
+    """Every listed wire rope, by construction and diameter."""
+    rows = []
+    for row in _table("ropes.toml")["construction"]:
+        for d in map(float, row["diameters"]):
+            k, w = float(row["breaking_factor"]), float(row["mass_factor"])
+            rows.append(
+                Rope(
+                    str(row["name"]), d, rope_breaking_force(k, d, 1770.0), rope_breaking_force(k, d, 1960.0),
+                    rope_mass(w, d), float(row["least_sheave_ratio"]), str(row["source"]), bool(row["confirmed"]),
+                    tuple(map(str, row.get("from_memory", ()))),
+                )
+            )  # fmt: skip
+    return tuple(rows)
+
+
+@lru_cache(maxsize=1)
+def rope_ends() -> tuple[RopeEnd, ...]:
+    return tuple(
+        RopeEnd(str(row["name"]), float(row["efficiency"]), str(row["source"]), bool(row["confirmed"]))
+        for row in _table("ropes.toml")["end"]
+    )
+
+
+@lru_cache(maxsize=1)
+def webbings() -> tuple[Webbing, ...]:
+    """Flat woven slings; the least breaking force is the working load by the standard's factor."""
+    row = _table("ropes.toml")["webbing"]
+    return tuple(
+        Webbing(float(w), float(m), float(row["factor"]) * float(m) * G, str(row["source"]), bool(row["confirmed"]))
+        for w, m in zip(row["widths"], row["working_loads"], strict=True)
+    )
+
+
+@lru_cache(maxsize=1)
+def bearings() -> tuple[Bearing, ...]:
+    """Every listed deep groove ball bearing, by series and bore."""
+    return tuple(
+        Bearing(
+            str(name), float(bore), float(outer), float(width), float(c), float(c0),
+            str(row["source"]), bool(row["confirmed"]),
+        )
+        for row in _table("bearings.toml")["series"]
+        for name, bore, outer, width, c, c0 in row["rows"]
+    )  # fmt: skip
+
+
+def chain_rows() -> tuple[dict[str, Any], ...]:
+    """Every listed chain as it stands in its table."""
+    return tuple(_table("chains.toml")["chain"])
+
+
+@lru_cache(maxsize=4)
 def _table(name: str) -> dict[str, Any]:
     return tomllib.loads((files("loads") / "data" / name).read_text(encoding="utf-8"))
 

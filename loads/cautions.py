@@ -4,11 +4,14 @@ from __future__ import annotations
 
 import math
 
+from loads.chain_study import LIFTING_SPEED, ChainStudy
 from loads.cycle import Cycle
 from loads.records import Check
 from parts.design import Design
 from parts.quantities import KINDS, factor
 from parts.sizes import Sizes
+
+MUCH_AT_HOLD = 0.15  # of the largest torque
 
 
 def cautions(design: Design, figures: Cycle, sizes: Sizes, checks: tuple[Check, ...]) -> tuple[str, ...]:
@@ -40,6 +43,13 @@ def cautions(design: Design, figures: Cycle, sizes: Sizes, checks: tuple[Check, 
             "Near the middle of the turn the drive torque is nothing or turns round: without drive the machine can stop "
             "there with the spring drawn."
         )
+    peak = max(float(figures.first_peak), float(figures.second_peak))
+    if float(figures.hold_torque) > MUCH_AT_HOLD * peak:
+        share = float(figures.hold_torque) / peak
+        rows.append(
+            f"At the hold the spring still turns the disc back with {share:.0%} of the largest torque: the drive or its "
+            "brake must hold that; a smaller hold margin leaves less."
+        )
     if not design.chain.confirmed:
         rows.append(
             f"The ratings of chain {design.chain.designation} are from memory: confirm them with the maker's certificate."
@@ -53,3 +63,28 @@ def cautions(design: Design, figures: Cycle, sizes: Sizes, checks: tuple[Check, 
     if any("from memory" in row.source for row in checks):
         rows.append("Some checks stand on other values from memory; their sources say which.")
     return tuple(rows)
+
+
+def chain_cautions(study: ChainStudy) -> tuple[str, ...]:
+    """The chain's speed while it winds against the practice of lifting; the figure where no disc speed is given."""
+    practice = f"{_per_minute(LIFTING_SPEED)} m/min to which lifting chains are kept (common practice)"
+    after = "After the release the spring, not the drive, sets the chain's speed."
+    limit = study.limit_disc_speed * 30.0 / math.pi
+    if math.isinf(limit):
+        return ()
+    if study.disc_speed is None:
+        return (
+            f"Chain speed: no disc speed is given. While winding the chain reaches the {practice} at {limit:.3g} rpm. "
+            + after,
+        )
+    fastest = study.most_reach * study.disc_speed
+    if fastest <= LIFTING_SPEED:
+        return ()
+    return (
+        f"Chain speed: while winding up to {_per_minute(fastest)} m/min at {math.degrees(study.most_reach_at):.0f}°, "
+        f"above the {practice}, which would be {limit:.3g} rpm. " + after,
+    )
+
+
+def _per_minute(speed: float) -> str:
+    return f"{speed * 0.06:.3g}"

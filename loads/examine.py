@@ -13,6 +13,7 @@ from loads.chain_study import ChainStudy, chain_study
 from loads.checks import all_checks
 from loads.checks.context import Context
 from loads.cycle import Cycle, cycle
+from loads.fatigue.study import FatigueStudy, fatigue_cautions, fatigue_study
 from loads.linkage import Linkage, State, chain_line, free_line, linkage_of, state
 from loads.members import History, history, load_rows, members, site_histories
 from loads.proportions import SPIGOT, proportion
@@ -48,6 +49,7 @@ class Examination:
     chain: ChainStudy
     assumed: tuple[Assumed, ...]
     cautions: tuple[str, ...]
+    fatigue: FatigueStudy | None = None  # where the design has its table
 
     @property
     def holds(self) -> bool:
@@ -91,13 +93,15 @@ def examine(path: Path) -> Examination:
         members=members(past, stack, design.targets),
         sites={(s.part, s.site): s for s in sites}, findings=findings,
     )  # fmt: skip
-    checks = all_checks(context)
+    fatigue = fatigue_study(context)
+    checks = all_checks(context, () if fatigue is None else fatigue.checks)
     chain = chain_study(design, machine, figures, past, sizes)
     return Examination(
         design=design, machine=machine, figures=figures, past=past, sizes=sizes, stack=stack, parts=parts, sites=sites,
         loads=load_rows(past, sites), checks=checks, findings=findings, chain=chain,
         assumed=(*_as_solved(design, machine, len(stack.sides) > 1), *rubbing, *proportioned),
-        cautions=(*cautions(design, figures, sizes, checks), *chain_cautions(chain)),
+        cautions=(*cautions(design, figures, sizes, checks), *chain_cautions(chain), *fatigue_cautions(fatigue)),
+        fatigue=fatigue,
     )  # fmt: skip
 
 
@@ -120,8 +124,9 @@ def with_friction(design: Design, machine: Linkage, sizes: Sizes) -> tuple[Linka
     assumed: tuple[Assumed, ...] = ()
     radius = friction.bearing_radius
     if radius is None:
-        radius = sizes.disc.bore / SPIGOT / 2.0
-        why = f"half of a shaft of which the disc's bore is {SPIGOT:g}"
+        shaft = sizes.running.shaft.diameter if sizes.running is not None else sizes.disc.bore / SPIGOT
+        radius = shaft / 2.0
+        why = "half of the main shaft"
         assumed = (Assumed("friction.bearing_radius", radius, "length", why),)
     full = np.broadcast_to
     return replace(

@@ -11,6 +11,7 @@ from parts.design import Floats
 FIRST_HALF = "winding, first half"
 SECOND_HALF = "winding, second half"
 HOLD = "hold"
+AS_WRITTEN = 1e-5
 CASES = (FIRST_HALF, SECOND_HALF, HOLD)
 
 
@@ -68,9 +69,9 @@ class Check:
 
     @property
     def holds(self) -> bool:
-        """Whether the factor reaches its target, to a rounding's width."""
+        """Whether the factor reaches its target, to the width of a value that was written down with six figures."""
         factor = self.safety_factor
-        return factor is None or factor >= self.target * (1.0 - 1e-9)
+        return factor is None or factor >= self.target * (1.0 - AS_WRITTEN)
 
     @property
     def margin(self) -> float:

@@ -4,7 +4,9 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from parts.crank_disc import HEAD_BELOW
 from parts.design import Design
+from parts.hardware import cap_screw
 from parts.quantities import show
 from parts.sizes import Sizes
 from parts.stack import Stack
@@ -42,13 +44,13 @@ def bought(design: Design, sizes: Sizes, stack: Stack) -> list[Bought]:
                 "stop_dowel",
                 "Dowel of the stop block",
                 2 * sides,
-                f"ISO 8734, diameter {stop.dowel_diameter:g} mm",
+                f"ISO 8734, diameter {stop.dowel_diameter:g} mm; {disc.thickness + 0.8 * stop.height:.0f} mm long or less",
             ),
             Bought(
                 "stop_bolt",
                 "Bolt of the stop block",
                 2 * sides,
-                f"ISO 4762 {stop.bolt_thread}, from the disc's back",
+                f"ISO 4762 {stop.bolt_thread}, from the disc's back, head flush; {_reach(sizes):.0f} mm long or less",
             ),
         ]
     if stack.chain_pin_support == "cantilever":
@@ -72,6 +74,12 @@ def bought(design: Design, sizes: Sizes, stack: Stack) -> list[Bought]:
         ),
         Bought("motor", "Motor and drive", 1, "for the torque in the bill of loads; turns one way only"),
     ]
+
+
+def _reach(sizes: Sizes) -> float:
+    """From under a stop bolt's head to just below the block's top, mm."""
+    screw = cap_screw(sizes.stop.bolt_thread)
+    return sizes.disc.thickness - screw.head_height - HEAD_BELOW + 0.9 * sizes.stop.height
 
 
 def _spring(design: Design) -> str:

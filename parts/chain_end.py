@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from parts.design import Design
+from parts.fits import hole_class
 from parts.making import plate_stock, turn_of, turned_round
 from parts.outline import Arc, Hole, Line, Part, Placement, Plate, Slot
 from parts.sizes import ChainEndSizes, Sizes
@@ -36,7 +37,7 @@ def outline(sizes: Sizes) -> Plate:
             "chain_pin_eye",
             (0.0, 0.0),
             sizes.chain_pin.middle_diameter,
-            "H8",
+            hole_class(sizes.fits.chain_end),
             "bore, running fit on the chain pin",
         ),
         Hole("chain_hole", (end.length, 0.0), end.pin_diameter, "H8", "bore, for the chain's own pin"),

@@ -6,6 +6,7 @@ Its part frame has z = 0 in the middle of the chain's plane.
 from __future__ import annotations
 
 from parts.design import Design
+from parts.fits import shaft_class
 from parts.making import Length, bar_stock, chamfer, turned
 from parts.outline import Part, Placement, Turned
 from parts.sizes import Sizes
@@ -69,5 +70,9 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
             process="turn, harden, grind",
             placements=(Placement("link", (design.mechanism.link_length, 0.0, 0.0)),),
             color=COLOR,
+            notes=(
+                f"ground to {shaft_class(sizes.fits.chain_pin_link)} for the link, "
+                f"to {shaft_class(sizes.fits.chain_end)} for the chain end",
+            ),
         )
     ]

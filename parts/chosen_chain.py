@@ -94,6 +94,7 @@ def build_chain(table: ChainTable, row: Mapping[str, object] | None) -> tuple[Ch
             source=_source(row, own),
             confirmed=bool(row.get("confirmed", False)) if row is not None else True,
             strand_pitch=_number(known, "transverse_pitch") or width / strands,
+            run_to_spring=table.run_to_spring,
         ),
         assumed,
     )

@@ -5,6 +5,8 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from parts.design import Design
+from parts.fits import hole_class
+from parts.hardware import cap_screw
 from parts.making import copies, plate_stock, turn_of, turned_round
 from parts.marks import CLEAR, Circle, numbered, text_on_disc
 from parts.outline import Counterbore, Hole, Mark, Part, Plate
@@ -15,6 +17,7 @@ from parts.stack import Stack
 
 KEY = "crank_disc"
 COLOR = (0.45, 0.52, 0.60)
+HEAD_BELOW = 0.5  # mm by which a sunk head lies below the face
 
 
 def outline(design: Design, sizes: Sizes) -> Plate:
@@ -24,7 +27,7 @@ def outline(design: Design, sizes: Sizes) -> Plate:
         "crank_pin_hole",
         crank_pin(design),
         sizes.crank_pin.diameter,
-        "H7",
+        hole_class(sizes.fits.crank_pin_disc),
         "ream, press fit of the crank pin",
     )
     bolts = hub_bolts(disc)
@@ -49,7 +52,7 @@ def outline(design: Design, sizes: Sizes) -> Plate:
         circle((0.0, 0.0), disc.outer_diameter, "rim"),
         holes,
         disc.thickness,
-        sinks,
+        (*sinks, *_stop_sinks(design, sizes)),
         marks=_index(design, sizes),
     )
     return turned_round(plate, turn_of(design))
@@ -62,13 +65,21 @@ def has_sinks(sizes: Sizes) -> bool:
 def _stop_holes(design: Design, sizes: Sizes) -> tuple[Hole, ...]:
     stop = sizes.stop
     if stop.style == "post":
-        return (Hole("stop_seat", stop_middle(design, sizes), stop.diameter, "H7", "ream, press fit of the stop"),)
+        return (
+            Hole(
+                "stop_seat",
+                stop_middle(design, sizes),
+                stop.diameter,
+                hole_class(sizes.fits.stop_disc),
+                "ream, press fit of the stop",
+            ),
+        )
     return tuple(
         Hole(
             f"stop_{name}",
             on_disc(design, sizes, at),
             stop.dowel_diameter,
-            "H7",
+            hole_class(sizes.fits.dowel),
             "ream, press fit of the dowel",
         )
         if name.startswith("dowel")
@@ -80,6 +91,22 @@ def _stop_holes(design: Design, sizes: Sizes) -> tuple[Hole, ...]:
             f"drill, clearance for {stop.bolt_thread}",
         )
         for name, at in block_holes(stop).items()
+    )
+
+
+def _stop_sinks(design: Design, sizes: Sizes) -> tuple[Counterbore, ...]:
+    """Sinks on the back for the heads of a block's bolts, so that the hub can seat over them."""
+    stop = sizes.stop
+    if stop.style == "post":
+        return ()
+    screw = cap_screw(stop.bolt_thread)
+    depth = screw.head_height + HEAD_BELOW
+    if depth >= sizes.disc.thickness:
+        return ()
+    return tuple(
+        Counterbore(f"stop_bolt_sink_{name[-1]}", on_disc(design, sizes, at), screw.counterbore_diameter, depth, "back")
+        for name, at in block_holes(stop).items()
+        if name.startswith("bolt")
     )
 
 

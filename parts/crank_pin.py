@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from parts.design import Design
+from parts.fits import shaft_class
 from parts.making import Length, bar_stock, chamfer, copies, flipped, turn_of, turned
 from parts.outline import Part, Turned
 from parts.places import crank_pin
@@ -62,7 +63,10 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
             process="turn, harden, grind",
             placements=copy.placements("disc", at),
             color=COLOR,
-            notes=("press shank ground for a press fit in the disc, journal for a running fit (f7) in the link",),
+            notes=(
+                f"press shank ground to {shaft_class(sizes.fits.crank_pin_disc)} for the disc, "
+                f"journal to {shaft_class(sizes.fits.crank_pin_link)} for the link",
+            ),
         )
         for copy in copies(stack, stack.crank_pin_headed, stack.link_face + begin, sum(p.length for p in pieces))
     ]

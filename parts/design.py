@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass, field
 from typing import Literal
 
@@ -80,6 +81,7 @@ class Chain:
     source: str
     confirmed: bool
     strand_pitch: float = 0.0  # roller chain of several strands: from one to the next
+    run_to_spring: float | None = None  # from where it leaves the sheave to its last pin, at zero draw
 
 
 @dataclass(frozen=True, slots=True)
@@ -104,8 +106,13 @@ class Material:
         """Ultimate strength in MPa at a thickness or diameter in mm; the last step serves beyond the table."""
         return next((s for limit, s in self.ultimates if size <= limit), self.ultimates[-1][1])
 
+    @property
+    def largest_size(self) -> float:
+        """Largest thickness or diameter (mm) that the table has."""
+        return self.yields[-1][0]
+
     def covers(self, size: float) -> bool:
-        return size <= self.yields[-1][0]
+        return size <= self.largest_size
 
 
 @dataclass(frozen=True, slots=True)
@@ -151,6 +158,46 @@ class ChainEndWish:
 
 
 @dataclass(frozen=True, slots=True)
+class FitsWish:
+    """Fits of the joints, "H7/r6": hole class, stroke, shaft class. ``None`` is left to proportion."""
+
+    crank_pin_disc: str | None = None
+    crank_pin_link: str | None = None
+    chain_pin_link: str | None = None
+    chain_end: str | None = None
+    stop_disc: str | None = None
+    dowel: str | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class ShaftWish:
+    """One overhung main shaft; a twin stack has two of them."""
+
+    diameter: float | None = None
+    overhang: float | None = None  # from the disc's back to the middle of the first bearing
+    bearing_spacing: float | None = None  # between the middles of the two bearings
+    drive: Literal["flange", "key"] | None = None  # how the hub that the disc is bolted to sits on the shaft
+    key_length: float | None = None
+    phase_tolerance: float | None = None  # rad by which two discs may stand apart
+    material: Material | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class BearingWish:
+    kind: Literal["rolling", "plain"] | None = None
+    static_rating: float | None = None  # C0 of one rolling bearing
+    diameter: float | None = None  # bore of a plain bush
+    width: float | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class SheavePinWish:
+    diameter: float | None = None
+    cheek: float | None = None  # thickness of each of the two plates that hold it
+    material: Material | None = None
+
+
+@dataclass(frozen=True, slots=True)
 class Friction:
     bearing: float
     crank_pin: float
@@ -190,6 +237,17 @@ class Moving:
 
 
 @dataclass(frozen=True, slots=True)
+class Fatigue:
+    """What the study of fatigue is asked for; ``surfaces`` by what has them: plates, holes, pins."""
+
+    shots: float
+    reliability: float
+    surfaces: Mapping[str, str]
+    fillet_radius: float  # at the shoulders of turned pins
+    chain_dynamic_strength: float | None  # the maker's, of the whole chain
+
+
+@dataclass(frozen=True, slots=True)
 class Design:
     identity: Identity
     mechanism: Mechanism
@@ -210,3 +268,9 @@ class Design:
     digest: str  # SHA-256 of the values that were read, spring table included
     assumed: tuple[Assumed, ...] = field(default=())
     own_materials: tuple[Material, ...] = field(default=())
+    fits: FitsWish = FitsWish()
+    shaft: ShaftWish = ShaftWish()
+    main_bearing: BearingWish = BearingWish()
+    sheave_bearing: BearingWish = BearingWish()
+    sheave_pin: SheavePinWish = SheavePinWish()
+    fatigue: Fatigue | None = None

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import difflib
 import tomllib
 from dataclasses import dataclass
 from functools import lru_cache
@@ -72,3 +73,52 @@ def limits(fit_class: str, nominal: float) -> tuple[float, float]:
         f"no {fit_class} limits for a nominal size of {nominal:g} mm; "
         f"over {first:g} and up to {last:g} mm would be accepted"
     )
+
+
+def classes_of(fit: str) -> tuple[str, str]:
+    """Hole class and shaft class of a fit such as "H7/r6".
+
+    Raises ``ValueError`` with the nearest listed fit where it is not two listed classes, hole first.
+    """
+    hole, _, shaft = fit.replace(" ", "").partition("/")
+    holes = [name for name in fit_classes() if name[0].isupper()]
+    shafts = [name for name in fit_classes() if name[0].islower()]
+    if hole in holes and shaft in shafts:
+        return hole, shaft
+    raise ValueError(f"{_nearest(hole, holes, 'H7')}/{_nearest(shaft, shafts, 'h6')}")
+
+
+def hole_class(fit: str) -> str:
+    """The hole half of a fit, "H7" of "H7/r6"."""
+    return classes_of(fit)[0]
+
+
+def shaft_class(fit: str) -> str:
+    """The shaft half of a fit, "r6" of "H7/r6"."""
+    return classes_of(fit)[1]
+
+
+def _nearest(name: str, listed: list[str], otherwise: str) -> str:
+    """The listed class most like a name: the same letter first, then what is spelt alike."""
+    same = [x for x in listed if x[0] == name[:1]]
+    close = difflib.get_close_matches(name, same or listed, n=1, cutoff=0.0 if same else 0.5)
+    return close[0] if close else otherwise
+
+
+def covers(nominal: float) -> bool:
+    """Whether the classes list a nominal size (mm)."""
+    return 0.0 < nominal <= min(listed.rows[-1][1] for listed in fit_classes().values())
+
+
+def interference(fit: str, nominal: float) -> tuple[float, float]:
+    """Least and largest interference (mm, negative: clearance) of a fit at a nominal size (mm).
+
+    Least: smallest shaft in the largest hole; largest: the other way round. Source: ISO 286-1:2010, 3.3 (fits).
+
+    >>> interference("H7/p6", 20.0)
+    (0.001, 0.035)
+    """
+    hole, shaft = classes_of(fit)
+    hole_low, hole_up = limits(hole, nominal)
+    shaft_low, shaft_up = limits(shaft, nominal)
+    return round(shaft_low - hole_up, 6), round(shaft_up - hole_low, 6)

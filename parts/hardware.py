@@ -82,6 +82,25 @@ def dowel_diameters() -> tuple[float, ...]:
     return tuple(sorted(float(row["diameter"]) for row in _table()["dowel"]))
 
 
+def from_memory(kind: str, size: str) -> str:
+    """What of a bought part's row is from memory, with the row's source; empty where nothing is.
+
+    ``kind``: "cap_screw", "dowel" or "retaining_ring"; ``size``: thread, or diameter in mm as text.
+    """
+    if kind == "cap_screw":
+        row = next((r for r in _table()[kind] if r["size"] == size), None)
+    else:
+        key, wanted = ("diameter" if kind == "dowel" else "shaft"), float(size)
+        rows = sorted(_table()[kind], key=lambda r: float(r[key]))
+        row = next((r for r in reversed(rows) if float(r[key]) <= wanted + 1e-9), rows[0])
+    if row is None:
+        return ""
+    if not row["confirmed"]:
+        return str(row["source"])
+    names = ", ".join(str(name).replace("_", " ") for name in row.get("from_memory", ()))
+    return f"{names} from memory; the rest {row['source']}" if names else ""
+
+
 def property_class_source() -> str:
     """Where the screws' strength comes from, for the bill."""
     row = _table()["property_class"]

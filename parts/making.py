@@ -144,6 +144,18 @@ def _inches(size: float) -> str:
     return f"{whole} {fraction} in" if whole else f"{fraction} in"
 
 
+def stock_source() -> str:
+    """Where the stock sizes are from, empty where they have been looked up."""
+    table = _stock()
+    return "" if table["confirmed"] else str(table["source"])
+
+
+def spacer_source() -> str:
+    """Where the spacers' material is from, empty where it has been looked up."""
+    row = _stock()["spacer"]
+    return "" if row["confirmed"] else str(row["source"])
+
+
 def spacer_material() -> tuple[str, float]:
     """Name and density (kg/m³) of what spacer rings are made of."""
     row = _stock()["spacer"]

@@ -12,23 +12,40 @@ from typing import Any, TypeVar
 from parts import plausible, records
 from parts.catalogue import Catalogue
 from parts.chosen_chain import build_chain, find_row
-from parts.design import Chain, ChainEndWish, Design, DiscWish, LinkWish, Material, PinWish
+from parts.design import (
+    BearingWish,
+    Chain,
+    ChainEndWish,
+    Design,
+    DiscWish,
+    FitsWish,
+    LinkWish,
+    Material,
+    PinWish,
+    ShaftWish,
+    SheavePinWish,
+)
 from parts.problems import DesignRefused, Problem, in_order, key_of, written
 from parts.schema import (
     NOT_YET,
     TABLES,
+    BearingsTable,
+    BearingTable,
     ChainEndTable,
     ChainTable,
     ClearancesTable,
     DesignTable,
     DiscTable,
     EnclosureTable,
+    FatigueTable,
+    FitsTable,
     FrictionTable,
     LinkTable,
     MaterialTable,
     MechanismTable,
     MovingTable,
     PinTable,
+    ShaftTable,
     SheaveTable,
     SpringTable,
     StopTable,
@@ -104,7 +121,9 @@ class _Draft:
         chain = self._chain()
         pitch_radius = self._pitch_radius(chain)
         self._check_together(pitch_radius)
-        if chain is None or pitch_radius is None or self._kernel_is_broken():
+        broken = self._kernel_is_broken()
+        sheave_pin = self._sheave_pin()
+        if chain is None or pitch_radius is None or broken:
             return None
         identity = records.identity(self._table(DesignTable, "design"), self.defaults)
         design = Design(
@@ -130,6 +149,14 @@ class _Draft:
             moving=records.moving(self._table(MovingTable, "moving"), self.defaults) if "moving" in self.raw else None,
             digest=self._digest(),
             own_materials=tuple(material for _, material in self.own_materials.values()),
+            fits=FitsWish(**_sizes(self._table(FitsTable, "fits"))),
+            shaft=ShaftWish(**_sizes(self._table(ShaftTable, "shaft")), material=materials["shaft"]),
+            main_bearing=_bearing(self._table(BearingsTable, "bearings").main),
+            sheave_bearing=_bearing(self._table(BearingsTable, "bearings").sheave),
+            sheave_pin=sheave_pin,
+            fatigue=records.fatigue(self._table(FatigueTable, "fatigue"), self.defaults)
+            if "fatigue" in self.raw
+            else None,
         )
         places = [*TABLES, "materials"]
         assumed = sorted(self.defaults.assumed, key=lambda a: places.index(a.key.partition(".")[0]))
@@ -189,6 +216,8 @@ class _Draft:
             self.problems += plausible.enclosure_problems(self._table(EnclosureTable, "enclosure"), raw)
         if isinstance(raw := self.raw.get("moving"), dict):
             self.problems += plausible.moving_problems(self._table(MovingTable, "moving"), raw)
+        if isinstance(raw := self.raw.get("fatigue"), dict):
+            self.problems += plausible.missing_keys(("fatigue",), raw, ("shots",))
 
     def _kernel_is_broken(self) -> bool:
         return any(
@@ -243,8 +272,12 @@ class _Draft:
             raw = row if isinstance(row, dict) else {}
             self.own_materials[name] = given, records.own_material(name, key_of(path), given, raw, self.defaults)
 
-    def _material(self, table: str) -> Material | None:
-        wanted: str | None = getattr(self.tables[table], "material", None)
+    def _sheave_pin(self) -> SheavePinWish:
+        given = self._table(SheaveTable, "sheave")
+        return SheavePinWish(given.pin_diameter, given.cheek, self._material("sheave", "pin_material"))
+
+    def _material(self, table: str, key: str = "material") -> Material | None:
+        wanted: str | None = getattr(self.tables[table], key, None)
         if wanted is None:
             return None
         if wanted in self.own_materials:
@@ -255,8 +288,12 @@ class _Draft:
         near = nearest(wanted, names)
         accepted = f"{near} (the nearest); " if near else ""
         accepted += f"one of {', '.join(names)}; or a table [materials.NAME] of one's own"
-        self.problems.append(Problem(f"{table}.material", None, written(wanted), accepted, "not listed"))
+        self.problems.append(Problem(f"{table}.{key}", None, written(wanted), accepted, "not listed"))
         return None
+
+
+def _bearing(table: BearingTable | None) -> BearingWish:
+    return BearingWish() if table is None else BearingWish(**_sizes(table))
 
 
 def _sizes(table: Table) -> dict[str, Any]:

@@ -13,6 +13,7 @@ from parts.chosen_chain import PRACTICE
 from parts.design import (
     Assumed,
     Enclosure,
+    Fatigue,
     Friction,
     Identity,
     Material,
@@ -26,6 +27,7 @@ from parts.design import (
 from parts.schema import (
     DesignTable,
     EnclosureTable,
+    FatigueTable,
     FrictionTable,
     MaterialTable,
     MechanismTable,
@@ -186,6 +188,32 @@ def moving(given: MovingTable, defaults: Defaults) -> Moving:
         gravity=given.gravity,
         disc_speed=given.disc_speed,
         stopped_elsewhere=given.stopped_elsewhere or False,
+    )
+
+
+_SURFACES = {  # by what has them: the usual one, and why
+    "plates": ("hot-rolled", "faces as rolled; the flanks are better"),
+    "holes": ("machined", "bored and reamed"),
+    "pins": ("ground", "turned, hardened and ground"),
+}
+
+
+def fatigue(given: FatigueTable, defaults: Defaults) -> Fatigue:
+    """``shots`` must be there."""
+    surfaces = given.surface or {}
+    return Fatigue(
+        shots=given.shots or 0.0,
+        reliability=defaults.take(
+            "fatigue.reliability", given.reliability, 0.99, "number", f"one part in a hundred may fail, {PRACTICE}"
+        ),
+        surfaces={
+            what: defaults.take(f"fatigue.surface.{what}", surfaces.get(what), usual, "text", why)
+            for what, (usual, why) in _SURFACES.items()
+        },
+        fillet_radius=defaults.take(
+            "fatigue.fillet_radius", given.fillet_radius, 0.5, "length", f"at the pins' shoulders, {PRACTICE}"
+        ),
+        chain_dynamic_strength=given.chain_dynamic_strength,
     )
 
 

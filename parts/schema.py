@@ -9,10 +9,11 @@ from __future__ import annotations
 import difflib
 import re
 from collections.abc import Iterable, Mapping
-from typing import TYPE_CHECKING, Annotated, Literal, TypeVar
+from typing import TYPE_CHECKING, Annotated, Literal, TypeVar, get_args
 
 from pydantic import BaseModel, ConfigDict, Field, PlainValidator, ValidationError
 
+from parts.fits import classes_of, fit_classes
 from parts.problems import Problem, Refused, key_of, written
 from parts.quantities import KINDS, factor, read_quantity
 
@@ -20,7 +21,7 @@ if TYPE_CHECKING:
     from pydantic_core import ErrorDetails
 
 NEWEST_FORMAT = 1
-NOT_YET = ("drive", "process", "tolerances", "fatigue")
+NOT_YET = ("drive", "process", "tolerances")
 
 _NAME = re.compile(r"[A-Za-z0-9_][A-Za-z0-9_.-]{0,39}")
 _RESERVED = re.compile(r"(?i:con|prn|aux|nul|com[0-9]|lpt[0-9])(\..*)?")
@@ -107,6 +108,23 @@ def _line_of_text(value: object) -> str:
     return value
 
 
+SURFACES = ("ground", "machined", "hot-rolled", "as-cut")
+SURFACE_OF = ("plates", "holes", "pins")
+
+
+def _surface(value: object) -> dict[str, str]:
+    """One surface for all, or a table of surfaces by what has them."""
+    given: dict[str, object] = value if isinstance(value, dict) else dict.fromkeys(SURFACE_OF, value)
+    named = " or ".join(f'"{name}"' for name in SURFACES)
+    for what, name in given.items():
+        if what not in SURFACE_OF:
+            raise Refused(written(what), f"{', '.join(SURFACE_OF)} as the keys of surface", "unknown key")
+        if name not in SURFACES:
+            near = nearest(name, SURFACES) if isinstance(name, str) else None
+            raise Refused(written(name), named + (f' (the nearest is "{near}")' if near else ""))
+    return {what: str(name) for what, name in given.items()}
+
+
 def _format(value: object) -> int:
     if isinstance(value, int) and not isinstance(value, bool):
         if value == NEWEST_FORMAT:
@@ -118,6 +136,18 @@ def _format(value: object) -> int:
     raise Refused(written(value), str(NEWEST_FORMAT))
 
 
+def _fit(value: object) -> str:
+    if not isinstance(value, str):
+        raise Refused(written(value), 'hole and shaft class such as "H7/r6"')
+    try:
+        return "/".join(classes_of(value))
+    except ValueError as nearest_fit:
+        holes = ", ".join(sorted(name for name in fit_classes() if name[0].isupper()))
+        shafts = ", ".join(sorted(name for name in fit_classes() if name[0].islower()))
+        accepted = f'"{nearest_fit}" (the nearest); a hole class of {holes} and a shaft class of {shafts}, as "H7/r6"'
+        raise Refused(written(value), accepted, "not a listed fit") from None
+
+
 # Bounds that only keep arithmetic finite and nonsense out; no machine comes near them.
 Length = Annotated[float, quantity("length", least=0.001, most=1e6)]
 LengthOrNone = Annotated[float, quantity("length", least=0, most=1e6)]
@@ -127,8 +157,9 @@ Rate = Annotated[float, quantity("rate", least=0, most=1e9)]
 Mass = Annotated[float, quantity("mass", least=0, most=1e6)]
 Stress = Annotated[float, quantity("stress", least=0.1, most=1e5)]
 Coefficient = Annotated[float, number(least=0, most=1)]
-Factor = Annotated[float, number(above=0, most=1000)]
+SafetyTarget = Annotated[float, number(least=1, most=1000)]
 FileName = Annotated[str, PlainValidator(_file_name)]
+Fit = Annotated[str, PlainValidator(_fit)]
 Text = Annotated[str, PlainValidator(_line_of_text)]
 Corner = Annotated[tuple[Place, Place], Field(strict=False)]  # a list in the file
 Polygon = Annotated[list[Corner], Field(max_length=1000)]
@@ -164,6 +195,9 @@ class MechanismTable(Table):
 
 
 class SheaveTable(Table):
+    pin_diameter: Length | None = None
+    pin_material: Text | None = None
+    cheek: Length | None = None
     center: Corner | None = None
     pitch_radius: Annotated[float | None, quantity("length", least=0, most=1e8)] = None
     wrap: Literal["left", "right"] | None = None
@@ -183,6 +217,7 @@ class ChainTable(Table):
     kind: Literal["leaf", "roller"] | None = None
     strands: Annotated[int | None, Field(ge=1, le=3)] = None
     slack: LengthOrNone | None = None
+    run_to_spring: LengthOrNone | None = None
     min_tensile_strength: Annotated[float | None, quantity("force", least=1, most=1e9)] = None
     pitch: Length | None = None
     width_over_pins: Length | None = None
@@ -236,6 +271,37 @@ class ClearancesTable(Table):
     plate_gap: LengthOrNone | None = None
 
 
+class FitsTable(Table):
+    crank_pin_disc: Fit | None = None
+    crank_pin_link: Fit | None = None
+    chain_pin_link: Fit | None = None
+    chain_end: Fit | None = None
+    stop_disc: Fit | None = None
+    dowel: Fit | None = None
+
+
+class ShaftTable(Table):
+    diameter: Length | None = None
+    overhang: Length | None = None
+    bearing_spacing: Length | None = None
+    drive: Literal["flange", "key"] | None = None
+    key_length: Length | None = None
+    phase_tolerance: Annotated[float | None, quantity("angle", least=0, most=30)] = None
+    material: Text | None = None
+
+
+class BearingTable(Table):
+    kind: Literal["rolling", "plain"] | None = None
+    static_rating: Annotated[float | None, quantity("force", above=0, most=1e9)] = None
+    diameter: Length | None = None
+    width: Length | None = None
+
+
+class BearingsTable(Table):
+    main: BearingTable | None = None
+    sheave: BearingTable | None = None
+
+
 class FrictionTable(Table):
     bearing: Coefficient | None = None
     crank_pin: Coefficient | None = None
@@ -246,9 +312,9 @@ class FrictionTable(Table):
 class TargetsTable(Table):
     shock_factor: Annotated[float | None, number(least=1, most=100)] = None
     load_share: Annotated[float | None, number(least=0.5, most=1)] = None
-    chain: Factor | None = None
-    ultimate: Factor | None = None
-    yield_: Annotated[Factor | None, Field(alias="yield")] = None
+    chain: SafetyTarget | None = None
+    ultimate: SafetyTarget | None = None
+    yield_: Annotated[SafetyTarget | None, Field(alias="yield")] = None
 
 
 class EnclosureTable(Table):
@@ -269,6 +335,14 @@ class MovingTable(Table):
     gravity: Annotated[float | None, quantity("acceleration", least=-100, most=100)] = None
     disc_speed: Annotated[float | None, quantity("speed", least=0, most=100_000)] = None
     stopped_elsewhere: bool | None = None
+
+
+class FatigueTable(Table):
+    shots: Annotated[float | None, number(least=1, most=1e9)] = None
+    reliability: Annotated[float | None, number(least=0.5, most=0.9999)] = None
+    surface: Annotated[dict[str, str] | None, PlainValidator(_surface)] = None
+    fillet_radius: Length | None = None
+    chain_dynamic_strength: Annotated[float | None, quantity("force", least=1, most=1e9)] = None
 
 
 class MaterialTable(Table):
@@ -294,10 +368,14 @@ TABLES: Mapping[str, type[Table]] = {
     "chain_pin": PinTable,
     "chain_end": ChainEndTable,
     "clearances": ClearancesTable,
+    "fits": FitsTable,
+    "shaft": ShaftTable,
+    "bearings": BearingsTable,
     "friction": FrictionTable,
     "targets": TargetsTable,
     "enclosure": EnclosureTable,
     "moving": MovingTable,
+    "fatigue": FatigueTable,
 }
 
 
@@ -345,7 +423,7 @@ def _problem(model: type[Table], path: tuple[str, ...], detail: ErrorDetails) ->
     where = (*path, *detail["loc"])
     value, context = detail["input"], detail.get("ctx", {})
     if detail["type"] == "extra_forbidden":
-        return unknown_key(where, keys_of(model))
+        return unknown_key(where, keys_of(_inner(model, detail["loc"][:-1])))
     refused = context.get("error")
     if isinstance(refused, Refused):
         return Problem(key_of(where), None, refused.found, refused.accepted, refused.text)
@@ -360,10 +438,19 @@ def _problem(model: type[Table], path: tuple[str, ...], detail: ErrorDetails) ->
     return Problem(key_of(where), None, written(value), accepted)
 
 
+def _inner(model: type[Table], path: tuple[str | int, ...]) -> type[Table]:
+    """The table within a table that a path leads to."""
+    for key in path:
+        named = get_args(model.model_fields[str(key)].annotation)
+        model = next(one for one in named if isinstance(one, type) and issubclass(one, Table))
+    return model
+
+
 _ACCEPTED: Mapping[str, str] = {
     "literal_error": "{expected}",
     "int_type": "a whole number without quotes",
     "bool_type": "true or false, without quotes",
+    "model_type": "a table",
     "list_type": "a list",
     "tuple_type": "a list of two values",
     "too_long": "a list of at most {max_length} values",

@@ -78,6 +78,61 @@ class ChainEndSizes:
 
 
 @dataclass(frozen=True, slots=True)
+class FitSizes:
+    """The fit of each joint, hole class and shaft class: "H7/r6"."""
+
+    crank_pin_disc: str = "H7/r6"
+    crank_pin_link: str = "H8/f7"
+    chain_pin_link: str = "H7/r6"
+    chain_end: str = "H8/f7"
+    stop_disc: str = "H7/r6"
+    dowel: str = "H7/m6"
+
+
+@dataclass(frozen=True, slots=True)
+class ShaftSizes:
+    """One overhung main shaft; a twin stack has two."""
+
+    diameter: float
+    overhang: float  # from the disc's back to the middle of the first bearing
+    bearing_spacing: float
+    drive: Literal["flange", "key"]
+    key_width: float  # 0: no key
+    key_height: float
+    key_seat: float  # depth of the keyway in the shaft
+    key_length: float
+    phase_tolerance: float  # rad between two discs; 0 where there is one
+    material: Material
+
+
+@dataclass(frozen=True, slots=True)
+class BearingSizes:
+    kind: Literal["rolling", "plain"]
+    static_rating: float  # C0 in N; 0 for a plain bush
+    diameter: float  # bore of a plain bush; 0 for a rolling bearing
+    width: float
+
+
+@dataclass(frozen=True, slots=True)
+class SheavePinSizes:
+    diameter: float
+    cheek: float  # thickness of each plate that holds it
+    hub: float  # width of the sheave on it
+    gap: float  # between sheave and cheek
+    material: Material
+
+
+@dataclass(frozen=True, slots=True)
+class Running:
+    """What turns the disc and leads the chain. None of it is made here; it is sized for the loads."""
+
+    shaft: ShaftSizes
+    main_bearing: BearingSizes
+    sheave_bearing: BearingSizes
+    sheave_pin: SheavePinSizes
+
+
+@dataclass(frozen=True, slots=True)
 class Sizes:
     plate_gap: float  # between disc and link, and play each side of the chain's plane
     disc: DiscSizes
@@ -86,3 +141,5 @@ class Sizes:
     crank_pin: CrankPinSizes
     chain_pin: ChainPinSizes
     chain_end: ChainEndSizes
+    fits: FitSizes = FitSizes()
+    running: Running | None = None

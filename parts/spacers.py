@@ -20,9 +20,17 @@ WORTH = 0.5  # mm of room beyond the gap under which the chain end needs no ring
 
 
 def _ring(
-    design: Design, key: str, title: str, bore: float, outer: float, depth: float, thickness: float, stack: Stack, mover: str,
+    design: Design,
+    key: str,
+    title: str,
+    bore: float,
+    outer: float,
+    depth: float,
+    thickness: float,
+    stack: Stack,
+    mover: str,
     at: tuple[float, float],
-) -> list[Part]:  # fmt: skip
+) -> list[Part]:
     material, density = spacer_material()
     return [
         Part(

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from parts.design import Design
+from parts.fits import hole_class, shaft_class
 from parts.making import (
     Length,
     bar_stock,
@@ -17,14 +18,14 @@ from parts.making import (
 )
 from parts.outline import Body, Hole, Part, Plate, Turned
 from parts.places import block_holes, seat_direction, stop_middle
-from parts.sizes import Sizes, StopSizes
+from parts.sizes import FitSizes, Sizes, StopSizes
 from parts.stack import Stack
 
 KEY = "stop"
 COLOR = (0.66, 0.33, 0.30)
 
 
-def block(stop: StopSizes, turn: int) -> Plate:
+def block(stop: StopSizes, turn: int, dowel_fit: str = FitSizes().dowel) -> Plate:
     """The block in its own frame: origin at its middle, x along the seated link towards the chain pin.
 
     ``contact_face`` looks towards the link; the corners away from it are broken.
@@ -42,7 +43,7 @@ def block(stop: StopSizes, turn: int) -> Plate:
         )
     )
     holes = tuple(
-        Hole(name, at, stop.dowel_diameter, "H7", "ream, dowel")
+        Hole(name, at, stop.dowel_diameter, hole_class(dowel_fit), "ream, dowel")
         if name.startswith("dowel")
         else Hole(name, at, stop.bolt_tapping_hole, None, f"tap {stop.bolt_thread}")
         for name, at in block_holes(stop).items()
@@ -69,7 +70,7 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
     angle = 0.0 if is_post else turn * seat_direction(design, sizes)
     parts = []
     for copy in copies(stack, False, stack.disc_face - stop.height, thickness):
-        body: Body = post(stop, sizes.disc.thickness, copy.away) if is_post else block(stop, turn)
+        body: Body = post(stop, sizes.disc.thickness, copy.away) if is_post else block(stop, turn, sizes.fits.dowel)
         parts.append(
             Part(
                 key=KEY,
@@ -86,7 +87,7 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
                 process="turn, grind" if is_post else "cut, mill the contact face, ream, tap",
                 placements=copy.placements("disc", at, angle),
                 color=COLOR,
-                notes=("press shank ground for a press fit in the disc's stop seat",)
+                notes=(f"press shank ground to {shaft_class(sizes.fits.stop_disc)} for the disc's stop seat",)
                 if is_post
                 else ("dowel holes reamed together with the disc",),
             )

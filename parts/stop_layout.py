@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 
 from parts.design import Mechanism
+from parts.hardware import cap_screw
 from parts.sizes import StopSizes
 
 HOLES_AT = 0.25  # of the block's length and width, either side of its middle
@@ -26,12 +27,11 @@ def stop_center(m: Mechanism, link_width: float, stop: StopSizes) -> tuple[tuple
 
 
 def block_hole_offsets(stop: StopSizes) -> tuple[tuple[float, float, float], ...]:
-    """Holes of a block in its own frame: along the link and across it from the block's middle, and diameter in the disc.
+    """Holes of a block in its own frame: along the link and across it from the block's middle, and room in the disc.
 
     Dowels on one diagonal, bolts on the other; x runs along the seated link towards the chain pin, y towards the link in
-    a ccw machine. Dowels come first. mm.
+    a ccw machine. Dowels come first. The room is the diameter of the dowel or of the sink for the bolt's head. mm.
     """
     x, y = HOLES_AT * stop.length, HOLES_AT * stop.width
-    return (
-        (-x, -y, stop.dowel_diameter), (x, y, stop.dowel_diameter), (-x, y, stop.bolt_hole), (x, -y, stop.bolt_hole)
-    )  # fmt: skip
+    sink = cap_screw(stop.bolt_thread).counterbore_diameter
+    return ((-x, -y, stop.dowel_diameter), (x, y, stop.dowel_diameter), (-x, y, sink), (x, -y, sink))

@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from dataclasses import replace
 
 from parts.design import Design
+from parts.fits import hole_class
 from parts.making import copies, plate_stock, turn_of, turned_round
 from parts.marks import CLEAR, Circle, numbered, text_on_strip
 from parts.outline import Arc, Counterbore, Hole, Line, Mark, Part, Plate
@@ -27,12 +28,18 @@ def outline(design: Design, sizes: Sizes, stack: Stack) -> Plate:
     )
     held = "press" if stack.chain_pin_support == "cantilever" else "close"
     holes = (
-        Hole("crank_pin_eye", (0.0, 0.0), sizes.crank_pin.diameter, "H8", "bore, running fit on the crank pin"),
+        Hole(
+            "crank_pin_eye",
+            (0.0, 0.0),
+            sizes.crank_pin.diameter,
+            hole_class(sizes.fits.crank_pin_link),
+            "bore, running fit on the crank pin",
+        ),
         Hole(
             "chain_pin_eye",
             (length, 0.0),
             sizes.chain_pin.diameter,
-            "H7",
+            hole_class(sizes.fits.chain_pin_link),
             f"bore, {held} fit of the chain pin",
         ),
     )

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from loads.checks import chain, eyes, fit, link, pins, stop
+from loads.checks import bearings, chain, disc, eyes, fit, link, pins, press, shaft, sheave, stop
 from loads.checks.context import Context
 from loads.records import Check
 
@@ -14,11 +14,16 @@ FAMILIES: tuple[Callable[[Context], list[Check]], ...] = (
     eyes.check,
     link.check,
     stop.check,
+    press.check,
+    disc.check,
+    shaft.check,
+    bearings.check,
+    sheave.check,
     fit.check,
 )
 
 
-def all_checks(context: Context) -> tuple[Check, ...]:
-    """Every family's rows, the least margin first."""
-    rows = [row for family in FAMILIES for row in family(context)]
+def all_checks(context: Context, of_studies: tuple[Check, ...] = ()) -> tuple[Check, ...]:
+    """Every family's rows and those of the studies that ran, the least margin first."""
+    rows = [row for family in FAMILIES for row in family(context)] + list(of_studies)
     return tuple(sorted(rows, key=lambda row: (row.margin, row.part, row.site, row.check)))

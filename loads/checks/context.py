@@ -12,7 +12,7 @@ from loads.members import History, Members
 from loads.records import Check, SiteHistory
 from parts.design import Design, Floats, Material
 from parts.outline import Part, Plate
-from parts.sizes import Sizes
+from parts.sizes import Running, Sizes
 from parts.stack import Stack
 
 if TYPE_CHECKING:
@@ -42,6 +42,13 @@ class Context:
         if not isinstance(body, Plate):
             raise TypeError(f"{key} is not a plate")
         return body
+
+    @property
+    def running(self) -> Running:
+        """Shaft, bearings and sheave pin, which the proportions settle."""
+        if self.sizes.running is None:
+            raise ValueError("sizes without a shaft")
+        return self.sizes.running
 
     def site(self, part: str, site: str) -> SiteHistory:
         return self.sites[part, site]

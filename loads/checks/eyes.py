@@ -134,7 +134,8 @@ def eye_rules(t: float, d: float, play: float, f_y: float, f_u: float, around: A
          bth.single_plane_strength(c_r, f_u, t, ahead + hole / 2.0, hole, side),
          f"C_r F_u [1.13 (R − D_h/2) + 0.92 b_e/(1 + b_e/D_h)] t, N_d = 1; {loose}", bth.BTH),
         ("gross yield", True, True, gross_yield(t, 2.0 * side + d, f_y), "F_y t (2b + d)", AISC_D5),
-        ("tear-out", False, False, shear_rupture(t, around.along, d, f_u), "0.6 F_u 2t(a + d/2), a along the force", AISC_D5),
+        ("tear-out", False, False, shear_rupture(t, around.along, d, f_u), "0.6 F_u 2t(a + d/2), a along the force",
+         AISC_D5),
         ("tear-out, BTH-1", False, False, bth.shear_strength(f_u, t, around.along, d, hole),
          "0.70 F_u 2t [a + D_p/2 (1 − cos φ)], φ = 55° D_p/D_h, a along the force, N_d = 1", bth.BTH),
     ]  # fmt: skip
@@ -239,7 +240,7 @@ def check(c: Context) -> list[Check]:
     crank_pin, chain_pin, link, end = z.crank_pin, z.chain_pin, z.link, z.chain_end
     crank_yield = crank_pin.material.yield_strength(crank_pin.diameter)
     chain_yield = chain_pin.material.yield_strength(chain_pin.diameter)
-    in_sink = link.thickness - link.counterbore_depth
+    in_sink = max(0.0, link.thickness - link.counterbore_depth)
     along_x = np.zeros_like(c.members.torque)
     tension = np.stack([length_of(c.members.chain_on_pin), along_x, along_x])
     meat = end.width - 2.0 * sum(b - a for a, b in end.slots)

@@ -4,17 +4,44 @@ from __future__ import annotations
 
 from loads.checks.context import COMMON, Context
 from loads.records import Check
+from parts.crank_disc import HEAD_BELOW
+from parts.hardware import cap_screw
 from parts.outline import Plate
-from parts.shape import least_web
+from parts.shape import least_web, sound
 
 WEB_OVER_HOLE = 0.25  # least web beside a hole as a share of its diameter
 LEAST_WEB = 2.0  # mm
+LEAST_GAP = 0.2  # mm
 GEOMETRY = "geometry of the design"
 
 
 def check(c: Context) -> list[Check]:
     """All checks of shape and room."""
-    return [*_webs(c), *_sinks(c), *_press(c), *_stop(c), *_spring(c), *_start(c), *_clashes(c)]
+    return [*_shapes(c), *_webs(c), *_gap(c), *_sinks(c), *_press(c), *_stop(c), *_spring(c), *_start(c), *_clashes(c)]
+
+
+def _shapes(c: Context) -> list[Check]:
+    """A row for each plate that cannot be cut or modelled as one piece; its webs and clashes say little beside that."""
+    rows = []
+    for part in c.parts:
+        faults = sound(part.body) if isinstance(part.body, Plate) else []
+        if faults:
+            rows.append(
+                c.shape_check(
+                    part.key, "outline", "can be made in one piece", float(len(faults)), 0.0, "faults",
+                    "closed outline, holes inside it and apart", GEOMETRY, "; ".join(faults),
+                )
+            )  # fmt: skip
+    return rows
+
+
+def _gap(c: Context) -> list[Check]:
+    return [
+        c.shape_check(
+            "assembly", "between the plates", "running gap", LEAST_GAP, c.stack.plate_gap, "mm",
+            "plates that turn past each other stand apart", COMMON,
+        )
+    ]  # fmt: skip
 
 
 def _webs(c: Context) -> list[Check]:
@@ -60,6 +87,15 @@ def _sinks(c: Context) -> list[Check]:
             COMMON,
         )
     ]
+    if c.sizes.stop.style == "block":
+        screw = cap_screw(c.sizes.stop.bolt_thread)
+        rows.append(
+            c.shape_check(
+                "crank_disc", "stop_bolt_sink", "floor under the stop's bolt heads", 0.3 * disc.thickness,
+                max(disc.thickness - screw.head_height - HEAD_BELOW, 0.0), "mm",
+                "a third of the thickness stays under heads that lie below the back, where the hub seats", COMMON,
+            )
+        )  # fmt: skip
     if link.counterbore_depth > 0.0:
         rows.append(
             c.shape_check(

@@ -8,7 +8,9 @@ import numpy as np
 
 from loads.checks.context import BEAM, EN_PINS, Context, length_of, rule_note
 from loads.records import Check
+from parts.contact_lengths import chain_pin_in_link, crank_pin_in_link
 from parts.design import Floats, Material
+from parts.fits import covers, interference
 
 
 def circle_area(d: Floats | float) -> Floats:
@@ -65,6 +67,50 @@ def shear_and_bending_factor(shear_use: Floats, bending_use: Floats) -> Floats:
     """
     use = np.hypot(shear_use, bending_use)
     return np.where(use > 0.0, 1.0 / np.maximum(use, 1e-300), np.inf)
+
+
+def eye_contact_stress(force: Floats, modulus: float, d: float, d_0: Floats | float, t: float) -> Floats:
+    """σ_h,Ed = 0.591 sqrt(E F (d_0 − d)/(d² t)) in MPa of a pin d in a hole d_0 ≥ d over t; N, mm, MPa.
+
+    Source: EN 1993-1-8:2005 §3.13.2(3), equation 3.15.
+    """
+    gap = np.maximum(np.asarray(d_0, dtype=float) - d, 0.0)
+    return np.asarray(0.591 * np.sqrt(modulus * np.asarray(force) * gap / (d**2 * t)))
+
+
+def eye_contact_limit(f_y: float) -> float:
+    """f_h,Rd = 2.5 f_y in MPa, γM6,ser = 1. Source: EN 1993-1-8:2005 §3.13.2(3), equation 3.16."""
+    return 2.5 * f_y
+
+
+def contact_checks(c: Context) -> list[Check]:
+    """Contact stress of each pin that runs or lies with clearance, at the fit's largest clearance."""
+    z = c.sizes
+    crank, chain, link, end = z.crank_pin, z.chain_pin, z.link, z.chain_end
+    journal = crank_pin_in_link(crank.diameter, link.thickness, link.counterbore_depth, c.stack.crank_pin_headed)
+    whole, side = length_of(c.members.chain_on_pin), length_of(c.members.chain_side)
+    rows = []
+    for part, site, d, fit, t, force, pin, eye, size in (
+        ("crank_pin", "journal", crank.diameter, z.fits.crank_pin_link, journal,
+         length_of(c.members.pin_on_link), crank.material, link.material, link.thickness),
+        ("chain_pin", "journal", chain.middle_diameter, z.fits.chain_end, end.width, whole, chain.material,
+         end.material, end.width),
+        ("chain_pin", "link_seat", chain.diameter, z.fits.chain_pin_link,
+         chain_pin_in_link(chain.diameter, link.thickness), side, chain.material, link.material, link.thickness),
+    ):  # fmt: skip
+        play = -interference(fit, d)[0] if covers(d) else 0.0
+        if play <= 0.0 or t <= 0.0:
+            continue
+        modulus = 2.0 / (1.0 / pin.youngs_modulus + 1.0 / eye.youngs_modulus)
+        rows.append(
+            c.worst_check(
+                part, site, "contact in the eye", eye_contact_stress(force, modulus, d, d + play, t),
+                eye_contact_limit(min(pin.yield_strength(d), eye.yield_strength(size))), "MPa", 1.0,
+                f"0.591 sqrt(E F (d_0 − d)/(d² t)) ≤ 2.5 f_y, d_0 − d = {play:.3f} mm ({fit}), γ = 1", EN_PINS,
+                rule_note(eye),
+            )
+        )  # fmt: skip
+    return rows
 
 
 def pin_checks(
@@ -140,7 +186,11 @@ def pin_checks(
 
 
 def check(c: Context) -> list[Check]:
-    """Crank pin at its root in the disc; chain pin at its middle and at its seat in the link."""
+    """Crank pin at its root in the disc; chain pin at its middle and at its seat in the link; contact in the eyes."""
+    return [*_sections(c), *contact_checks(c)]
+
+
+def _sections(c: Context) -> list[Check]:
     crank, chain = c.sizes.crank_pin, c.sizes.chain_pin
     root = c.site("crank_pin", "root")
     # at the disc's face, not at the middle of the seat: half the disc nearer the load

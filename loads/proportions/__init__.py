@@ -9,7 +9,7 @@ from __future__ import annotations
 
 from loads.members import History
 from loads.proportions.basis import SPIGOT
-from loads.proportions.discs import DiscSide
+from loads.proportions.drive import DriveSide
 from loads.proportions.links import LinkSide
 from parts.catalogue import Catalogue
 from parts.design import Assumed, Design
@@ -19,7 +19,7 @@ from parts.stack import Stack
 __all__ = ["SPIGOT", "proportion"]
 
 
-class _Proportioner(LinkSide, DiscSide):
+class _Proportioner(LinkSide, DriveSide):
     """Settles one design's sizes, in the order in which one needs another."""
 
     def settle(self) -> tuple[Sizes, Stack, tuple[Assumed, ...]]:
@@ -32,8 +32,11 @@ class _Proportioner(LinkSide, DiscSide):
         chain_pin = self._chain_pin(pair)
         end = self._chain_end(pair, chain_pin, width, tongue, slots)
         disc = self._disc(pair, link, stop, width, bore)
-        sizes = Sizes(self.gap, disc, link, stop, crank, chain_pin, end)
-        return sizes, self.stack(width, link.thickness, disc.thickness), tuple(self.ledger.rows)
+        stack = self.stack(width, link.thickness, disc.thickness)
+        fits = self._fits(crank.diameter, chain_pin.diameter, stop, stack)
+        running = self._running(disc, link, crank, chain_pin, fits, stack)
+        sizes = Sizes(self.gap, disc, link, stop, crank, chain_pin, end, fits, running)
+        return sizes, stack, tuple(self.ledger.rows)
 
 
 def proportion(design: Design, past: History, catalogue: Catalogue) -> tuple[Sizes, Stack, tuple[Assumed, ...]]:

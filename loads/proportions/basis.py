@@ -116,7 +116,7 @@ class Basis:
     """One design with the loads and sizes that its proportions come from."""
 
     def __init__(self, design: Design, past: History, catalogue: Catalogue) -> None:
-        self.design, self.past = design, past
+        self.design, self.past, self.catalogue = design, past, catalogue
         self.ledger = Ledger()
         self.step = 25.4 / 16.0 if design.identity.units == "us" else 1.0
         take, z = self.ledger.material, catalogue
@@ -158,6 +158,16 @@ class Basis:
         both = 1.0 / pins.shear_and_bending_factor(v, m)
         return np.maximum(np.maximum(v * self.ultimate, m * self.yields), both * self.yields)
 
+    def double_shear_use(self, d: Floats, material: Material, shear: float, moment: float) -> Floats:
+        """Largest use of a pin in double shear that is to be taken out again, over diameters."""
+        f_u = np.array([material.ultimate_strength(float(x)) for x in d])
+        f_y = np.array([material.yield_strength(float(x)) for x in d])
+        v = shear / pins.pin_shear_capacity(d, f_u)
+        m = moment / pins.pin_bending_capacity(d, f_y)
+        both = 1.0 / pins.shear_and_bending_factor(v, m)
+        later = moment / pins.replaceable_pin_bending_capacity(d, f_y)
+        return np.asarray(np.max([v * self.ultimate, m * self.yields, both * self.yields, later], axis=0))
+
     def bearing_use(
         self,
         d: Floats,
@@ -170,5 +180,5 @@ class Basis:
     ) -> Floats:
         """Share of the bearing capacity that is used, over pin diameters; ``at`` is the thickness that strength goes by."""
         f_y = np.array([min(pin.yield_strength(float(x)), plate.yield_strength(at)) for x in d])
-        capacity = eyes.turning_bearing(t, d, f_y) if turns else eyes.bearing(t, d, f_y)
+        capacity = np.min([rule.capacity for rule in eyes.bearing_rules(t, d, f_y, turns)], axis=0)
         return np.asarray(force * self.yields / np.maximum(capacity, 1e-9))

@@ -8,7 +8,8 @@ from dataclasses import replace
 import numpy as np
 
 from loads.checks import eyes, pins
-from loads.checks.link import FREE_END, column_stress, section_stress
+from loads.checks.link import link_rules
+from loads.checks.link_sections import LinkShape
 from loads.proportions.basis import (
     LEAST_LINK,
     LEAST_WIDTH,
@@ -25,6 +26,9 @@ from parts.contact_lengths import chain_pin_in_link, crank_pin_in_link
 from parts.design import Floats
 from parts.hardware import retaining_ring
 from parts.sizes import ChainEndSizes, ChainPinSizes, CrankPinSizes, LinkSizes
+
+# the loosest fits that are chosen where the design names none: a pin that runs, and one that lies close or is pressed in
+RUNNING, CLOSE = "H8/f7", "H7/h6"
 
 
 class LinkSide(Basis):
@@ -84,7 +88,7 @@ class LinkSide(Basis):
 
     def _crank_diameter(self, t: float, end_width: float) -> tuple[float, float]:
         given = self.design.crank_pin.diameter
-        d = np.array([given]) if given is not None else self.pins
+        d = np.array([given]) if given is not None else self.within(self.pins, self.crank_material)
         stack = self.stack(end_width, t, 10.0)
         couple = -stack.pin_root_arm * self.loads.pin + stack.chain_offset * self.loads.chain
         moment = float(np.max(np.linalg.norm(couple, axis=0)))
@@ -149,54 +153,60 @@ class LinkSide(Basis):
         if self.design.link.width is not None:
             widths = np.array([self.design.link.width])
         low, high = 0, len(widths) - 1
-        if self._width_use(float(widths[high]), pair, end_width) > 1.0:
+        if high == 0 or self._width_use(float(widths[0]), pair, end_width) <= 1.0:
+            high = 0
+        elif self._width_use(float(widths[high]), pair, end_width) > 1.0:
             low = high
-        while low < high:  # every use falls as the link gets wider
+        while low < high:  # every use falls as the link gets wider; a few crank angles bring it near
             middle = (low + high) // 2
-            if self._width_use(float(widths[middle]), pair, end_width) <= 1.0:
+            if self._width_use(float(widths[middle]), pair, end_width, 8) <= 1.0:
                 high = middle
             else:
                 low = middle + 1
-        width = float(widths[high])
-        return width, self._width_use(width, pair, end_width)
+        while (use := self._width_use(float(widths[high]), pair, end_width)) > 1.0 and high + 1 < len(widths):
+            high += 1
+        return float(widths[high]), use
 
-    def _width_use(self, w: float, pair: Pair, end_width: float) -> float:
-        """Largest use of a link ``w`` mm wide: eyes, section at the stop, strut."""
+    def _width_use(self, w: float, pair: Pair, end_width: float, every: int = 1) -> float:
+        """Largest use of a link ``w`` mm wide: eyes, sections from pin to pin, strut, sideways buckling.
+
+        At each crank angle, or at one in ``every``.
+        """
         t, m, f = pair.thickness, self.design.mechanism, self.loads
-        stack = self.stack(end_width, t, 10.0)
+        pin, chain = f.pin[:, ::every], f.chain[:, ::every]
         sink = float(sink_depth(np.array(pair.crank))) if self.headed else 0.0
-        f_y, f_u = self.link_material.yield_strength(t), self.link_material.ultimate_strength(t)
-        size = np.linalg.norm(f.pin, axis=0)
-        towards_end = float(np.max(np.where(f.pin[0] <= 1e-9 * size, size, 0.0)))
-        uses = []
-        for d, thick, pull, tear in (
-            (pair.crank, t - sink, float(np.max(-f.pin[0])), towards_end),
-            (pair.chain, t, float(np.max(f.chain[0])), float(np.max(f.tension))),
-        ):
-            a = w / 2.0 - d / 2.0  # the same to the end, to the flanks and across a transverse force
-            net = eyes.tensile_rupture(thick, eyes.effective_width(thick, a / eyes.LEAST_A), f_u)
-            uses += [
-                pull * self.ultimate / float(net),
-                tear * self.ultimate / float(eyes.shear_rupture(thick, a, d, f_u)),
-            ]
-        out_of_plane, torsion = stack.chain_offset * f.chain[0], stack.chain_offset * f.chain[1]
-        bending = f.chain[1] * (m.link_length - m.stop_reach)
-        stress = float(np.max(section_stress(f.chain[0], bending, out_of_plane, torsion, w, t)))
-        thrust = max(0.0, float(np.max(-f.chain[0])))
-        modulus = self.link_material.youngs_modulus
-        column = min(
-            float(column_stress(k * m.link_length * math.sqrt(12.0) / depth, f_y, modulus))
-            for depth, k in ((t, FREE_END), (w, 1.0))
+        f_y, fits = self.link_material.yield_strength(t), self.design.fits
+        eye = max(
+            self._eye_use(w, pair.crank, t - sink, t, fits.crank_pin_link or RUNNING, -pin, pair.chain),
+            self._eye_use(w, pair.chain, t, t, fits.chain_pin_link or CLOSE, chain, pair.crank),
         )
-        uses += [stress * self.yields / f_y, thrust * self.yields / (column * w * t)]
-        if stack.chain_offset:
-            euler = math.pi**2 * modulus * w * t**3 / (12.0 * (FREE_END * m.link_length) ** 2)
-            if self.yields * thrust >= euler:
-                return math.inf
-            couple = float(np.max(np.abs(np.where(f.chain[0] < 0.0, out_of_plane, 0.0))))
-            both = thrust / (w * t) + 6.0 * couple / (w * t**2) / (1.0 - self.yields * thrust / euler)
-            uses.append(both * self.yields / f_y)
-        return max(uses)
+        if eye > 1.0:
+            return eye
+        head = self._head(pair.crank) + 1.0 if self.headed else 0.0
+        shape = LinkShape(m.link_length, m.stop_reach, w, t, pair.crank, pair.chain, head, sink)
+        offset = self.stack(end_width, t, 10.0).chain_offset
+        couple = offset * np.stack([-chain[1], chain[0], np.zeros_like(chain[0])])
+        rules = link_rules(shape, f_y, self.link_material.youngs_modulus, self.yields, chain, couple, -pin - chain)
+        return max(eye, *(float(np.max(r.demand)) * self.yields / r.capacity for r in rules))
+
+    def _eye_use(self, w: float, d: float, thick: float, plate: float, fit: str, force: Floats, other: float) -> float:
+        """Largest use of an eye with a round end ``w`` mm wide; ``force`` (3, n) on it with x away from the link's body."""
+        f_y, f_u = self.link_material.yield_strength(plate), self.link_material.ultimate_strength(plate)
+        size = np.hypot(force[0], force[1])
+        room, thick = max(0.0, w / 2.0 - d / 2.0), max(thick, 1e-9)
+        sine = np.abs(force[1]) / np.maximum(size, 1e-300)
+        inwards = np.minimum(
+            w / 2.0 / np.maximum(sine, 1e-9) - d / 2.0, self.design.mechanism.link_length - (d + other) / 2.0
+        )
+        around = eyes.Around(np.where(force[0] >= -1e-9 * size, room, np.maximum(inwards, room)), room, room)
+        play, pull = eyes.largest_play(fit, d), np.maximum(0.0, force[0])
+        uses = [
+            float(np.max((pull if r.of_pull else size) / np.maximum(r.capacity, 1e-9)))
+            * (self.yields if r.by_yield else self.ultimate)
+            for r in eyes.eye_rules(thick, d, play, f_y, f_u, around)
+        ]
+        oblique = eyes.eye_oblique_use(thick, d, play, f_y, f_u, around, pull, force[1])
+        return max(*uses, float(np.max(oblique)) * self.yields)
 
     def _link(self, pair: Pair) -> LinkSizes:
         sink = float(sink_depth(np.array(pair.crank))) if self.headed else 0.0
@@ -230,16 +240,18 @@ class LinkSide(Basis):
         chain, wish = self.design.chain, self.design.chain_end
         own = self.ledger.take("chain_end.pin_diameter", wish.pin_diameter, chain.pin_diameter, "the chain's own pin")
         force = float(np.max(self.loads.whole))
-        f_u = self.end_material.ultimate_strength(width)
+        f_y, f_u = self.end_material.yield_strength(width), self.end_material.ultimate_strength(width)
         meat = width - 2.0 * sum(b - a for a, b in slots)
         least = max(1.6 * pair.middle, 2.0 * own, chain.plate_height if slots else 0.0)
         h = np.arange(round_up(least, self.step), least + 300.0, self.step)
         use = np.zeros_like(h)
-        for d, t in ((pair.middle, width), (own, meat)):
+        hangs = self.design.fits.chain_end or RUNNING
+        for d, t, fit in ((pair.middle, width, hangs), (own, meat, eyes.CHAINS_OWN_PIN)):
             a = h / 2.0 - d / 2.0
-            net = eyes.tensile_rupture(t, eyes.effective_width(t, a / eyes.LEAST_A), f_u)
-            out = eyes.shear_rupture(t, a, d, f_u)
-            use = np.max([use, force * self.ultimate / net, force * self.ultimate / out], axis=0)
+            around = eyes.Around(a, a, a)
+            for rule in eyes.eye_rules(t, d, eyes.largest_play(fit, d), f_y, f_u, around):
+                target = self.yields if rule.by_yield else self.ultimate
+                use = np.maximum(use, force * target / np.maximum(rule.capacity, 1e-9))
         height = first(h, use)
         reach = 0.525 * chain.plate_height + 1.0
         beside = max(pair.middle / 2.0 + 0.35 * pair.middle, pin.collar_diameter / 2.0 + 2.0)

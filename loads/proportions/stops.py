@@ -6,11 +6,12 @@ import math
 
 import numpy as np
 
-from loads.checks import pins
+from loads.checks import eyes, pins
+from loads.checks.disc import preload
 from loads.checks.stop import bolt_share, contact_modulus, line_contact_yield_force
 from loads.proportions.basis import Basis, first, round_up
 from parts.contact_lengths import stop_on_link
-from parts.design import Assumed
+from parts.design import Assumed, Material
 from parts.hardware import cap_screws, dowel_diameters
 from parts.sizes import LinkSizes, StopSizes
 from parts.stop_layout import block_hole_offsets, stop_center
@@ -75,10 +76,16 @@ class StopSide(Basis):
             shear = 2.0 * pins.pin_shear_capacity(dowels, material.ultimate_strength(width))
             dowel = first(dowels, force * self.ultimate / shear)
             tension = force * arm * bolt_share(width) * self.yields
-            bolt = next((s for s in cap_screws() if s.stress_area * s.yield_strength >= tension), cap_screws()[-1])
+            lift = tension / self.yields
+            bolt = next(
+                (s for s in cap_screws() if s.stress_area * s.yield_strength >= tension and preload(s) >= lift),
+                cap_screws()[-1],
+            )
             # holes a quarter from the edges and half the block apart, each with its web
             hole = max(dowel, bolt.clearance_hole)
             for_holes = 2.0 * hole + 4.0 * max(2.0, 0.25 * hole)
+            sink = bolt.counterbore_diameter  # in the disc's back, half the block from the dowel
+            for_holes = max(for_holes, sink + dowel + 2.0 * max(2.0, 0.25 * max(sink, dowel)))
             f_y = material.yield_strength(width)
             weaker = min(f_y, self.link_material.yield_strength(depth))
             length = max(
@@ -100,6 +107,12 @@ class StopSide(Basis):
         return StopSizes(
             "block", 0.0, length, width, height, dowel, bolt.thread, bolt.clearance_hole, bolt.tapping_hole, material
         )
+
+    def dowel_bearing_use(self, stop: StopSizes, depth: float, material: Material) -> float:
+        """Use of the bearing capacity of the dowels in a plate ``depth`` mm thick."""
+        f_y = min(material.yield_strength(depth), self.stop_material.yield_strength(stop.width))
+        bears = 2.0 * float(eyes.bearing(depth, stop.dowel_diameter, f_y))
+        return float(np.max(self.loads.stop)) * self.yields / bears
 
     def clears_bore(self, stop: StopSizes, link: LinkSizes, bore: float) -> bool:
         holes = self.stop_holes(link, stop)

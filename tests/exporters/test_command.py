@@ -3,8 +3,11 @@
 from __future__ import annotations
 
 import json
+import os
+import signal
 import subprocess
 import sys
+import time
 from pathlib import Path
 
 import pytest
@@ -127,3 +130,83 @@ def test_messages_go_to_standard_error_and_results_to_standard_output(tmp_path: 
     assert done.returncode == 2
     assert done.stdout == ""
     assert done.stderr
+
+
+RUN = "from exporters.command import main; main()"
+
+
+def test_whoever_reads_only_the_head_gets_the_verdict_s_status(tmp_path: Path) -> None:
+    path = tmp_path / "d.toml"
+    path.write_text(text_of("seed-thrower"), encoding="utf-8")
+    process = subprocess.Popen([sys.executable, "-c", RUN, "check", str(path)], stdout=subprocess.PIPE, text=True)
+    assert process.stdout is not None
+    process.stdout.close()
+    assert process.wait() == 0
+
+
+def test_a_console_without_the_signs_shows_marks_in_their_place(tmp_path: Path) -> None:
+    path = tmp_path / "d.toml"
+    path.write_text(changed("seed-thrower", mechanism__seat_angle='"-3 deg"'), encoding="utf-8")
+    for encoding in ("ascii", "cp1252"):
+        done = subprocess.run(
+            [sys.executable, "-c", RUN, "check", str(path)],
+            capture_output=True, check=False, env={**os.environ, "PYTHONIOENCODING": encoding},
+        )  # fmt: skip
+        assert done.returncode in (0, 1)
+        assert b"Traceback" not in done.stderr
+
+
+@pytest.mark.skipif(os.name != "posix", reason="sends a posix signal")
+@pytest.mark.parametrize("wait", [1.2, 2.5, 4.0])
+def test_ctrl_c_stops_a_build_and_leaves_nothing(wait: float, tmp_path: Path) -> None:
+    path = tmp_path / "d.toml"
+    path.write_text(text_of("impact-rig"), encoding="utf-8")
+    process = subprocess.Popen(
+        [sys.executable, "-c", RUN, "build", str(path), "--to", str(tmp_path / "out")],
+        stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=True,
+    )  # fmt: skip
+    time.sleep(wait)
+    process.send_signal(signal.SIGINT)
+    _, said = process.communicate()
+    if process.returncode in (0, 1):  # it was done before the signal came
+        assert (tmp_path / "out" / "manifest.json").exists()
+        return
+    assert process.returncode in (130, -signal.SIGINT)  # the second where it came before the command began
+    assert "cannot be loaded" not in said
+    assert sorted(p.name for p in tmp_path.iterdir()) == ["d.toml"]
+
+
+def test_a_fault_of_the_tool_is_not_a_verdict(tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: Said) -> None:
+    path = tmp_path / "d.toml"
+    path.write_text(text_of("seed-thrower"), encoding="utf-8")
+
+    def broken(*_: object) -> None:
+        raise ZeroDivisionError("somewhere")
+
+    monkeypatch.setattr("loads.examine.cycle", broken)
+    assert run(monkeypatch, "check", str(path)) == 3
+    assert "fault of the tool" in capsys.readouterr().err
+
+
+IN_PIECES = {
+    "thin link": {"link__thickness": '"1 mm"'},
+    "small disc": {"disc__outer_diameter": '"20 mm"'},
+    "bolts in the bore": {"disc__bolt_circle": '"10 mm"'},
+    "thin disc": {"disc__thickness": '"3 mm"'},
+    "small block": {"stop__style": '"block"', "stop__length": '"4 mm"', "stop__width": '"4 mm"'},
+    "narrow chain end": {"chain_end__width": '"2 mm"'},
+}
+
+
+@pytest.mark.parametrize("name", IN_PIECES)
+def test_sizes_that_make_no_sense_fall_short_and_are_still_written(
+    name: str, tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: Said
+) -> None:
+    """check and build agree: a part in pieces or with overlapping holes is a check that falls short."""
+    path = tmp_path / "d.toml"
+    path.write_text(changed("impact-rig", **IN_PIECES[name]), encoding="utf-8")
+    assert run(monkeypatch, "check", str(path)) == 1
+    assert run(monkeypatch, "build", str(path), "--to", str(tmp_path / "out")) == 1
+    said = capsys.readouterr()
+    assert said.err == ""
+    assert (tmp_path / "out" / "manifest.json").exists()

@@ -202,6 +202,22 @@ def test_the_materials_asked_for_are_listed() -> None:
     assert set(wanted.split()) <= set(MATERIALS)
 
 
+def test_there_are_trade_grades_of_every_kind() -> None:
+    assert len(MATERIALS) >= 30
+    for kind in KINDS:
+        listed = [row for row in MATERIALS.values() if row["kind"] == kind]
+        assert len(listed) >= 2, kind
+    assert sum(row["confirmed"] for row in MATERIALS.values()) >= 12
+    # thickness tells where the standard has it
+    assert sum(len(row["yield"]) > 1 for row in MATERIALS.values()) >= 25
+
+
+@pytest.mark.parametrize("name", MATERIALS)
+def test_a_material_says_what_is_from_memory(name: str) -> None:
+    row = MATERIALS[name]
+    assert ("from memory" in row["source"]) is (row["confirmed"] is False)
+
+
 @pytest.mark.parametrize("name", MATERIALS)
 def test_a_material_has_its_keys_and_falls_off_with_size(name: str) -> None:
     row = MATERIALS[name]
@@ -247,6 +263,11 @@ def test_a_material_yields_before_it_breaks(name: str) -> None:
         ("C45+QT", "yield", 40, 430),
         ("42CrMo4+QT", "yield", 40, 750),
         ("42CrMo4+QT", "ultimate", 100, 900),
+        # EN 10083-3:2006/AC:2008, a maker's card
+        ("30CrNiMo8+QT", "yield", 100, 900),
+        ("30CrNiMo8+QT", "ultimate", 100, 1100),
+        # EN 10025-2
+        ("S275JR", "yield", 63, 255),
         # ASTM A36: 36 ksi and 58 ksi
         ("A36", "yield", 200, 250),
         ("A36", "ultimate", 200, 400),

@@ -84,8 +84,8 @@ CHANGED = [
     ("bearing = 0.1", "bearing = 1.1", "friction.bearing", "from 0 to 1"),
     ("shock_factor = 1.25", "shock_factor = 0.9", "targets.shock_factor", "from 1 to"),
     ("load_share = 0.6", "load_share = 0.4", "targets.load_share", "from 0.5 to 1"),
-    ("chain = 5", "chain = 0", "targets.chain", "more than 0"),
-    ("yield = 2.0", "yield = inf", "targets.yield", "1000 at most"),
+    ("chain = 5", "chain = 0.5", "targets.chain", "from 1 to"),
+    ("yield = 2.0", "yield = inf", "targets.yield", "from 1 to"),
     (
         "outline = [[-200, -300], [600, -300], [600, 300], [-200, 300]]",
         "outline = [[-200, -300], [600, 300], [600, -300], [-200, 300]]",
@@ -123,7 +123,7 @@ CHANGED = [
     ("[clearances]", "[drive]\nstall_torque = 3\n[clearances]", "drive", "does not evaluate [drive] yet"),
     ("[clearances]", "[process.disc]\nkerf = 1\n[clearances]", "process", "does not evaluate [process] yet"),
     ("[clearances]", "[tolerances]\n[clearances]", "tolerances", "does not evaluate [tolerances] yet"),
-    ("[clearances]", "[fatigue]\n[clearances]", "fatigue", "does not evaluate [fatigue] yet"),
+    ("[clearances]", "[fatigue]\n[clearances]", "fatigue.shots", "missing"),
     ("[crank_pin]", "[[crank_pin]]", "crank_pin", "a table, [crank_pin]"),
 ]
 

@@ -1,0 +1,192 @@
+"""The chain beyond its strength: length in whole pitches, wear, speed, bending over the sheave, and what slack does.
+
+The adjustment table lets someone tune the machine by pitches: every row is the same machine with another slack, all
+solved in one call of the cycle, slack along the leading axis. mm, N, N·mm, rad.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from loads.cycle import Cycle, cycle
+from loads.linkage import Linkage
+from loads.members import History
+from loads.spring_law import SpringLaw
+from parts.design import Chain, Design, Floats
+from parts.sizes import Sizes
+
+DISCARD = 0.03  # elongation at which a chain is taken off; common practice, no source
+LIFTING_SPEED = 500.0  # mm/s, 30 m/min: speed up to which leaf chains lift; common practice, no source
+BY_DESIGN, BY_WEAR, BY_THREAD = "as designed", "worn by 3 %", "thread of the anchor"
+BY_PITCHES = "links"  # a pair of pitches: an inner and an outer link
+BY_ONE_PITCH = {"roller": "offset link or the other end fitting", "leaf": "the other end fitting"}
+PITCHES, QUARTERS = 4, 4  # pitches that the table goes up and down; steps into which the thread divides the first
+
+
+@dataclass(frozen=True, slots=True)
+class Adjustment:
+    """One slack and what the machine does with it. ``pitches`` is the whole chain's, where its length is known."""
+
+    slack: float
+    by: str
+    pitches: int | None
+    draw_at_hold: float
+    stored_energy: float
+    first_peak: float
+    second_peak: float
+    middle_least: float
+    hold_torque: float
+    hold_margin: float  # to the first of null and release; slack does not move either
+    largest_tension: float
+
+
+@dataclass(frozen=True, slots=True)
+class ChainStudy:
+    """Lengths at the start dead centre, of the chain between its first and its last pin, taut."""
+
+    pitch: float
+    straight: float  # from the chain's first pin to the sheave
+    on_sheave: float
+    run_to_spring: float | None
+    angle_per_link: float | None  # between two pins that lie on the sheave; None where a link is longer than it is wide
+    sheave_in_pitches: float  # pitch radius over pitch
+    most_reach: float  # mm of chain a rad of the disc, at the fastest while it winds
+    most_reach_at: float
+    release_reach: float
+    disc_speed: float | None  # rad/s
+    rows: tuple[Adjustment, ...]
+
+    @property
+    def up_to_sheave(self) -> float:
+        return self.straight + self.on_sheave
+
+    @property
+    def taut_length(self) -> float | None:
+        return None if self.run_to_spring is None else self.up_to_sheave + self.run_to_spring
+
+    @property
+    def whole_pitches(self) -> int | None:
+        """The least number of pitches that is long enough."""
+        return None if self.taut_length is None else whole(self.taut_length, self.pitch)
+
+    @property
+    def slack_of_whole(self) -> float | None:
+        """What the least number of pitches leaves over."""
+        if self.taut_length is None or self.whole_pitches is None:
+            return None
+        return max(0.0, self.whole_pitches * self.pitch - self.taut_length)
+
+    @property
+    def wear(self) -> float:
+        """What 3 % of the chain, or of its known part, comes to."""
+        return DISCARD * (self.up_to_sheave if self.taut_length is None else self.taut_length)
+
+    @property
+    def limit_disc_speed(self) -> float:
+        """Disc speed (rad/s) at which the winding chain reaches the speed of lifting; infinite where it never moves taut."""
+        return LIFTING_SPEED / self.most_reach if self.most_reach > 0.0 else math.inf
+
+    def row(self, by: str) -> Adjustment | None:
+        return next((row for row in self.rows if row.by == by), None)
+
+
+def whole(length: float, pitch: float) -> int:
+    """Pitches that it takes to be as long as ``length``, to a rounding's width."""
+    return math.ceil(length / pitch - 1e-9)
+
+
+def angle_per_link(pitch: float, radius: float) -> float | None:
+    """Angle (rad) that a link turns in its joints when it runs on the sheave: 2 asin(p / 2R), chord of the pitch circle.
+
+    ``pitch`` and pitch radius in mm; None where the chord does not fit into the circle. Source: geometry.
+
+    >>> round(math.degrees(angle_per_link(10.0, 10.0) or 0.0), 6)
+    60.0
+    """
+    return 2.0 * math.asin(pitch / (2.0 * radius)) if pitch <= 2.0 * radius else None
+
+
+def with_slacks(machine: Linkage, slacks: Floats) -> Linkage:
+    """One machine as many, alike but for their slack (mm), which lies along the leading axis."""
+    shape = np.shape(slacks)
+    values = {
+        name: np.broadcast_to(getattr(machine, name), shape)
+        for name in Linkage.__dataclass_fields__
+        if name not in ("spring", "slack")
+    }
+    law = machine.spring
+    spring = SpringLaw(np.broadcast_to(law.preload, shape), np.broadcast_to(law.rate, shape), law.draws, law.forces)
+    return replace(machine, **values, spring=spring, slack=slacks)
+
+
+def chain_study(design: Design, machine: Linkage, figures: Cycle, past: History, sizes: Sizes) -> ChainStudy:
+    """Length, speed and bending of a design's chain, and its adjustment table."""
+    chain, m = design.chain, design.mechanism
+    radius = float(machine.pitch_radius)
+    straight = float(machine.sheave_distance) - m.crank_radius - m.link_length - sizes.chain_end.length
+    taut = past.state.pull >= chain.slack
+    reach = np.where(taut, np.abs(past.state.line.arm), 0.0)
+    fastest = int(np.argmax(reach))
+    study = ChainStudy(
+        pitch=chain.pitch, straight=straight, on_sheave=radius * float(machine.start_wrap),
+        run_to_spring=chain.run_to_spring, angle_per_link=angle_per_link(chain.pitch, radius),
+        sheave_in_pitches=radius / chain.pitch, most_reach=float(reach[fastest]),
+        most_reach_at=float(past.state.crank_angle[fastest]), release_reach=float(reach[-1]),
+        disc_speed=None if design.moving is None else design.moving.disc_speed, rows=(),
+    )  # fmt: skip
+    steps = slack_steps(chain, study, float(figures.pull_at_hold), least_slack(machine, figures))
+    return replace(study, rows=adjustments(machine, steps, m.hold_margin))
+
+
+def least_slack(machine: Linkage, figures: Cycle) -> float:
+    """The least slack (mm) at which the spring's table still tells of the largest draw."""
+    return max(0.0, float(figures.most_pull) - machine.spring.last_draw)
+
+
+def slack_steps(chain: Chain, study: ChainStudy, pull: float, least: float) -> list[tuple[float, str, int | None]]:
+    """Slack, what it is set by, and the chain's pitches; rising, each once, between ``least`` and the pull at the hold.
+
+    Where the length is known the chain has whole pitches and the steps are what those leave; else they count from the
+    slack that the design gives. A chain of the same ends changes by two pitches, an inner and an outer link; by one with
+    an offset link (roller chain) or with the other kind of fitting at one end.
+    """
+    p, given = chain.pitch, chain.slack
+    single = BY_ONE_PITCH[chain.kind]
+    found: list[tuple[float, str, int | None]] = [(given, BY_DESIGN, None), (given + study.wear, BY_WEAR, None)]
+    if study.taut_length is not None and study.whole_pitches is not None:
+        first = study.whole_pitches
+        base = first * p - study.taut_length
+        found += [(base + k * p, BY_PITCHES if k % 2 == 0 else single, first + k) for k in range(PITCHES + 1)]
+    else:
+        found += [(given + k * p, BY_PITCHES if k % 2 == 0 else single, None) for k in range(-PITCHES, PITCHES + 1)]
+    found += [(given + k * p / QUARTERS, BY_THREAD, None) for k in range(-QUARTERS + 1, QUARTERS)]
+    kept: dict[float, tuple[float, str, int | None]] = {}
+    for slack, by, pitches in found:
+        key = round(max(slack, 0.0), 6)
+        if slack > -1e-9 and least - 1e-9 <= slack < pull - 1e-9:
+            before = kept.get(key)
+            if before is None:
+                kept[key] = (max(slack, 0.0), by, pitches)
+            elif before[2] is None and pitches is not None:
+                kept[key] = (before[0], before[1], pitches)
+    return [kept[key] for key in sorted(kept)]
+
+
+def adjustments(
+    machine: Linkage, steps: list[tuple[float, str, int | None]], hold_margin: float
+) -> tuple[Adjustment, ...]:
+    """The machine at every slack, in one call of the cycle."""
+    if not steps:
+        return ()
+    c = cycle(with_slacks(machine, np.array([slack for slack, _, _ in steps])))
+    return tuple(
+        Adjustment(
+            slack, by, pitches, float(c.draw_at_hold[i]), float(c.stored_energy[i]), float(c.first_peak[i]),
+            float(c.second_peak[i]), float(c.middle_least[i]), float(c.hold_torque[i]), hold_margin,
+            float(c.largest_tension[i]),
+        )
+        for i, (slack, by, pitches) in enumerate(steps)
+    )  # fmt: skip

@@ -1,0 +1,27 @@
+"""The link's checks over all its sections and crank angles. Run: pytest tests/benchmarks -s"""
+
+from __future__ import annotations
+
+import time
+from pathlib import Path
+
+from loads.checks import link
+from loads.checks.context import Context
+from loads.members import members
+from tests.starters import examined, text_of
+
+
+def test_the_links_checks(tmp_path: Path) -> None:
+    e = examined(tmp_path, text_of("impact-rig"))
+    c = Context(
+        design=e.design, sizes=e.sizes, stack=e.stack, parts=e.parts, past=e.past,
+        members=members(e.past, e.stack, e.design.targets), sites={(s.part, s.site): s for s in e.sites},
+        findings=e.findings,
+    )  # fmt: skip
+    took = []
+    for _ in range(50):
+        start = time.perf_counter()
+        link.check(c)
+        took.append(time.perf_counter() - start)
+    print(f"\nlink, {e.past.state.crank_angle.size} crank angles: {sorted(took)[5] * 1e3:.2f} ms")
+    assert sorted(took)[5] < 5e-3
