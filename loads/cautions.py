@@ -29,7 +29,8 @@ def cautions(design: Design, figures: Cycle, sizes: Sizes, checks: tuple[Check, 
     ]
     if design.moving is not None:
         rows.append(
-            "[moving] was read, but the study of the release is not part of this version: nothing was made of it."
+            "[moving] was read, but the study of the release is not part of this version: only disc_speed was used, for "
+            "the blow of the catch and the speed in the bushes."
         )
     if design.enclosure is not None:
         rows.append("[enclosure] was read, but its study is not part of this version: no clearance to it was checked.")

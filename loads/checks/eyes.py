@@ -66,17 +66,22 @@ def gross_yield(t: Floats | float, width: Floats | float, f_y: Floats | float) -
     return np.asarray(np.asarray(f_y) * np.asarray(t) * np.asarray(width))
 
 
-def end_pressed_force(force: Floats, moment: Floats, t: float) -> Floats:
+def end_pressed_force(force: Floats, moment: Floats, t: Floats | float) -> Floats:
     """Force (N) that, spread evenly over ``t`` mm, presses as hard as force and couple do at the worse end of the hole.
 
     A stiff pin in a hole of length t presses with F/t in the middle and F/t ± 6 (z × M)/t² at its ends; F and M (3, n) are
-    the pin's force on the part and its moment about the middle of the hole. Source: statics of a stiff pin, as for a pin
-    held at one end in Roloff/Matek, Maschinenelemente (from memory).
+    the pin's force on the part and its moment about the middle of the hole. ``t`` of shape (...) gives (..., n); where
+    nothing touches a load is infinite. Source: statics of a stiff pin, as for a pin held at one end in Roloff/Matek,
+    Maschinenelemente (from memory).
     """
-    if t <= 0.0:
-        return np.where(length_of(force) > 0.0, np.inf, 0.0)
-    tilt = 6.0 / t * np.stack([-moment[1], moment[0], np.zeros_like(moment[0])])
-    return np.maximum(length_of(force + tilt), length_of(force - tilt))
+    length = np.asarray(t, dtype=float)[..., None]
+    touches = length > 0.0
+    k = 6.0 / np.where(touches, length, 1.0)
+    worse = np.maximum(
+        np.hypot(force[0] - k * moment[1], force[1] + k * moment[0]),
+        np.hypot(force[0] + k * moment[1], force[1] - k * moment[0]),
+    )
+    return np.where(touches, worse, np.where(worse > 0.0, np.inf, 0.0))
 
 
 @dataclass(frozen=True, slots=True)

@@ -95,7 +95,7 @@ def _eye(
     kind = "edge" if part == "crank_disc" else "eye"
     directions = outward + np.radians([0.0, 90.0, -90.0])
     edge = edge_distance(plate, found.center, directions, holes=True, skip=(hole,))
-    width = max(2.0 * float(np.min(edge)), 1.02 * d)
+    width = float(np.clip(2.0 * np.min(edge), 1.02 * d, 50.0 * d))
     s_ut = material.ultimate_strength(size)
     k_t = outward_concentration(kind, d, width)
     k_f = float(notch_factor(k_t, d / 2.0, s_ut))
@@ -133,7 +133,7 @@ def _eyes(c: Context) -> Iterator[Site]:
         )  # fmt: skip
     pull = np.linalg.norm(c.members.chain_on_pin, axis=0)
     along = np.stack([pull, np.zeros_like(pull), np.zeros_like(pull)])
-    meat = end.width - 2.0 * sum(b - a for a, b in end.slots)
+    meat = max(end.width - 2.0 * sum(b - a for a, b in end.slots), 1e-3)
     yield _eye(c, "chain_end", "chain_pin_eye", -along, 0.0 * along, end.width, end.material, end.width, math.pi)
     yield _eye(c, "chain_end", "chain_hole", along, 0.0 * along, meat, end.material, end.width, 0.0)
 

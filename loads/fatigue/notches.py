@@ -12,7 +12,6 @@ import numpy as np
 from loads.checks.concentration import shoulder_bending
 from parts.design import Floats
 
-POISSON = 0.3
 STEPS = np.radians(np.arange(0.0, 181.0, 15.0))
 # harmonics of a pin's pressure 4P/(π d t)·max(cos δ, 0), each as 2P/(π d t) times: order, odd, share
 HARMONICS = {
@@ -34,21 +33,6 @@ def step_concentration(large: float, small: float, r: float) -> float:
     """
     h = (large - small) / 2.0
     return max(1.0, float(shoulder_bending(large, small, min(max(r, h / 20.0), h / 0.1)))) if h > 0.0 else 1.0
-
-
-def pin_in_plate(force: Floats, points: Floats, nu: float = POISSON) -> Floats:
-    """Hoop stress times d t (N) at points of a hole's edge, from a pin that pushes in a wide plate.
-
-    ``force`` (2, n) of the pin on the plate, ``points`` (k) directions from the hole's middle (rad); gives (k, n). The
-    pin presses with p = 4P/(π d t)·cos δ over the half of the edge it pushes, δ from the force. Fourier's series of that
-    pressure and Airy's function of each term add up to σ = −p(δ) + 2 p₀ + p₁ (3 − ν)/2 cos δ, where p₀ = 4/π² and
-    p₁ = 2/π of P/(d t). Source: plane elasticity (Timoshenko and Goodier, Theory of Elasticity, polar coordinates),
-    worked out here; the tests add the series up.
-    """
-    along = np.stack([np.cos(points), np.sin(points)], axis=1) @ force  # P cos δ
-    size = np.hypot(force[0], force[1])
-    pressure = 4.0 / math.pi * np.maximum(along, 0.0)
-    return np.asarray(8.0 / math.pi**2 * size + (3.0 - nu) / math.pi * along - pressure)
 
 
 @lru_cache(maxsize=2)

@@ -95,7 +95,7 @@ class LinkSide(Basis):
         force = float(np.max(np.linalg.norm(self.loads.pin, axis=0)))
         sink = sink_depth(d) if self.headed else np.zeros_like(d)
         touch = np.array([crank_pin_in_link(float(x), t, float(z), self.headed) for x, z in zip(d, sink, strict=True)])
-        pressed = np.array([self._pressed(self.loads.pin, stack.chain_offset, float(x)) for x in touch])
+        pressed = self._pressed(self.loads.pin, stack.chain_offset, touch)
         use = self.pin_use(d, self.crank_material, force, moment)
         use = np.maximum(use, self.bearing_use(d, touch, pressed, self.crank_material, self.link_material, t, True))
         if self.headed:  # four tenths of the plate stay under the head
@@ -103,10 +103,10 @@ class LinkSide(Basis):
         i = index(use)
         return float(d[i]), float(use[i])
 
-    def _pressed(self, force: Floats, offset: float, t: float) -> float:
-        """Largest force at the harder pressed end of an eye that also takes the chain's offset couple."""
+    def _pressed(self, force: Floats, offset: float, touch: Floats) -> Floats:
+        """Largest force (m) at the harder pressed end of eyes of lengths ``touch`` (m) that take the chain's offset couple."""
         couple = offset * np.stack([-self.loads.chain[1], self.loads.chain[0], np.zeros_like(self.loads.torque)])
-        return float(np.max(eyes.end_pressed_force(force, couple, t)))
+        return np.asarray(np.max(eyes.end_pressed_force(force, couple, touch), axis=-1))
 
     def _chain_diameters(self, t: float, end_width: float) -> tuple[float, float, float]:
         """Journal in the link, middle under the chain end, and the larger use of the two."""
@@ -133,7 +133,7 @@ class LinkSide(Basis):
             use = self.pin_use(d, m, side, side * stack.chain_plane_width / 2.0)
             middle_use = np.maximum(self.pin_use(middle, m, side, side * end_width / 2.0), turning)
         touch = np.array([chain_pin_in_link(float(x), t) for x in d])
-        pressed = np.array([self._pressed(self.loads.chain, stack.chain_offset, float(x)) for x in touch])
+        pressed = self._pressed(self.loads.chain, stack.chain_offset, touch)
         use = np.maximum(use, self.bearing_use(d, touch, pressed, m, self.link_material, t, False))
         i, k = index(use), index(middle_use)
         journal, wanted = float(d[i]), float(middle[k])

@@ -263,7 +263,7 @@ NARROW = {
 @pytest.mark.parametrize("beta", [-3.0, 3.0])
 def test_narrow_features_of_a_spring_table_are_not_missed(name: str, beta: float) -> None:
     """The torque is highest at a corner of the table that lies between the samples of a coarse look."""
-    draws, forces = (np.array(column, dtype=float) for column in zip(*NARROW[name], strict=True))
+    draws, forces = np.array(NARROW[name], dtype=float).T
     law = SpringLaw(np.asarray(0.0), np.asarray(0.0), draws, forces)
     m = machine(58, 86, 71, beta, (460, 30), 65, 1, law)
     c = cycle(m)

@@ -17,13 +17,27 @@ from loads.fatigue.notches import (
     edge_stress,
     influence,
     outward_concentration,
-    pin_in_plate,
     step_concentration,
 )
 from parts.design import Floats
 from tests.loads.hole_influence import RATIOS, Hole
 
 POINTS = np.radians(np.arange(0.0, 360.0, 15.0))
+
+
+def pin_in_plate(force: Floats, points: Floats, nu: float = 0.3) -> Floats:
+    """Hoop stress times d t (N) at points of a hole's edge, from a pin that pushes in a wide plate.
+
+    ``force`` (2, n) of the pin on the plate, ``points`` (k) directions from the hole's middle (rad); gives (k, n). The
+    pin presses with p = 4P/(π d t)·cos δ over the half of the edge it pushes, δ from the force. Fourier's series of that
+    pressure and Airy's function of each term add up to σ = −p(δ) + 2 p₀ + p₁ (3 − ν)/2 cos δ, where p₀ = 4/π² and
+    p₁ = 2/π of P/(d t). Source: plane elasticity (Timoshenko and Goodier, Theory of Elasticity, polar coordinates),
+    worked out here; the tests add the series up.
+    """
+    along = np.stack([np.cos(points), np.sin(points)], axis=1) @ force  # P cos δ
+    size = np.hypot(force[0], force[1])
+    pressure = 4.0 / math.pi * np.maximum(along, 0.0)
+    return np.asarray(8.0 / math.pi**2 * size + (3.0 - nu) / math.pi * along - pressure)
 
 
 def test_the_closed_form_is_the_series() -> None:

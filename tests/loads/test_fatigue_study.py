@@ -170,6 +170,33 @@ def test_a_machine_whose_loads_grow_lives_shorter(name: str, more: float) -> Non
         assert (after.life or np.inf) <= (before.life or np.inf) * (1.0 + 1e-9)
 
 
+def test_the_mirror_image_lives_as_long() -> None:
+    """About the x axis: the other rotation, the other wrap, the sheave's y and the exit the other way."""
+    plain = machine("impact-rig")
+    mirrored = machine(
+        "impact-rig", mechanism__rotation='"cw"', sheave__wrap='"right"', sheave__center='["460 mm", "-30 mm"]',
+        sheave__exit_angle='"90 deg"',
+    )  # fmt: skip
+    for one, other in zip(studied(plain).rows, studied(mirrored).rows, strict=True):
+        assert other.factor == (None if one.factor is None else pytest.approx(one.factor, rel=1e-6)), (
+            one.part,
+            one.site,
+        )
+
+
+@pytest.mark.parametrize(
+    "values",
+    [
+        {"disc__outer_diameter": '"130 mm"'}, {"link__width": '"17 mm"'}, {"crank_pin__diameter": '"45 mm"'},
+        {"chain_end__width": '"4 mm"'}, {"link__thickness": '"60 mm"'}, {"fatigue__fillet_radius": '"40 mm"'},
+    ],
+)  # fmt: skip
+def test_sizes_that_make_no_sense_still_have_a_life(values: dict[str, str]) -> None:
+    e = machine("impact-rig", **values)
+    assert all(r.factor is None or 0.0 < r.factor < np.inf for r in studied(e).rows)
+    assert all(r.life is None or 0.0 <= r.life < np.inf for r in studied(e).rows)
+
+
 def test_reliability_and_surface() -> None:
     """Asking for more parts that hold, or for a rougher surface, leaves a lower limit."""
     usual = row(machine("impact-rig"), "swing_link", "stop_flank")
