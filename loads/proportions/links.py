@@ -104,7 +104,7 @@ class LinkSide(Basis):
         return float(d[i]), float(use[i])
 
     def _pressed(self, force: Floats, offset: float, touch: Floats) -> Floats:
-        """Largest force (m) at the harder pressed end of eyes of lengths ``touch`` (m) that take the chain's offset couple."""
+        """Largest force (m) at the harder pressed end of eyes ``touch`` (m) mm long that take the chain's offset couple."""
         couple = offset * np.stack([-self.loads.chain[1], self.loads.chain[0], np.zeros_like(self.loads.torque)])
         return np.asarray(np.max(eyes.end_pressed_force(force, couple, touch), axis=-1))
 

@@ -270,5 +270,7 @@ def test_proportions_meet_the_checks_that_they_are_made_from(
     )
     # where holes run into each other there is nothing to size; the web's own check says so
     merged = {c.part for c in e.falls_short if c.check == "web" and c.capacity == 0.0}
-    missed = {(c.part, c.site, c.check, c.margin) for c in e.falls_short if c.check in STRENGTH and c.part not in merged}
+    missed = {
+        (c.part, c.site, c.check, c.margin) for c in e.falls_short if c.check in STRENGTH and c.part not in merged
+    }
     assert not missed
