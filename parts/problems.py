@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import difflib
 import json
 import re
 from collections.abc import Iterable, Sequence
@@ -97,3 +98,10 @@ def written(value: object) -> str:
     else:
         text = str(value)
     return text if len(text) <= _LONGEST_SHOWN else text[: _LONGEST_SHOWN - 1] + "…"
+
+
+def nearest(word: str, known: Iterable[str]) -> str | None:
+    """The one of the known words that a word was most likely meant to be."""
+    lowered = {name.lower(): name for name in known}
+    close = difflib.get_close_matches(word.lower(), lowered, n=1, cutoff=0.6)
+    return lowered[close[0]] if close else None

@@ -25,7 +25,7 @@ from parts.design import (
     ShaftWish,
     SheavePinWish,
 )
-from parts.problems import DesignRefused, Problem, in_order, key_of, written
+from parts.problems import DesignRefused, Problem, in_order, key_of, nearest, written
 from parts.schema import (
     NOT_YET,
     TABLES,
@@ -51,7 +51,6 @@ from parts.schema import (
     StopTable,
     Table,
     TargetsTable,
-    nearest,
     unknown_key,
     validate,
 )
