@@ -228,7 +228,8 @@ def _around(c: Context, eye: Eye, along: Floats, outward: Floats) -> Around:
     wanted = np.round(np.concatenate([np.atleast_1d(x) for x in (along, *beside)]), 12)
     angles, back = np.unique(wanted, return_inverse=True)
     met = edge_distance(plate, hole.center, angles, holes=True, skip=(eye.hole,)) - hole.diameter / 2.0
-    room = np.maximum(met, 0.0)[back]
+    # a ray that meets no edge starts outside the part: a hole there has no material round it
+    room = np.where(np.isfinite(met), np.maximum(met, 0.0), 0.0)[back]
     n, k = along.size, np.atleast_1d(outward).size
     left, right, ahead = room[n : n + k], room[n + k : n + 2 * k], room[n + 2 * k :]
     return Around(room[:n], np.minimum(left, right), ahead)

@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from loads.checks.context import COMMON, Context
 from loads.records import Check
 from parts.crank_disc import HEAD_BELOW
 from parts.hardware import cap_screw
 from parts.outline import Plate
-from parts.shape import least_web, sound
+from parts.shape import Web, least_web, sound
 
 WEB_OVER_HOLE = 0.25  # least web beside a hole as a share of its diameter
 LEAST_WEB = 2.0  # mm
@@ -17,22 +19,7 @@ GEOMETRY = "geometry of the design"
 
 def check(c: Context) -> list[Check]:
     """All checks of shape and room."""
-    return [*_shapes(c), *_webs(c), *_gap(c), *_sinks(c), *_press(c), *_stop(c), *_spring(c), *_start(c), *_clashes(c)]
-
-
-def _shapes(c: Context) -> list[Check]:
-    """A row for each plate that cannot be cut or modelled as one piece; its webs and clashes say little beside that."""
-    rows = []
-    for part in c.parts:
-        faults = sound(part.body) if isinstance(part.body, Plate) else []
-        if faults:
-            rows.append(
-                c.shape_check(
-                    part.key, "outline", "can be made in one piece", float(len(faults)), 0.0, "faults",
-                    "closed outline, holes inside it and apart", GEOMETRY, "; ".join(faults),
-                )
-            )  # fmt: skip
-    return rows
+    return [*_plates(c), *_gap(c), *_sinks(c), *_press(c), *_stop(c), *_spring(c), *_start(c), *_clashes(c)]
 
 
 def _gap(c: Context) -> list[Check]:
@@ -44,33 +31,47 @@ def _gap(c: Context) -> list[Check]:
     ]  # fmt: skip
 
 
-def _webs(c: Context) -> list[Check]:
+def _plates(c: Context) -> list[Check]:
+    """For each plate its thinnest web, and a row where it cannot be cut or modelled as one piece."""
     rows, seen = [], set()
     for part in c.parts:
-        if not isinstance(part.body, Plate) or part.key in seen:
-            continue
-        seen.add(part.key)
-        worst: Check | None = None
-        holes = {hole.name: hole.diameter for hole in part.body.holes}
-        holes |= {sink.name: sink.diameter for sink in part.body.counterbores}
-        for web in least_web(part.body):
-            diameter = max(holes.get(web.one, 0.0), holes.get(web.other, 0.0))
-            wanted = max(LEAST_WEB, WEB_OVER_HOLE * diameter)
-            row = c.shape_check(
-                part.key,
-                f"{web.one} / {web.other}",
-                "web",
-                wanted,
-                max(web.thickness, 0.0),
-                "mm",
-                f"least material beside a hole, {WEB_OVER_HOLE:g} of its diameter and {LEAST_WEB:g} mm",
-                COMMON,
-            )
-            if worst is None or row.margin < worst.margin:
-                worst = row
-        if worst is not None:
-            rows.append(worst)
+        if isinstance(part.body, Plate) and part.key not in seen:  # both hands have one outline
+            seen.add(part.key)
+            webs = least_web(part.body)
+            rows += [*_shape(c, part.key, part.body, webs), *_web(c, part.key, part.body, webs)]
     return rows
+
+
+def _shape(c: Context, key: str, plate: Plate, webs: tuple[Web, ...]) -> list[Check]:
+    # with material round every hole only the outline itself can be at fault
+    bare = plate if any(web.thickness <= 0.0 for web in webs) else replace(plate, holes=(), counterbores=(), slots=())
+    faults = sound(bare)
+    if not faults:
+        return []
+    return [
+        c.shape_check(
+            key, "outline", "can be made in one piece", float(len(faults)), 0.0, "faults",
+            "closed outline, holes inside it and apart", GEOMETRY, "; ".join(faults),
+        )
+    ]  # fmt: skip
+
+
+def _web(c: Context, key: str, plate: Plate, webs: tuple[Web, ...]) -> list[Check]:
+    if not webs:
+        return []
+    diameters = {hole.name: hole.diameter for hole in plate.holes}
+    diameters |= {sink.name: sink.diameter for sink in plate.counterbores}
+
+    def wanted(web: Web) -> float:
+        return max(LEAST_WEB, WEB_OVER_HOLE * max(diameters.get(web.one, 0.0), diameters.get(web.other, 0.0)))
+
+    worst = min(webs, key=lambda web: web.thickness / wanted(web))
+    return [
+        c.shape_check(
+            key, f"{worst.one} / {worst.other}", "web", wanted(worst), max(worst.thickness, 0.0), "mm",
+            f"least material beside a hole, {WEB_OVER_HOLE:g} of its diameter and {LEAST_WEB:g} mm", COMMON,
+        )
+    ]  # fmt: skip
 
 
 def _sinks(c: Context) -> list[Check]:

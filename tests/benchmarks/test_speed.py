@@ -11,10 +11,14 @@ import sys
 import time
 from collections.abc import Callable, Sequence
 from pathlib import Path
+from typing import Any
 
 import numpy as np
+import pytest
 
+from loads.checks import all_checks
 from loads.cycle import cycle, trace
+from loads.examine import examine
 from loads.linkage import make_linkage
 from loads.spring_law import SpringLaw
 from tests.loads.machines import TABLE
@@ -123,3 +127,18 @@ def test_cost_grows_no_faster_than_the_number_of_designs() -> None:
     ratio = solve(4096) / solve(512)
     print(f"\n8 times as many designs take {ratio:.1f} times as long")
     assert ratio < 12.0
+
+
+def test_all_checks_of_one_design(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    design = tmp_path / "rig.toml"
+    design.write_text(text_of("impact-rig"), encoding="utf-8")
+    took: list[float] = []
+
+    def timed(*given: Any) -> Any:
+        took.append(_median(lambda: all_checks(*given), 9) * 1e3)
+        return all_checks(*given)
+
+    monkeypatch.setattr("loads.examine.all_checks", timed)
+    examine(design)
+    print(f"\nall checks of one design over the cycle: {took[0]:.1f} ms")
+    assert took[0] < 20.0
