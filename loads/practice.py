@@ -41,8 +41,10 @@ def press_fits() -> tuple[str, ...]:
 
 
 def source(group: str) -> str:
-    """Where a group's values are from, for the bill; says so where they are from memory."""
+    """Where a group's values are from, for the bill; says so where they, or some of them, are from memory."""
     row = _table()[group]
+    if memory := row.get("from_memory"):
+        return f"{row['source']}; {', '.join(memory.values())} from memory, confirm"
     return str(row["source"]) + ("" if row["confirmed"] or "no source" in row["source"] else UNSURE)
 
 

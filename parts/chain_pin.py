@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from parts.design import Design
 from parts.fits import shaft_class
+from parts.hardening import hardness_note
 from parts.making import Length, bar_stock, chamfer, turned
 from parts.outline import Part, Placement, Turned
 from parts.sizes import Sizes
@@ -73,6 +74,7 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
             notes=(
                 f"ground to {shaft_class(sizes.fits.chain_pin_link)} for the link, "
                 f"to {shaft_class(sizes.fits.chain_end)} for the chain end",
+                *hardness_note(pin.material, design.identity.units),
             ),
         )
     ]

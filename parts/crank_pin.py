@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from parts.design import Design
 from parts.fits import shaft_class
+from parts.hardening import hardness_note
 from parts.making import Length, bar_stock, chamfer, copies, flipped, turn_of, turned
 from parts.outline import Part, Turned
 from parts.places import crank_pin
@@ -66,6 +67,7 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
             notes=(
                 f"press shank ground to {shaft_class(sizes.fits.crank_pin_disc)} for the disc, "
                 f"journal to {shaft_class(sizes.fits.crank_pin_link)} for the link",
+                *hardness_note(pin.material, design.identity.units),
             ),
         )
         for copy in copies(stack, stack.crank_pin_headed, stack.link_face + begin, sum(p.length for p in pieces))

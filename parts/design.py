@@ -97,6 +97,8 @@ class Material:
     ultimates: tuple[tuple[float, float], ...]
     source: str
     confirmed: bool
+    surface_yield: float | None = None  # MPa, of a hardened surface
+    case_depth: float | None = None  # mm; None: hardened through, or not at all
 
     def yield_strength(self, size: float) -> float:
         """Yield strength in MPa at a thickness or diameter in mm; the last step serves beyond the table."""
@@ -105,6 +107,10 @@ class Material:
     def ultimate_strength(self, size: float) -> float:
         """Ultimate strength in MPa at a thickness or diameter in mm; the last step serves beyond the table."""
         return next((s for limit, s in self.ultimates if size <= limit), self.ultimates[-1][1])
+
+    def surface_strength(self, size: float) -> float:
+        """Yield strength in MPa of the surface: the hardened one's, else the grade's at a size in mm."""
+        return self.yield_strength(size) if self.surface_yield is None else self.surface_yield
 
     @property
     def largest_size(self) -> float:
@@ -131,6 +137,8 @@ class DiscWish:
 class LinkWish:
     width: float | None = None
     thickness: float | None = None
+    surface_yield: float | None = None  # of a hardened flank
+    case_depth: float | None = None
     material: Material | None = None
 
 
@@ -141,12 +149,16 @@ class StopWish:
     length: float | None = None  # block, along the link
     width: float | None = None  # block, across the link
     height: float | None = None  # both, out of the disc's face
+    surface_yield: float | None = None  # of the hardened surface
+    case_depth: float | None = None  # None: hardened through
     material: Material | None = None
 
 
 @dataclass(frozen=True, slots=True)
 class PinWish:
     diameter: float | None = None
+    surface_yield: float | None = None  # of the hardened surface
+    case_depth: float | None = None  # None: hardened through
     material: Material | None = None
 
 

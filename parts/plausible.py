@@ -161,6 +161,13 @@ def stop_problems(stop: StopTable, raw: Mapping[str, object]) -> Iterator[Proble
             )
 
 
+def hardening_problems(name: str, raw: Mapping[str, object]) -> Iterator[Problem]:
+    """A case is that of a hardened surface."""
+    if "case_depth" in raw and "surface_yield" not in raw:
+        what = f"{name}.surface_yield as well, the yield strength of the hardened surface"
+        yield Problem(f"{name}.case_depth", None, written(raw["case_depth"]), what, "a case without its strength")
+
+
 def enclosure_problems(enclosure: EnclosureTable, raw: Mapping[str, object]) -> Iterator[Problem]:
     """An outline or distances, of polygons that do not cross themselves, and no obstacle on the disc axis."""
     distances = [key for key in ("above", "below", "behind", "ahead") if key in raw]

@@ -207,6 +207,8 @@ class _Draft:
         if spring.table is not None:
             self.problems += spring_table_problems(spring.table)
         self.problems += plausible.stop_problems(self._table(StopTable, "stop"), self._raw_table("stop"))
+        for name in ("link", "stop", "crank_pin", "chain_pin"):
+            self.problems += plausible.hardening_problems(name, self._raw_table(name))
         if isinstance(raw := self.raw.get("spring"), dict):
             self.problems += plausible.spring_problems(spring, raw)
         if isinstance(raw := self.raw.get("chain"), dict):

@@ -141,6 +141,8 @@ def stop(given: StopTable, material: Material | None) -> StopWish:
         length=given.length,
         width=given.width,
         height=given.height,
+        surface_yield=given.surface_yield,
+        case_depth=given.case_depth,
         material=material,
     )
 

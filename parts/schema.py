@@ -115,6 +115,8 @@ class DiscTable(Table):
 class LinkTable(Table):
     width: Length | None = None
     thickness: Length | None = None
+    surface_yield: Stress | None = None
+    case_depth: Length | None = None
     material: Text | None = None
 
 
@@ -124,11 +126,15 @@ class StopTable(Table):
     length: Length | None = None
     width: Length | None = None
     height: Length | None = None
+    surface_yield: Stress | None = None
+    case_depth: Length | None = None
     material: Text | None = None
 
 
 class PinTable(Table):
     diameter: Length | None = None
+    surface_yield: Stress | None = None
+    case_depth: Length | None = None
     material: Text | None = None
 
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from parts.design import Design
 from parts.fits import hole_class, shaft_class
+from parts.hardening import hardness_note
 from parts.making import (
     Length,
     bar_stock,
@@ -62,6 +63,12 @@ def post(stop: StopSizes, disc_thickness: float, away: int) -> Turned:
     )
 
 
+def _process(is_post: bool, hard: bool) -> str:
+    if is_post:
+        return "turn, harden, grind" if hard else "turn, grind"
+    return "cut, mill the contact face, ream, tap" + (", harden" if hard else "")
+
+
 def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
     stop, turn = sizes.stop, turn_of(design)
     is_post = stop.style == "post"
@@ -84,12 +91,15 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
                 stock=bar_stock(stop.diameter, design.identity.units)
                 if is_post
                 else plate_stock(stop.height, design.identity.units),
-                process="turn, grind" if is_post else "cut, mill the contact face, ream, tap",
+                process=_process(is_post, stop.material.surface_yield is not None),
                 placements=copy.placements("disc", at, angle),
                 color=COLOR,
-                notes=(f"press shank ground to {shaft_class(sizes.fits.stop_disc)} for the disc's stop seat",)
-                if is_post
-                else ("dowel holes reamed together with the disc",),
+                notes=(
+                    f"press shank ground to {shaft_class(sizes.fits.stop_disc)} for the disc's stop seat"
+                    if is_post
+                    else "dowel holes reamed together with the disc",
+                    *hardness_note(stop.material, design.identity.units),
+                ),
             )
         )
     return parts

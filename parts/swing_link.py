@@ -7,6 +7,7 @@ from dataclasses import replace
 
 from parts.design import Design
 from parts.fits import hole_class
+from parts.hardening import hardness_note
 from parts.making import copies, plate_stock, turn_of, turned_round
 from parts.marks import CLEAR, Circle, numbered, text_on_strip
 from parts.outline import Arc, Counterbore, Hole, Line, Mark, Part, Plate
@@ -109,6 +110,7 @@ def make(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
             process="cut, mill the stop flank, bore, ream" + (", counterbore" if handed else ""),
             placements=copy.placements("link", (0.0, 0.0)),
             color=COLOR,
+            notes=tuple(f"stop flank {note}" for note in hardness_note(sizes.link.material, design.identity.units)),
         )
         parts.append(numbered(part, design, place))
     return parts

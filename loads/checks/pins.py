@@ -11,6 +11,7 @@ from loads.records import Check
 from parts.contact_lengths import chain_pin_in_link, crank_pin_in_link
 from parts.design import Floats, Material
 from parts.fits import covers, interference
+from parts.hardening import is_case, section_words, state
 
 
 def circle_area(d: Floats | float) -> Floats:
@@ -83,6 +84,15 @@ def eye_contact_limit(f_y: float) -> float:
     return 2.5 * f_y
 
 
+def core_pressure_limit(f_y: float) -> float:
+    """p0 = 1.67 f_y in MPa at which a line contact first yields below its surface (Tresca).
+
+    Source: Johnson, Contact Mechanics, equation 6.4. Used for the core of a pin that fills its hole nearly: there the
+    greatest shear lies deeper than any case, so the core has to bear the pressure by itself.
+    """
+    return 1.67 * f_y
+
+
 def contact_checks(c: Context) -> list[Check]:
     """Contact stress of each pin that runs or lies with clearance, at the fit's largest clearance."""
     z = c.sizes
@@ -102,14 +112,23 @@ def contact_checks(c: Context) -> list[Check]:
         if play <= 0.0 or t <= 0.0:
             continue
         modulus = 2.0 / (1.0 / pin.youngs_modulus + 1.0 / eye.youngs_modulus)
+        stress, words = eye_contact_stress(force, modulus, d, d + play, t), state(pin)
+        how = f"0.591 sqrt(E F (d_0 − d)/(d² t)) ≤ 2.5 f_y, d_0 − d = {play:.3f} mm ({fit}), γ = 1"
         rows.append(
             c.worst_check(
-                part, site, "contact in the eye", eye_contact_stress(force, modulus, d, d + play, t),
-                eye_contact_limit(min(pin.yield_strength(d), eye.yield_strength(size))), "MPa", 1.0,
-                f"0.591 sqrt(E F (d_0 − d)/(d² t)) ≤ 2.5 f_y, d_0 − d = {play:.3f} mm ({fit}), γ = 1", EN_PINS,
-                rule_note(eye),
+                part, site, "contact in the eye", stress,
+                eye_contact_limit(min(pin.surface_strength(d), eye.yield_strength(size))), "MPa", 1.0,
+                how + (f", f_y the lower of plate and pin ({words})" if words else ""), EN_PINS, rule_note(eye),
             )
         )  # fmt: skip
+        if is_case(pin):
+            rows.append(
+                c.worst_check(
+                    part, site, "core under the case", stress, core_pressure_limit(pin.yield_strength(d)), "MPa", 1.0,
+                    f"the same pressure against p0 = 1.67 f_y of the core, however deep the case lies; {words}",
+                    "Johnson, Contact Mechanics, §6.1",
+                )
+            )  # fmt: skip
     return rows
 
 
@@ -123,6 +142,7 @@ def pin_checks(
         bending_capacity, bending_method = float(first_yield_bending_capacity(d, f_y)), "W_el f_y, pin held at one end"
     else:
         bending_capacity, bending_method = float(pin_bending_capacity(d, f_y)), "1.5 W_el f_y, M = F(b + 4c + 2a)/8"
+    hard = section_words(material)
     source = BEAM if held else EN_PINS
     targets = c.design.targets
     rows = [
@@ -134,7 +154,7 @@ def pin_checks(
             shear_capacity,
             "N",
             targets.ultimate,
-            "0.6 A f_u, one shear plane",
+            "0.6 A f_u, one shear plane" + hard,
             EN_PINS,
             rule_note(material),
         ),
@@ -146,7 +166,7 @@ def pin_checks(
             bending_capacity,
             "N·mm",
             targets.yield_,
-            bending_method,
+            bending_method + hard,
             source,
             rule_note(material),
         ),
@@ -161,7 +181,7 @@ def pin_checks(
                 float(replaceable_pin_bending_capacity(d, f_y)),
                 "N·mm",
                 1.0,
-                "0.8 W_el f_y at the working load, γ = 1",
+                "0.8 W_el f_y at the working load, γ = 1" + hard,
                 EN_PINS,
                 rule_note(material),
             )

@@ -7,17 +7,21 @@ from dataclasses import replace
 
 import numpy as np
 
-from loads.checks.context import BEAM, EN_PINS, Context, length_of
+from loads.checks.context import BEAM, COMMON, EN_PINS, Context, length_of
 from loads.checks.disc import preload
 from loads.checks.eyes import bearing
 from loads.checks.pins import first_yield_bending_capacity, pin_shear_capacity, shear_and_bending_factor
-from loads.practice import source
+from loads.practice import source, value
 from loads.records import Check
 from parts.contact_lengths import stop_on_link
 from parts.design import Floats, Material
+from parts.hardening import is_case, section_words, state
 from parts.hardware import cap_screw, property_class_source
 from parts.stop_layout import HOLES_AT
 
+T_STUB = "EN 1993-1-8:2005 tables 6.2 and 3.4, from memory"
+CASE_OVER_SHEAR = 2.0  # case depth over that of the greatest shear; common practice, no source
+NO_DEPTH = "the depth of the link's case is not given: it is not checked"
 HERTZ = "Johnson, Contact Mechanics, §4.2 and §6.1"
 
 
@@ -45,6 +49,27 @@ def line_contact_yield_force(length: Floats | float, radius: Floats | float, mod
     return np.asarray(math.pi * np.asarray(length) * np.asarray(radius) * (1.67 * f_y) ** 2 / modulus)
 
 
+def contact_half_width(force: Floats | float, length: Floats | float, radius: Floats | float, modulus: float) -> Floats:
+    """b = sqrt(4 F R / (π L E*)) in mm, half the width over which a cylinder of radius R touches a flat; N, mm, MPa.
+
+    Source: Johnson, Contact Mechanics, equation 4.43.
+    """
+    return np.asarray(np.sqrt(4.0 * np.asarray(force) * np.asarray(radius) / (math.pi * np.asarray(length) * modulus)))
+
+
+def greatest_shear_depth(half_width: Floats | float) -> Floats:
+    """z = 0.786 b in mm below the surface of a line contact: there its shear stress is greatest, 0.30 p0.
+
+    Source: Johnson, Contact Mechanics, §4.2.
+    """
+    return np.asarray(0.786 * np.asarray(half_width))
+
+
+def least_case_depth(force: Floats | float, length: Floats | float, radius: Floats | float, modulus: float) -> Floats:
+    """Depth (mm) that a hardened case has at least: 2 z. Source: common practice for the 2, Johnson for z."""
+    return np.asarray(CASE_OVER_SHEAR * greatest_shear_depth(contact_half_width(force, length, radius, modulus)))
+
+
 def contact_depth(c: Context) -> float:
     """Length (mm, along z) over which stop and link touch."""
     stop = c.sizes.stop
@@ -59,6 +84,23 @@ def bolt_share(width: float) -> float:
     """
     far, near = (0.5 - HOLES_AT) * width, (0.5 + HOLES_AT) * width
     return near / (near**2 + far**2)
+
+
+def t_stub_capacity(
+    length: float, width: float, height: float, f_y: float, a_s: float, f_ub: float
+) -> tuple[float, str]:
+    """Pull (N) that one bolt of a block and the block about it bear as half a T-stub, and the mode that governs.
+
+    F_T,1-2 = M_pl/m, M_pl = 0.25 l_eff t² f_y; F_T,3 = F_t,R = 0.9 f_ub A_s; partial factors 1. The flange is the block:
+    t its height, m from the bolt to the face that the link pushes, l_eff half the length, at most 2πm. Nothing keeps that
+    face from turning, so there is no second hinge and no prying force beyond the bolt: that edge lifts. What the far edge
+    pries is in the pull, as the block tips about it. mm, mm², MPa. Source: EN 1993-1-8:2005 table 6.2, the column without
+    prying forces, halved; l_eff table 6.4; F_t,R table 3.4 (from memory).
+    """
+    m = (0.5 - HOLES_AT) * width
+    hinge = 0.25 * min(length / 2.0, 2.0 * math.pi * m) * height**2 * f_y / m
+    bolt = 0.9 * f_ub * a_s
+    return (bolt, "mode 3, the bolt") if bolt <= hinge else (hinge, "mode 1-2, the block yields")
 
 
 def swing_inertia(length: float, width: float, thickness: float, density: float, at_end: float) -> float:
@@ -100,8 +142,17 @@ def check(c: Context) -> list[Check]:
     speed = c.design.moving.disc_speed if c.design.moving is not None else None
     if not speed:
         silent = "the blow of the catch is not covered: the design gives no [moving] disc_speed"
-        return [replace(row, note=row.note or silent) if row.check == "contact" else row for row in rows]
+        return [
+            replace(row, note=f"{row.note}; {silent}" if row.note else silent) if row.check == "contact" else row
+            for row in rows
+        ]
     return [*rows, _blow(c, push, speed)]
+
+
+def _surface(c: Context) -> float:
+    """Yield strength (MPa) of the weaker of the two surfaces where a post meets the link's flank."""
+    stop, link = c.sizes.stop, c.sizes.link
+    return min(stop.material.surface_strength(stop.diameter), link.material.surface_strength(link.thickness))
 
 
 def _blow(c: Context, push: Floats, speed: float) -> Check:
@@ -116,16 +167,16 @@ def _blow(c: Context, push: Floats, speed: float) -> Check:
     free = np.flatnonzero(s.crank_angle < float(c.past.figures.events.catch) - 1e-6)
     turning = np.gradient(s.link_direction[free], s.crank_angle[free])[-2] if free.size > 2 else 0.0
     f_y = stop.material.yield_strength(stop.diameter or stop.width)
-    weaker = min(f_y, link.material.yield_strength(link.thickness))
     if stop.style == "post":
         d = stop.diameter
         k = root_stiffness(arm, math.pi * d**4 / 64.0, math.pi * d**2 / 4.0, 0.9, stop.material)
         contact = line_contact_yield_force(
-            contact_depth(c), d / 2.0, contact_modulus(stop.material, link.material), weaker
+            contact_depth(c), d / 2.0, contact_modulus(stop.material, link.material), _surface(c)
         )
         bends = float(first_yield_bending_capacity(d, f_y)) / arm
     else:
         k = root_stiffness(arm, stop.length * stop.width**3 / 12.0, stop.length * stop.width, 5.0 / 6.0, stop.material)
+        weaker = min(f_y, link.material.yield_strength(link.thickness))
         contact = np.asarray(stop.length * contact_depth(c) * weaker)
         bends = stop.length * stop.width**2 / 6.0 * f_y / arm
     blow = blow_force(inertia, speed * abs(1.0 - float(turning)), k)
@@ -147,8 +198,9 @@ def _post(c: Context, push: Floats) -> list[Check]:
     shear_capacity, bending_capacity = float(pin_shear_capacity(d, f_u)), float(first_yield_bending_capacity(d, f_y))
     moment = push * c.stack.pin_root_arm
     both = 1.0 / shear_and_bending_factor(push / shear_capacity, moment / bending_capacity)
-    weaker = min(f_y, link.material.yield_strength(link.thickness))
-    contact = line_contact_yield_force(contact_depth(c), d / 2.0, contact_modulus(material, link.material), weaker)
+    modulus = contact_modulus(material, link.material)
+    contact = line_contact_yield_force(contact_depth(c), d / 2.0, modulus, _surface(c))
+    hard, surfaces = section_words(material), _surface_words(material, link.material)
     return [
         c.worst_check(
             "stop",
@@ -158,7 +210,7 @@ def _post(c: Context, push: Floats) -> list[Check]:
             shear_capacity,
             "N",
             targets.ultimate,
-            "0.6 A f_u, one shear plane",
+            "0.6 A f_u, one shear plane" + hard,
             EN_PINS,
         ),
         c.worst_check(
@@ -169,7 +221,7 @@ def _post(c: Context, push: Floats) -> list[Check]:
             bending_capacity,
             "N·mm",
             targets.yield_,
-            "W_el f_y, post held in the disc",
+            "W_el f_y, post held in the disc" + hard,
             BEAM,
         ),
         c.worst_check(
@@ -191,10 +243,35 @@ def _post(c: Context, push: Floats) -> list[Check]:
             contact,
             "N",
             targets.yield_,
-            "line contact, first yield at p0 = 1.67 f_y",
+            "line contact, first yield at p0 = 1.67 f_y" + surfaces,
             HERTZ,
+            "" if not is_case(link.material) or link.material.case_depth is not None else NO_DEPTH,
         ),
+        *_cases(c, push, modulus),
     ]
+
+
+def _surface_words(stop: Material, link: Material) -> str:
+    """Which hardened surfaces a contact's strength goes by; empty where neither is hardened."""
+    words = [f"{name} {state(m)}" for name, m in (("post", stop), ("link", link)) if m.surface_yield is not None]
+    return f", the weaker of the two surfaces; {', '.join(words)}" if words else ""
+
+
+def _cases(c: Context, push: Floats, modulus: float) -> list[Check]:
+    """A case reaches deeper than where the contact shears most, on the post and on the link's flank."""
+    wanted = least_case_depth(push, contact_depth(c), c.sizes.stop.diameter / 2.0, modulus)
+    how = f"{CASE_OVER_SHEAR:g} × 0.786 b, b = sqrt(4 F R/(π L E*)), against the case's depth"
+    return [
+        c.worst_check(
+            part, site, "case depth", wanted, material.case_depth, "mm", 1.0, how,
+            f"Johnson, Contact Mechanics, §4.2; the {CASE_OVER_SHEAR:g} {COMMON}",
+        )
+        for part, site, material in (
+            ("stop", "contact", c.sizes.stop.material),
+            ("swing_link", "stop_flank", c.sizes.link.material),
+        )
+        if material.case_depth is not None
+    ]  # fmt: skip
 
 
 def _block(c: Context, push: Floats) -> list[Check]:
@@ -202,9 +279,14 @@ def _block(c: Context, push: Floats) -> list[Check]:
     material = stop.material
     f_u, f_y = material.ultimate_strength(stop.width), material.yield_strength(stop.width)
     weaker = min(f_y, link.material.yield_strength(link.thickness))
+    surfaces = (material.surface_yield, link.material.surface_yield)
+    hard = "" if surfaces == (None, None) else "; f_y of what lies under the hardened face"
     moment = push * c.stack.pin_root_arm
     disc, bolt = c.sizes.disc, cap_screw(stop.bolt_thread)
     lift_off = moment * bolt_share(stop.width)
+    pried, mode = t_stub_capacity(
+        stop.length, stop.width, stop.height, f_y, bolt.stress_area, value("bolts", "ultimate")
+    )
     return [
         c.worst_check(
             "stop",
@@ -214,7 +296,7 @@ def _block(c: Context, push: Floats) -> list[Check]:
             stop.length * contact_depth(c) * weaker,
             "N",
             targets.yield_,
-            "bearing over the area, length × depth × f_y",
+            "bearing over the area, length × depth × f_y" + hard,
             BEAM,
         ),
         c.worst_check(
@@ -260,6 +342,11 @@ def _block(c: Context, push: Floats) -> list[Check]:
             targets.yield_,
             "the bolt nearer the link, block tipping about its far edge",
             property_class_source(),
+        ),
+        c.worst_check(
+            "stop", "root", "prying on the bolts", lift_off, pried, "N", targets.ultimate,
+            f"half a T-stub, least of M_pl/m and 0.9 f_ub A_s: {mode}; the far edge's push is in the pull",
+            f"{T_STUB}; {source('bolts')}",
         ),
         c.worst_check(
             "stop", "root", "stays down under its bolts", lift_off, preload(bolt), "N", 1.0,

@@ -10,7 +10,8 @@ import numpy as np
 from loads.checks import eyes, pins
 from loads.members import History
 from parts.catalogue import Catalogue
-from parts.design import Assumed, Design, Floats, Material
+from parts.design import Assumed, Design, Floats, LinkWish, Material, PinWish, StopWish
+from parts.hardening import hardened
 from parts.hardware import preferred
 from parts.stack import Stack, make_stack
 
@@ -121,10 +122,13 @@ class Basis:
         self.step = 25.4 / 16.0 if design.identity.units == "us" else 1.0
         take, z = self.ledger.material, catalogue
         self.disc_material = take("disc.material", design.disc.material, PLATE, z)
-        self.link_material = take("link.material", design.link.material, PLATE, z)
-        self.crank_material = take("crank_pin.material", design.crank_pin.material, BAR, z)
-        self.chain_pin_material = take("chain_pin.material", design.chain_pin.material, BAR, z)
-        self.stop_material = take("stop.material", design.stop.material, BAR, z)
+        self.link_material = self._hardened("link", design.link, PLATE, whole=False)
+        self.crank_material = self._hardened("crank_pin", design.crank_pin, BAR)
+        self.chain_pin_material = self._hardened("chain_pin", design.chain_pin, BAR)
+        self.stop_material = self._hardened("stop", design.stop, BAR)
+        # a block has dowels and tapped holes, which its hardened face does nothing for
+        grade = design.stop.material or catalogue.materials[BAR]
+        self.block_material = hardened(grade, design.stop.surface_yield, design.stop.case_depth, whole=False)
         self.end_material = take("chain_end.material", design.chain_end.material, BAR, z)
         gap = 0.5 if design.mechanism.link_length < 60.0 else 1.0
         self.gap = self.ledger.take(
@@ -139,6 +143,11 @@ class Basis:
         kind = self.stack(1.0, 1.0, 1.0)
         self.headed = kind.crank_pin_headed
         self.loads = demands(past, kind.load_share, t.shock_factor)
+
+    def _hardened(self, part: str, wish: LinkWish | PinWish | StopWish, grade: str, whole: bool = True) -> Material:
+        """A part's material, as the design hardens it; of a link the flank alone is hardened."""
+        material = self.ledger.material(f"{part}.material", wish.material, grade, self.catalogue)
+        return hardened(material, wish.surface_yield, wish.case_depth, whole)
 
     def stack(self, end_width: float, link: float, disc: float) -> Stack:
         d = self.design

@@ -8,7 +8,14 @@ import numpy as np
 
 from loads.checks import eyes, pins
 from loads.checks.disc import preload
-from loads.checks.stop import bolt_share, contact_modulus, line_contact_yield_force
+from loads.checks.stop import (
+    bolt_share,
+    contact_modulus,
+    least_case_depth,
+    line_contact_yield_force,
+    t_stub_capacity,
+)
+from loads.practice import value
 from loads.proportions.basis import Basis, first, round_up
 from parts.contact_lengths import stop_on_link
 from parts.design import Assumed, Material
@@ -31,7 +38,7 @@ class StopSide(Basis):
         if wish.diameter is not None:
             d = np.array([wish.diameter])
         weaker = np.array(
-            [min(self.stop_material.yield_strength(float(x)), self.link_material.yield_strength(depth)) for x in d]
+            [min(self.stop_material.surface_strength(float(x)), self.link_material.surface_strength(depth)) for x in d]
         )
         modulus = contact_modulus(self.stop_material, self.link_material)
         touch = [stop_on_link("post", float(x), height, depth, self.gap) for x in d]
@@ -44,6 +51,12 @@ class StopSide(Basis):
         use = np.maximum(
             self.pin_use(d, self.stop_material, force, force * arm), force * self.yields / np.maximum(contact, 1e-9)
         )
+        case = min(
+            (m.case_depth for m in (self.stop_material, self.link_material) if m.case_depth is not None), default=None
+        )
+        if case is not None:
+            wanted = [float(least_case_depth(force, t, x / 2.0, modulus)) for t, x in zip(touch, d, strict=True)]
+            use = np.maximum(use, np.array(wanted) / case)
         post = first(d, use)
         if wish.style is not None:
             style = wish.style
@@ -65,9 +78,9 @@ class StopSide(Basis):
         return self._block(force, arm, height, link, bore)
 
     def _block(self, force: float, arm: float, height: float, link: LinkSizes, bore: float) -> StopSizes:
-        wish, material = self.design.stop, self.stop_material
+        wish, material = self.design.stop, self.block_material
         m, depth = self.design.mechanism, link.thickness
-        dowels = np.array(dowel_diameters())
+        dowels, f_ub = np.array(dowel_diameters()), value("bolts", "ultimate")
         room = 2.0 * min(m.stop_reach, m.link_length - m.stop_reach)
         widths = list(self.within(np.arange(round_up(8.0, self.step), 200.0, self.step), material))
         if wish.width is not None:
@@ -78,7 +91,13 @@ class StopSide(Basis):
             tension = force * arm * bolt_share(width) * self.yields
             lift = tension / self.yields
             bolt = next(
-                (s for s in cap_screws() if s.stress_area * s.yield_strength >= tension and preload(s) >= lift),
+                (
+                    s
+                    for s in cap_screws()
+                    if s.stress_area * s.yield_strength >= tension
+                    and preload(s) >= lift
+                    and 0.9 * f_ub * s.stress_area >= lift * self.ultimate
+                ),
                 cap_screws()[-1],
             )
             # holes a quarter from the edges and half the block apart, each with its web
@@ -92,6 +111,7 @@ class StopSide(Basis):
                 6.0 * force * arm * self.yields / (f_y * width**2),
                 force * self.yields / (weaker * depth),
                 1.5 * force * math.sqrt(3.0) * self.yields / (f_y * width),
+                2.0 * width * lift * self.ultimate / (f_y * height**2),
                 for_holes,
             )  # fmt: skip
             clear = self.clears_bore(
@@ -99,7 +119,9 @@ class StopSide(Basis):
                 link,
                 bore,
             )
-            if width >= for_holes and length <= max(room, for_holes) and clear:
+            pried, _ = t_stub_capacity(length, width, height, f_y, bolt.stress_area, f_ub)
+            held = pried >= lift * self.ultimate * (1.0 - 1e-9)
+            if width >= for_holes and length <= max(room, for_holes) and clear and held:
                 break
         why = "least foot at which dowels, bolts and bending reach their targets"
         width = self.ledger.take("stop.width", wish.width, float(width), why)
@@ -110,7 +132,7 @@ class StopSide(Basis):
 
     def dowel_bearing_use(self, stop: StopSizes, depth: float, material: Material) -> float:
         """Use of the bearing capacity of the dowels in a plate ``depth`` mm thick."""
-        f_y = min(material.yield_strength(depth), self.stop_material.yield_strength(stop.width))
+        f_y = min(material.yield_strength(depth), stop.material.yield_strength(stop.width))
         bears = 2.0 * float(eyes.bearing(depth, stop.dowel_diameter, f_y))
         return float(np.max(self.loads.stop)) * self.yields / bears
 
