@@ -138,11 +138,12 @@ def build(
     target = to or Path(f"{e.design.identity.number}-{e.design.identity.revision}")
     try:
         with Shown() as report:
-            build_folder(e, target, report)
+            left_out = build_folder(e, target, report)
     except KeyboardInterrupt:
         message(INTERRUPTED)
         raise typer.Exit(STOPPED) from None
-    emit(summary(e) + f"\nFolder: {target}\n")
+    missing = "".join(f"Left out, {line}\n" for line in left_out)
+    emit(summary(e) + f"\nFolder: {target}\n{missing}")
     finish(e.holds)
 
 
@@ -171,8 +172,7 @@ def ratings(
         raise typer.Exit(REFUSED)
     names = list(listed.TABLES) if table is None else [table]
     if table is None and like is None and not json:
-        for line in listed.overview():
-            typer.echo(line)
+        emit("\n".join(listed.overview()) + "\n")
         message("List one with: drawcrank ratings TABLE --like TEXT")
         return
     found = listed.sections(names, like or "")
@@ -183,10 +183,9 @@ def ratings(
     if json:
         from exporters.check_json import dump
 
-        typer.echo(dump(listed.document(found)), nl=False)
+        emit(dump(listed.document(found)))
         return
-    for line in listed.lines(found):
-        typer.echo(line)
+    emit("\n".join(listed.lines(found)) + "\n")
 
 
 def summary(e: Examination) -> str:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator
+from dataclasses import dataclass, field
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -41,29 +42,50 @@ def stem(e: Examination, name: str) -> str:
     return f"{who.number}-{name}-{who.revision}"
 
 
-def build_folder(e: Examination, target: Path, report: Report) -> None:
+def build_folder(e: Examination, target: Path, report: Report) -> tuple[str, ...]:
     """Write the folder of a design to ``target``; ``report`` is told what is being done, how far it is, and of how much.
 
     Raises ``NotOurs`` before anything is written where ``target`` must not be replaced, ``ModellerMissing`` where solids
     cannot be made, ``Unconfirmed`` where a written file does not agree with its part. The old folder stays as it was
-    unless the new one is complete.
+    unless the new one is complete. Returns what was left out: files of a design that falls short, of a shape that cannot
+    be made; a design that holds has none.
     """
     recover(target)
     may_be_replaced(target)
     need_modeller()
-    confirmed: list[dict[str, object]] = []
-    steps = list(_steps(e, confirmed))
+    made = _Made()
+    steps = list(_steps(e, made))
     with beside(target) as folder:
         for i, (what, write) in enumerate(steps):
             report(what, i, len(steps))
-            write(folder)
+            made.try_to(what, lambda write=write: write(folder), e.holds)  # type: ignore[misc]
         report("manifest", len(steps), len(steps))
-        write_manifest(folder, e.design, confirmed)
+        write_manifest(folder, e.design, made.confirmed, made.left_out)
         put_in_place(folder, target)
+    return tuple(made.left_out)
 
 
-def _steps(e: Examination, confirmed: list[dict[str, object]]) -> Iterator[Step]:
-    """What is written, one step a file or a part, in the order of writing; ``confirmed`` takes a row a solid."""
+@dataclass
+class _Made:
+    """What one build has made so far."""
+
+    confirmed: list[dict[str, object]] = field(default_factory=list)
+    left_out: list[str] = field(default_factory=list)
+
+    def try_to(self, what: str, write: Callable[[], None], holds: bool) -> None:
+        """Write; a part of a design that falls short may be of a shape that nobody can model, and is then left out."""
+        try:
+            write()
+        except OSError:
+            raise
+        except Exception as error:
+            if holds:
+                raise
+            self.left_out.append(f"{what}: {' '.join(str(error).split())[:200] or type(error).__name__}")
+
+
+def _steps(e: Examination, made: _Made) -> Iterator[Step]:
+    """What is written, one step a file or a part, in the order of writing."""
     from parts.solids import named_faces, solid
 
     shapes: dict[str, Shape] = {}
@@ -80,7 +102,7 @@ def _steps(e: Examination, confirmed: list[dict[str, object]]) -> Iterator[Step]
             if not found.holds and is_sound(part):
                 raise Unconfirmed("; ".join(found.failing))
             shapes[part.name], faces[part.name] = shape, named
-            confirmed.append(_confirmed(found))
+            made.confirmed.append(_confirmed(found))
             masses[part.name] = found.volume * part.density * 1e-9
             path = folder / "step" / f"{stem(e, part.name)}.step"
             path.parent.mkdir(exist_ok=True)
@@ -117,6 +139,7 @@ def _steps(e: Examination, confirmed: list[dict[str, object]]) -> Iterator[Step]
         copies = [
             Placed(p.part, shapes[p.part.name], matrix(p.at), p.name, f"{who.number} {p.part.name} {who.revision}")
             for p in placed(e.parts, hold_pose(e))
+            if p.part.name in shapes
         ]
         path = folder / "step" / f"{stem(e, 'assembly')}.step"
         name = f"{who.number} assembly {who.revision}"

@@ -27,7 +27,9 @@ def digest_of(path: Path) -> str:
     return hashlib.sha256(path.read_bytes()).hexdigest()
 
 
-def write_manifest(folder: Path, design: Design, solids: Sequence[Mapping[str, object]] = ()) -> None:
+def write_manifest(
+    folder: Path, design: Design, solids: Sequence[Mapping[str, object]] = (), left_out: Sequence[str] = ()
+) -> None:
     """Write the manifest of all files that are in ``folder``, with how each solid was confirmed."""
     files = sorted(p for p in folder.rglob("*") if p.is_file() and p.name != NAME)
     document = {
@@ -39,6 +41,7 @@ def write_manifest(folder: Path, design: Design, solids: Sequence[Mapping[str, o
         },
         "versions": _versions(),
         "solids": list(solids),
+        "left_out": list(left_out),
         "files": [
             {"path": p.relative_to(folder).as_posix(), "size": p.stat().st_size, "sha256": digest_of(p)} for p in files
         ],

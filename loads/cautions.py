@@ -11,13 +11,14 @@ from parts.design import Design
 from parts.quantities import KINDS, factor
 from parts.sizes import Sizes
 
+LEAST_MARGIN = math.radians(1.0)  # common practice, no source
 MUCH_AT_HOLD = 0.15  # of the largest torque
 
 
 def cautions(design: Design, figures: Cycle, sizes: Sizes, checks: tuple[Check, ...]) -> tuple[str, ...]:
     """One sentence a caution, the general ones first."""
     unit = KINDS["energy"].metric if design.identity.units == "metric" else KINDS["energy"].us
-    energy = f"{float(figures.stored_energy) / factor('energy', unit):.3g} {unit}"
+    energy = f"{float(figures.stored_energy) / factor('energy', unit):.4g} {unit}"
     at = figures.events
     rows = [
         f"Stored energy: at the hold the spring holds {energy}. It can maim or kill without warning.",
@@ -43,6 +44,11 @@ def cautions(design: Design, figures: Cycle, sizes: Sizes, checks: tuple[Check, 
         rows.append(
             "Near the middle of the turn the drive torque is nothing or turns round: without drive the machine can stop "
             "there with the spring drawn."
+        )
+    if design.mechanism.hold_margin < LEAST_MARGIN:
+        rows.append(
+            f"The hold lies only {math.degrees(design.mechanism.hold_margin):.2g}° before it fires: play, a worn chain or "
+            "an encoder's step may be more than that."
         )
     peak = max(float(figures.first_peak), float(figures.second_peak))
     if float(figures.hold_torque) > MUCH_AT_HOLD * peak:

@@ -85,6 +85,9 @@ def read_source(path: Path) -> Source:
     return Source(path, text, values)
 
 
+_TUPLE = re.compile(r"\((?:'[^']*',? ?)+\)")  # how the standard reader prints the path of a key
+
+
 class _Unreadable(Exception):
     def __init__(self, found: str, accepted: str) -> None:
         self.found, self.accepted = found, accepted
@@ -102,6 +105,7 @@ def _syntax_problem(message: str, text: str) -> Problem:
         line = int(match[1]) if match[1] else max(1, len(text.splitlines()))
         if match[2]:
             message += f", column {match[2]}"
+    message = _TUPLE.sub(lambda found: "[" + ".".join(re.findall(r"'([^']*)'", found[0])) + "]", message)
     return Problem("", line, message[:1].lower() + message[1:], "TOML 1.0", "this line is not TOML")
 
 

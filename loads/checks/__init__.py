@@ -4,7 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from loads.checks import bearings, chain, disc, eyes, fit, link, pins, press, shaft, sheave, stop
+import numpy as np
+
+from loads.checks import bearings, chain, disc, eyes, fit, link, pins, press, room, shaft, sheave, stop
 from loads.checks.context import Context
 from loads.records import Check
 
@@ -19,11 +21,13 @@ FAMILIES: tuple[Callable[[Context], list[Check]], ...] = (
     shaft.check,
     bearings.check,
     sheave.check,
+    room.check,
     fit.check,
 )
 
 
 def all_checks(context: Context, of_studies: tuple[Check, ...] = ()) -> tuple[Check, ...]:
     """Every family's rows and those of the studies that ran, the least margin first."""
-    rows = [row for family in FAMILIES for row in family(context)] + list(of_studies)
+    with np.errstate(divide="ignore", invalid="ignore", over="ignore"):  # absurd sizes fall short, they do not crash
+        rows = [row for family in FAMILIES for row in family(context)] + list(of_studies)
     return tuple(sorted(rows, key=lambda row: (row.margin, row.part, row.site, row.check)))

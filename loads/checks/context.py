@@ -23,6 +23,7 @@ AISC_D5 = "AISC 360-16 §D5"
 EN_PINS = "EN 1993-1-8:2005 §3.13, table 3.10"
 BEAM = "beam theory"
 COMMON = "common practice, no source"
+UNBOUNDED = 1e12  # stands for the demand on something that is not there
 
 
 @dataclass(frozen=True, slots=True)
@@ -67,8 +68,11 @@ class Context:
         note: str = "",
     ) -> Check:
         """The check at the crank angle where capacity over demand is least; both over crank angle (n)."""
-        capacities = np.broadcast_to(np.asarray(capacity, dtype=float), demand.shape)
-        use = np.where(demand > 0.0, demand / np.maximum(capacities, 1e-300), 0.0)
+        # a part that has no material somewhere has no capacity there, and a load on nothing is without bound
+        given = np.broadcast_to(np.asarray(capacity, dtype=float), demand.shape)
+        capacities = np.where(np.isnan(given), 0.0, np.maximum(given, 0.0))
+        demand = np.where(np.isfinite(demand), demand, UNBOUNDED)
+        use = np.where(demand > 0.0, demand / np.maximum(capacities, 1e-100), 0.0)
         i = int(np.argmax(use))
         loaded = bool(demand[i] > 0.0)
         return Check(
@@ -91,7 +95,7 @@ class Context:
         note: str = "",
     ) -> Check:
         """A check of sizes, not of loads: what is there against what is wanted, target 1."""
-        return Check(part, site, check, "", None, wanted, found, unit, 1.0, method, source, note)
+        return Check(part, site, check, "", None, wanted, max(found, 0.0), unit, 1.0, method, source, note)
 
 
 def length_of(vector: Floats) -> Floats:

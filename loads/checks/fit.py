@@ -182,6 +182,7 @@ def _stop(c: Context) -> list[Check]:
                 "mm",
                 "the block touches the flank between the two pins",
                 GEOMETRY,
+                "" if half <= room else "give a shorter mechanism.stop_reach, or a thicker link for a post",
             )
         )
     return rows

@@ -114,6 +114,7 @@ class StopSide(Basis):
                 2.0 * width * lift * self.ultimate / (f_y * height**2),
                 for_holes,
             )  # fmt: skip
+            length = round_up(length, self.step)
             clear = self.clears_bore(
                 StopSizes("block", 0.0, length, width, height, dowel, bolt.thread, bolt.clearance_hole, 0.0, material),
                 link,
@@ -125,7 +126,7 @@ class StopSide(Basis):
                 break
         why = "least foot at which dowels, bolts and bending reach their targets"
         width = self.ledger.take("stop.width", wish.width, float(width), why)
-        length = self.ledger.take("stop.length", wish.length, round_up(length, self.step), why)
+        length = self.ledger.take("stop.length", wish.length, length, why)
         return StopSizes(
             "block", 0.0, length, width, height, dowel, bolt.thread, bolt.clearance_hole, bolt.tapping_hole, material
         )

@@ -138,10 +138,11 @@ RUN = "from exporters.command import main; main()"
 def test_whoever_reads_only_the_head_gets_the_verdict_s_status(tmp_path: Path) -> None:
     path = tmp_path / "d.toml"
     path.write_text(text_of("seed-thrower"), encoding="utf-8")
-    process = subprocess.Popen([sys.executable, "-c", RUN, "check", str(path)], stdout=subprocess.PIPE, text=True)
-    assert process.stdout is not None
-    process.stdout.close()
-    assert process.wait() == 0
+    for words in (["check", str(path)], ["check", str(path), "--json"], ["ratings", "chains"]):
+        process = subprocess.Popen([sys.executable, "-c", RUN, *words], stdout=subprocess.PIPE, text=True)
+        assert process.stdout is not None
+        process.stdout.close()
+        assert process.wait() == 0
 
 
 def test_a_console_without_the_signs_shows_marks_in_their_place(tmp_path: Path) -> None:
@@ -210,3 +211,30 @@ def test_sizes_that_make_no_sense_fall_short_and_are_still_written(
     said = capsys.readouterr()
     assert said.err == ""
     assert (tmp_path / "out" / "manifest.json").exists()
+
+
+BEYOND_MODELLING = {
+    "paper link": ("seed-thrower", {"link__thickness": '"1 mm"'}),
+    "hair of a pin": ("seed-thrower", {"crank_pin__diameter": '"0.1 mm"'}),
+    "bore beyond the fits": ("impact-rig", {"disc__bore": '"260 mm"'}),
+    "hole as large as the block": ("impact-rig", {"chain_end__pin_diameter": '"260 mm"'}),
+}
+
+
+@pytest.mark.parametrize("name", BEYOND_MODELLING)
+def test_what_nobody_can_model_is_left_out_and_said(
+    name: str, tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: Said
+) -> None:
+    starter, changes = BEYOND_MODELLING[name]
+    path = tmp_path / "d.toml"
+    path.write_text(changed(starter, **changes), encoding="utf-8")
+    assert run(monkeypatch, "check", str(path)) == 1
+    capsys.readouterr()
+    assert run(monkeypatch, "build", str(path), "--to", str(tmp_path / "out")) == 1
+    said = capsys.readouterr()
+    assert said.err == ""
+    manifest = json.loads((tmp_path / "out" / "manifest.json").read_text(encoding="utf-8"))
+    for line in manifest["left_out"]:
+        assert line in said.out
+    written = {row["path"] for row in manifest["files"]}
+    assert {"check.json", "bill_of_loads.html", "parts_list.csv"} <= written
