@@ -140,6 +140,7 @@ class Basis:
         self.pins = listed[listed >= min(design.mechanism.link_length / LEAST_PIN, listed[-1])]
         self.plates = np.array(preferred("plate_thicknesses", design.identity.units))
 
+        self.least_width = 0.0  # of the link, for what stands beside it
         kind = self.stack(1.0, 1.0, 1.0)
         self.headed = kind.crank_pin_headed
         self.loads = demands(past, kind.load_share, t.shock_factor)

@@ -57,12 +57,13 @@ class LinkSide(Basis):
         )
         return width, finger, leaf_slots(plates, finger, slot)
 
-    def _link_and_pins(self, end_width: float) -> Pair:
+    def _link_and_pins(self, end_width: float, thickness: float = 0.0) -> Pair:
+        """Plate and pins that are smallest together, of plates of at least ``thickness`` mm."""
         wish = self.design
         if wish.link.thickness is not None:
             thicknesses = np.array([wish.link.thickness])
         else:
-            least = max(3.0, wish.mechanism.link_length / LEAST_LINK)
+            least = max(3.0, wish.mechanism.link_length / LEAST_LINK, thickness)
             plates = self.within(self.plates, self.link_material)
             thicknesses = plates[plates >= least] if least <= plates[-1] else plates[-1:]
         pairs = []
@@ -147,6 +148,7 @@ class LinkSide(Basis):
             2.0 * pair.crank,
             2.0 * pair.chain,
             self.design.mechanism.link_length / LEAST_WIDTH,
+            self.least_width,
             1.5 * self._head(pair.crank) + 1.5 if self.headed else 0.0,
         )
         widths = np.arange(round_up(least, self.step), least + 400.0, self.step)

@@ -19,7 +19,7 @@ from loads.practice import value
 from loads.proportions.basis import Basis, first, round_up
 from parts.contact_lengths import stop_on_link
 from parts.design import Assumed, Material
-from parts.hardware import cap_screws, dowel_diameters
+from parts.hardware import CapScrew, cap_screws, dowel_diameters
 from parts.sizes import LinkSizes, StopSizes
 from parts.stop_layout import block_hole_offsets, stop_center
 
@@ -85,6 +85,7 @@ class StopSide(Basis):
         widths = list(self.within(np.arange(round_up(8.0, self.step), 200.0, self.step), material))
         if wish.width is not None:
             widths = [wish.width]
+        spare: tuple[bool, float, float, float, CapScrew] | None = None
         for width in (float(x) for x in widths):
             shear = 2.0 * pins.pin_shear_capacity(dowels, material.ultimate_strength(width))
             dowel = first(dowels, force * self.ultimate / shear)
@@ -122,8 +123,14 @@ class StopSide(Basis):
             )
             pried, _ = t_stub_capacity(length, width, height, f_y, bolt.stress_area, f_ub)
             held = pried >= lift * self.ultimate * (1.0 - 1e-9)
-            if width >= for_holes and length <= max(room, for_holes) and clear and held:
+            enough = width >= for_holes and clear
+            if enough and held and length <= max(room, for_holes):
                 break
+            if enough and (spare is None or (held and not spare[0])):
+                spare = held, width, length, dowel, bolt
+        else:  # none is all of it: rather too long for the flank than as wide as the table goes
+            if spare is not None:
+                _, width, length, dowel, bolt = spare
         why = "least foot at which dowels, bolts and bending reach their targets"
         width = self.ledger.take("stop.width", wish.width, float(width), why)
         length = self.ledger.take("stop.length", wish.length, length, why)
