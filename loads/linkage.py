@@ -10,6 +10,7 @@ Arrays: the fields of ``Linkage`` have the designs' leading axes (...); crank an
 from __future__ import annotations
 
 from dataclasses import dataclass, fields
+from functools import cached_property
 from typing import Any
 
 import numpy as np
@@ -134,38 +135,51 @@ def linkage_of(design: Design) -> Linkage:
     )
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)  # without slots, so that what is asked for twice is worked out once
 class ChainLine:
     """The chain line from a point Q that the crank carries. All shaped like the crank angle."""
 
+    machine: Linkage  # expanded to meet Q's shape
     qx: Floats
     qy: Floats
     ux: Floats  # unit vector from Q to the sheave
     uy: Floats
-    direction: Floats  # φ, rad from the start direction
     free_length: Floats  # t, mm from Q to the tangent point
-    drawn: Floats  # ℓ(Q) − ℓ(A at θ = 0), mm
-    arm: Floats  # dℓ/dθ, mm: the signed distance from O to the chain line
-    turning: Floats  # dφ/dθ
+    gain: Floats  # t² − t0², mm²
+
+    @cached_property
+    def direction(self) -> Floats:
+        """φ, rad from the start direction."""
+        return np.arctan2(self.uy, self.ux)
+
+    @cached_property
+    def drawn(self) -> Floats:
+        """ℓ(Q) − ℓ(A at θ = 0), mm."""
+        m = self.machine
+        straight = self.gain / (self.free_length + m.sheave_distance)
+        return np.asarray(straight + m.crank_radius + m.pitch_radius * m.wrap_side * self.direction)
+
+    @property
+    def arm(self) -> Floats:
+        """dℓ/dθ, mm: the signed distance from O to the chain line."""
+        return self.ux * self.qy - self.uy * self.qx
+
+    @property
+    def turning(self) -> Floats:
+        """dφ/dθ."""
+        return -(self.ux * self.qx + self.uy * self.qy) / self.free_length
 
 
 def chain_line(m: Linkage, qx: Floats, qy: Floats) -> ChainLine:
     """Tangent from Q to the pitch circle. ``m`` is already expanded to meet Q's shape."""
-    t0, radius, w = m.sheave_distance, m.pitch_radius, m.wrap_side
-    dx, dy = t0 - qx, -w * radius - qy
+    t0, side = m.sheave_distance, m.pitch_radius * m.wrap_side
+    dx, dy = t0 - qx, -side - qy
     # t² − t0², written so that a sheave ten kilometres away costs no digits
-    gain = qx**2 + qy**2 - 2.0 * t0 * qx + 2.0 * w * radius * qy
+    gain = qx**2 + qy**2 - 2.0 * (t0 * qx - side * qy)
     with np.errstate(invalid="ignore"):
         t = np.sqrt(t0**2 + gain)
     squared = dx**2 + dy**2
-    ux = (dx * t - dy * w * radius) / squared
-    uy = (dy * t + dx * w * radius) / squared
-    phi = np.arctan2(uy, ux)
-    drawn = gain / (t + t0) + m.crank_radius + radius * w * phi
-    return ChainLine(
-        qx=qx, qy=qy, ux=ux, uy=uy, direction=phi, free_length=t, drawn=drawn,
-        arm=ux * qy - uy * qx, turning=-(ux * qx + uy * qy) / t,
-    )  # fmt: skip
+    return ChainLine(m, qx, qy, (dx * t - dy * side) / squared, (dy * t + dx * side) / squared, t, gain)
 
 
 def crank_pin_at(m: Linkage, theta: Floats) -> tuple[Floats, Floats]:
@@ -195,7 +209,7 @@ def lift(m: Linkage, line: ChainLine, theta: Floats) -> Floats:
     return np.asarray(line.ux * ey - line.uy * ex)
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)  # without slots, so that what is asked for twice is worked out once
 class State:
     """Everything over crank angle, frictionless. Vectors in the chain frame; mm, N, N·mm, rad.
 
@@ -212,7 +226,7 @@ class State:
     force: Floats  # of the spring, F
     tension: Floats  # of the chain, T
 
-    @property
+    @cached_property
     def torque(self) -> Floats:
         """Drive torque M = T dp/dθ."""
         return self.tension * self.line.arm
@@ -224,12 +238,12 @@ class State:
         pins = np.where(self.seated, m.friction_chain_pin, m.friction_crank_pin)
         return np.asarray(self.tension * (m.friction_bearing + pins * np.abs(1.0 - self.line.turning)))
 
-    @property
+    @cached_property
     def _alpha(self) -> Floats:
         """Chain line against B→A of the seated link."""
         return self.line.direction - (self.crank_angle + self.machine.seat_angle)
 
-    @property
+    @cached_property
     def lift(self) -> Floats:
         """sin α: the part of the chain's pull across the link; zero while the link is free."""
         return np.where(self.seated, np.sin(self._alpha), 0.0)
@@ -249,7 +263,7 @@ class State:
     def chain_direction(self) -> Floats:
         return self.line.direction
 
-    @property
+    @cached_property
     def stop_force(self) -> Floats:
         """N, along n: moments about A give N d = T L sin α."""
         m = self.machine

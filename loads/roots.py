@@ -58,7 +58,7 @@ def bracketed_root(function: Callable[[Floats], Floats], low: Floats, high: Floa
 
 
 def refined_peak(
-    function: Callable[[Floats], Floats], low: Floats, high: Floats, rounds: int = 6, cuts: int = 21
+    function: Callable[[Floats], Floats], low: Floats, high: Floats, rounds: int = 4, cuts: int = 41
 ) -> tuple[Floats, Floats]:
     """Place and height of the largest value of ``function`` in each interval, which must hold one hump.
 
