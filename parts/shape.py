@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from itertools import pairwise
-from math import acos, cos, dist, inf, pi, sin
+from math import acos, atan2, cos, dist, inf, pi, sin
 from typing import NamedTuple
 
 import numpy as np
@@ -305,13 +305,16 @@ def mirrored(outline: Outline) -> Outline:
 
 def is_inside(outline: Outline, point: Point) -> bool:
     """Whether a point lies inside a closed outline: the outline turns once round it."""
+    first = outline[0]
+    if len(outline) == 1 and isinstance(first, Arc):
+        return dist(point, first.center) < radius(first)
     turned = 0.0
     for segment in outline:
         n = 1 if isinstance(segment, Line) else max(4, 4 * steps(segment, radius(segment) / 10))
         at = [point_at(segment, i / n) for i in range(n + 1)]
         for (x0, y0), (x1, y1) in pairwise(at):
             ax, ay, bx, by = x0 - point[0], y0 - point[1], x1 - point[0], y1 - point[1]
-            turned += float(np.arctan2(ax * by - ay * bx, ax * bx + ay * by))
+            turned += atan2(ax * by - ay * bx, ax * bx + ay * by)
     return abs(turned) > pi
 
 
