@@ -41,17 +41,17 @@ def bracketed_root(function: Callable[[Floats], Floats], low: Floats, high: Floa
     for step in range(90):
         if not np.any(open_):
             break
-        with np.errstate(divide="ignore", invalid="ignore"):
+        with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
             x = b - fb * (b - a) / (fb - fa)
         # far more steps than a smooth function takes, or a step out of the bracket
         x = np.where(((x - a) * (x - b) <= 0.0) & (step < SLOW), x, 0.5 * (a + b))
         fx = function(x)
         moved = np.abs(x - best)
         best = np.where(open_, x, best)
-        crossed = fx * fb < 0.0
-        with np.errstate(divide="ignore", invalid="ignore"):
+        crossed = np.sign(fx) * np.sign(fb) < 0.0
+        with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
             shrink = 1.0 - fx / fb
-        fa = np.where(crossed, fb, fa * np.where(shrink > 0.0, shrink, 0.5))
+        fa = np.where(crossed, fb, fa * np.where((shrink > 0.0) & np.isfinite(shrink), shrink, 0.5))
         a, b, fb = np.where(crossed, b, a), x, fx
         open_ = open_ & (fx != 0.0) & (np.minimum(moved, np.abs(b - a)) > tolerance)
     return best

@@ -60,6 +60,15 @@ def test_peaks_smooth_kinked_and_cut_off() -> None:
     assert height == pytest.approx([0.0, 0.0, 1.0, 1.6], abs=1e-5)
 
 
+def test_values_too_small_to_divide_by_do_no_harm() -> None:
+    shift = np.array([0.0, -1.1125369292536007e-308])
+    k = np.array([3.0, 0.5625])
+    root = bracketed_root(
+        lambda x: np.tanh(k * (x - shift)) + 0.1 * (x - shift) ** 3, np.full(2, -4.0), np.full(2, 5.0)
+    )
+    assert root == pytest.approx([0.0, 0.0], abs=1e-11)
+
+
 def test_a_root_that_is_found_stays_while_others_are_looked_for() -> None:
     k = np.array([1.375, 0.125])
     root = bracketed_root(lambda x: np.tanh(k * x) + 0.1 * x**3, np.full(2, -4.0), np.full(2, 5.0))
