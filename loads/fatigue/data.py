@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 import tomllib
 from dataclasses import dataclass
 from functools import lru_cache
@@ -28,7 +29,40 @@ class Endurance:
 
 @dataclass(frozen=True, slots=True)
 class PressFit:
-    k_f: float
+    """The notch factor of a press fit, fretting included: factor (S_ut/reference)^exponent, never below ``least``."""
+
+    factor: float
+    reference: float
+    exponent: float
+    least: float
+    source: str
+
+    def k_f(self, s_ut: float) -> float:
+        """Of a shaft of S_ut MPa at the edge of a plain hub that is pressed on it, in bending.
+
+        Source: DIN 743-2:2000 table 1, without its factor of size, which only lowers it below 40 mm.
+        """
+        return max(self.least, self.factor * math.pow(s_ut / self.reference, self.exponent))
+
+
+@dataclass(frozen=True, slots=True)
+class Keyseat:
+    """Stress concentration of an end-milled keyseat in a shaft: bending, torsion, root radius over diameter."""
+
+    k_t: float
+    k_ts: float
+    r_over_d: float
+    source: str
+
+
+@dataclass(frozen=True, slots=True)
+class FastenerData:
+    """Constants of a line's limit, the cycles where it has it, its slope, and its other end (cycles)."""
+
+    constants: tuple[float, ...]
+    cycles: float
+    slope: float
+    least: float
     source: str
 
 
@@ -57,7 +91,27 @@ def endurance(material: Material) -> Endurance:
 
 def press_fit() -> PressFit:
     row = _table()["press_fit"]
-    return PressFit(float(row["k_f"]), str(row["source"]))
+    factor, reference, exponent, least = (float(row[key]) for key in ("factor", "reference", "exponent", "least"))
+    return PressFit(factor, reference, exponent, least, str(row["source"]))
+
+
+def keyseat() -> Keyseat:
+    row = _table()["keyseat"]
+    return Keyseat(float(row["k_t"]), float(row["k_ts"]), float(row["r_over_d"]), str(row["source"]))
+
+
+def bolt_tension() -> FastenerData:
+    """Threads under alternating tension; the constants are those of σ_ASV, the other end the fewest cycles."""
+    row = _table()["bolt_tension"]
+    constants = tuple(float(row[key]) for key in ("factor", "numerator", "offset"))
+    return FastenerData(constants, float(row["cycles"]), float(row["slope"]), float(row["least"]), str(row["source"]))
+
+
+def bolt_shear() -> FastenerData:
+    """Bolts and dowels in shear; the constants are Δτ_C and Δτ's most over f_y/√3, the other end the cut-off."""
+    row = _table()["bolt_shear"]
+    constants = (float(row["category"]), float(row["most"]))
+    return FastenerData(constants, float(row["cycles"]), float(row["slope"]), float(row["cut_off"]), str(row["source"]))
 
 
 def chain_cycles() -> tuple[float, str]:

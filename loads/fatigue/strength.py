@@ -68,9 +68,25 @@ def neuber_length(s_ut: Floats | float) -> Floats:
     return np.asarray(np.maximum(root, 0.0) * math.sqrt(25.4))
 
 
+def torsion_neuber_length(s_ut: Floats | float) -> Floats:
+    """√a in √mm of steel in torsion, from S_ut in MPa; ends as :func:`neuber_length`. Source: Shigley equation 6-35b."""
+    s = np.clip(np.asarray(s_ut, dtype=float), 340.0, 1700.0) / 6.894757
+    root = 0.190 - 2.51e-3 * s + 1.35e-5 * s**2 - 2.67e-8 * s**3
+    return np.asarray(np.maximum(root, 0.0) * math.sqrt(25.4))
+
+
 def notch_factor(k_t: Floats | float, r: Floats | float, s_ut: Floats | float) -> Floats:
     """K_f = 1 + (K_t − 1)/(1 + √(a/r)), r the notch's radius in mm. Source: Shigley equation 6-33."""
-    return np.asarray(1.0 + (np.asarray(k_t) - 1.0) / (1.0 + neuber_length(s_ut) / np.sqrt(r)))
+    return _notched(k_t, r, neuber_length(s_ut))
+
+
+def torsion_notch_factor(k_ts: Floats | float, r: Floats | float, s_ut: Floats | float) -> Floats:
+    """K_fs of shear, as :func:`notch_factor` with the length of torsion. Source: Shigley equations 6-32 and 6-33."""
+    return _notched(k_ts, r, torsion_neuber_length(s_ut))
+
+
+def _notched(k_t: Floats | float, r: Floats | float, root: Floats) -> Floats:
+    return np.asarray(1.0 + (np.asarray(k_t) - 1.0) / (1.0 + root / np.sqrt(r)))
 
 
 @dataclass(frozen=True)
