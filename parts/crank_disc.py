@@ -14,10 +14,10 @@ from parts.places import block_holes, crank_pin, hub_bolts, on_disc, stop_middle
 from parts.segments import circle
 from parts.sizes import Sizes
 from parts.stack import Stack
+from parts.stop_layout import HEAD_BELOW
 
 KEY = "crank_disc"
 COLOR = (0.45, 0.52, 0.60)
-HEAD_BELOW = 0.5  # mm by which a sunk head lies below the face
 
 
 def outline(design: Design, sizes: Sizes) -> Plate:

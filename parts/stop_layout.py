@@ -8,6 +8,10 @@ from parts.design import Mechanism
 from parts.hardware import cap_screw
 from parts.sizes import StopSizes
 
+HEAD_BELOW = 0.5  # mm by which a sunk bolt head lies below its face; common practice, no source
+BOLT_REACH = (
+    0.9  # of a block's height that its bolts fill, so that none stands out of its top; common practice, no source
+)
 HOLES_AT = 0.25  # of the block's length and width, either side of its middle
 
 
@@ -35,3 +39,13 @@ def block_hole_offsets(stop: StopSizes) -> tuple[tuple[float, float, float], ...
     x, y = HOLES_AT * stop.length, HOLES_AT * stop.width
     sink = cap_screw(stop.bolt_thread).counterbore_diameter
     return ((-x, -y, stop.dowel_diameter), (x, y, stop.dowel_diameter), (-x, y, sink), (x, -y, sink))
+
+
+def floor_under_head(plate: float, thread: str) -> float:
+    """What is left of a plate (mm) under a sunk bolt head; 0 where the sink goes through it."""
+    return max(0.0, plate - cap_screw(thread).head_height - HEAD_BELOW)
+
+
+def bolt_engagement(stop: StopSizes) -> float:
+    """Length (mm) of thread that a block's bolts have in it."""
+    return BOLT_REACH * stop.height

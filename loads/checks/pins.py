@@ -133,13 +133,28 @@ def contact_checks(c: Context) -> list[Check]:
 
 
 def pin_checks(
-    c: Context, part: str, site: str, d: float, material: Material, shear: Floats, moment: Floats, held: bool
+    c: Context,
+    part: str,
+    site: str,
+    d: float,
+    material: Material,
+    shear: Floats,
+    moment: Floats,
+    held: bool,
+    what: str = "pin",
+    holder: str = "at one end",
 ) -> list[Check]:
-    """Shear, bending and both of one section of diameter ``d``; ``held`` at one end, else in double shear."""
+    """Shear, bending and both of one section of diameter ``d``; ``held`` at one end, else in double shear.
+
+    ``what`` is the name of the part in the rows, ``holder`` says where a held one is held.
+    """
     f_u, f_y = material.ultimate_strength(d), material.yield_strength(d)
     shear_capacity = float(pin_shear_capacity(d, f_u))
     if held:
-        bending_capacity, bending_method = float(first_yield_bending_capacity(d, f_y)), "W_el f_y, pin held at one end"
+        bending_capacity, bending_method = (
+            float(first_yield_bending_capacity(d, f_y)),
+            f"W_el f_y, {what} held {holder}",
+        )
     else:
         bending_capacity, bending_method = float(pin_bending_capacity(d, f_y)), "1.5 W_el f_y, M = F(b + 4c + 2a)/8"
     hard = section_words(material)
@@ -149,7 +164,7 @@ def pin_checks(
         c.worst_check(
             part,
             site,
-            "pin shear",
+            f"{what} shear",
             shear,
             shear_capacity,
             "N",
@@ -161,7 +176,7 @@ def pin_checks(
         c.worst_check(
             part,
             site,
-            "pin bending",
+            f"{what} bending",
             moment,
             bending_capacity,
             "N·mm",
@@ -176,7 +191,7 @@ def pin_checks(
             c.worst_check(
                 part,
                 site,
-                "pin bending, replaceable",
+                f"{what} bending, replaceable",
                 moment,
                 float(replaceable_pin_bending_capacity(d, f_y)),
                 "N·mm",
@@ -192,7 +207,7 @@ def pin_checks(
         c.worst_check(
             part,
             site,
-            "pin shear with bending",
+            f"{what} shear with bending",
             both,
             1.0,
             "1",

@@ -1,4 +1,4 @@
-"""The stop: a pressed post in line contact, or a bolted and dowelled block; shear, bending and contact of each."""
+"""The stop: a pressed post in line contact, or a bolted and dowelled block; what of each bears, bends, shears and holds."""
 
 from __future__ import annotations
 
@@ -7,17 +7,19 @@ from dataclasses import replace
 
 import numpy as np
 
-from loads.checks.context import BEAM, COMMON, EN_PINS, Context, length_of
-from loads.checks.disc import preload
+from loads.checks.bolts import punching_capacity, stripping_capacity, surface_pressure_limit
+from loads.checks.context import BEAM, COMMON, EN_PINS, Context, length_of, rule_note
+from loads.checks.disc import EN_BOLTS, head_pressure, preload
 from loads.checks.eyes import bearing
-from loads.checks.pins import first_yield_bending_capacity, pin_shear_capacity, shear_and_bending_factor
+from loads.checks.pins import first_yield_bending_capacity, pin_checks, pin_shear_capacity
 from loads.practice import source, value
 from loads.records import Check
 from parts.contact_lengths import stop_on_link
 from parts.design import Floats, Material
-from parts.hardening import is_case, section_words, state
+from parts.hardening import is_case, state
 from parts.hardware import cap_screw, property_class_source
-from parts.stop_layout import HOLES_AT
+from parts.sizes import StopSizes
+from parts.stop_layout import HOLES_AT, bolt_engagement, floor_under_head
 
 T_STUB = "EN 1993-1-8:2005 tables 6.2 and 3.4, from memory"
 CASE_OVER_SHEAR = 2.0  # case depth over that of the greatest shear; common practice, no source
@@ -192,63 +194,21 @@ def _blow(c: Context, push: Floats, speed: float) -> Check:
 
 
 def _post(c: Context, push: Floats) -> list[Check]:
-    stop, link, targets = c.sizes.stop, c.sizes.link, c.design.targets
+    stop, link = c.sizes.stop, c.sizes.link
     d, material = stop.diameter, stop.material
-    f_u, f_y = material.ultimate_strength(d), material.yield_strength(d)
-    shear_capacity, bending_capacity = float(pin_shear_capacity(d, f_u)), float(first_yield_bending_capacity(d, f_y))
-    moment = push * c.stack.pin_root_arm
-    both = 1.0 / shear_and_bending_factor(push / shear_capacity, moment / bending_capacity)
     modulus = contact_modulus(material, link.material)
-    contact = line_contact_yield_force(contact_depth(c), d / 2.0, modulus, _surface(c))
-    hard, surfaces = section_words(material), _surface_words(material, link.material)
     return [
-        c.worst_check(
-            "stop",
-            "root",
-            "post shear",
-            push,
-            shear_capacity,
-            "N",
-            targets.ultimate,
-            "0.6 A f_u, one shear plane" + hard,
-            EN_PINS,
+        *pin_checks(
+            c, "stop", "root", d, material, push, push * c.stack.pin_root_arm, True, what="post", holder="in the disc"
         ),
         c.worst_check(
-            "stop",
-            "root",
-            "post bending",
-            moment,
-            bending_capacity,
-            "N·mm",
-            targets.yield_,
-            "W_el f_y, post held in the disc" + hard,
-            BEAM,
-        ),
-        c.worst_check(
-            "stop",
-            "root",
-            "post shear with bending",
-            both,
-            1.0,
-            "1",
-            targets.yield_,
-            "(M/M_R)² + (F/F_R)² = 1, all loads growing together",
-            EN_PINS,
-        ),
-        c.worst_check(
-            "stop",
-            "contact",
-            "contact",
-            push,
-            contact,
-            "N",
-            targets.yield_,
-            "line contact, first yield at p0 = 1.67 f_y" + surfaces,
-            HERTZ,
+            "stop", "contact", "contact", push,
+            line_contact_yield_force(contact_depth(c), d / 2.0, modulus, _surface(c)), "N", c.design.targets.yield_,
+            "line contact, first yield at p0 = 1.67 f_y" + _surface_words(material, link.material), HERTZ,
             "" if not is_case(link.material) or link.material.case_depth is not None else NO_DEPTH,
         ),
         *_cases(c, push, modulus),
-    ]
+    ]  # fmt: skip
 
 
 def _surface_words(stop: Material, link: Material) -> str:
@@ -361,5 +321,46 @@ def _block(c: Context, push: Floats) -> list[Check]:
             "crank_disc", "stop_dowel_hole_1", "bearing of the dowels", push / 2.0,
             bearing(disc.thickness, stop.dowel_diameter, min(f_y, disc.material.yield_strength(disc.thickness))), "N",
             targets.yield_, "two dowels in the disc, 1.5 t d f_y each", EN_PINS,
+        ),
+        *_seat_and_thread(c, lift_off),
+    ]  # fmt: skip
+
+
+def stripping(stop: StopSizes, f_u: float) -> tuple[float, str]:
+    """Pull (N) at which the thread of one of a block's bolts strips, and whose it is; ``f_u`` (MPa) is the block's."""
+    wall = (0.5 - HOLES_AT) * min(stop.length, stop.width)
+    return stripping_capacity(cap_screw(stop.bolt_thread), bolt_engagement(stop), wall, f_u)
+
+
+def _seat_and_thread(c: Context, lift_off: Floats) -> list[Check]:
+    """What holds the block's bolts at their ends: the disc under the heads, the thread in the block."""
+    stop, disc, bolt = c.sizes.stop, c.sizes.disc, cap_screw(c.sizes.stop.bolt_thread)
+    floor, pull = floor_under_head(disc.thickness, stop.bolt_thread), preload(bolt) + lift_off
+    strips, whose = stripping(stop, stop.material.ultimate_strength(stop.width))
+    bearable = surface_pressure_limit(disc.material, disc.thickness)
+    share = bearable / disc.material.ultimate_strength(disc.thickness)
+    engaged = f"C_1 C_2,3 0.6 R_m A_S over {bolt_engagement(stop):.3g} mm of thread, {whose}"
+    return [
+        c.worst_check(
+            "crank_disc", "stop_bolt_sink", "pressure under the bolt heads", head_pressure(bolt, pull),
+            bearable, "MPa", 1.0,
+            f"preload 0.7 f_ub A_s and pull of the bolt nearer the link on the ring under the head, p_G = {share:.2g} R_m",
+            f"{source('bolt_seat')}; {source('bolts')}", rule_note(disc.material),
+        ),
+        c.worst_check(
+            "crank_disc", "stop_bolt_sink", "punching under the bolt heads", lift_off,
+            punching_capacity(bolt.head_diameter, floor, disc.material.ultimate_strength(disc.thickness)), "N",
+            c.design.targets.ultimate,
+            f"0.6 π d_m t_p f_u, t_p = {floor:.3g} mm under the heads; the preload is clamped there and does not shear it",
+            EN_BOLTS, rule_note(disc.material),
+        ),
+        c.worst_check(
+            "stop", "root", "thread stripping", pull, strips, "N", 1.0,
+            f"preload 0.7 f_ub A_s and pull of the bolt nearer the link, against {engaged}",
+            f"{source('thread')}; {source('bolts')}",
+        ),
+        c.shape_check(
+            "stop", "root", "bolt breaks before its thread strips", value("bolts", "ultimate") * bolt.stress_area,
+            strips, "N", f"f_ub A_s against {engaged}", f"{source('thread')}; {source('bolts')}",
         ),
     ]  # fmt: skip

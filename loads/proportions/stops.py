@@ -13,6 +13,7 @@ from loads.checks.stop import (
     contact_modulus,
     least_case_depth,
     line_contact_yield_force,
+    stripping,
     t_stub_capacity,
 )
 from loads.practice import value
@@ -116,13 +117,14 @@ class StopSide(Basis):
                 for_holes,
             )  # fmt: skip
             length = round_up(length, self.step)
-            clear = self.clears_bore(
-                StopSizes("block", 0.0, length, width, height, dowel, bolt.thread, bolt.clearance_hole, 0.0, material),
-                link,
-                bore,
+            block = StopSizes(
+                "block", 0.0, length, width, height, dowel, bolt.thread, bolt.clearance_hole, 0.0, material
             )
+            clear = self.clears_bore(block, link, bore)
             pried, _ = t_stub_capacity(length, width, height, f_y, bolt.stress_area, f_ub)
-            held = pried >= lift * self.ultimate * (1.0 - 1e-9)
+            strips, _ = stripping(block, material.ultimate_strength(width))
+            keeps = strips >= max(preload(bolt) + lift, f_ub * bolt.stress_area)
+            held = keeps and pried >= lift * self.ultimate * (1.0 - 1e-9)
             enough = width >= for_holes and clear
             if enough and held and length <= max(room, for_holes):
                 break
