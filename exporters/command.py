@@ -1,7 +1,7 @@
 """The command line. Messages go to standard error, results to standard output.
 
 Exit status: 0 done and every target holds; 1 done, but a target falls short; 2 the input cannot be used; 3 something
-outside the design failed; 130 stopped by the person.
+outside the design failed; 130 interrupted by the person.
 """
 
 from __future__ import annotations
@@ -13,12 +13,11 @@ from typing import TYPE_CHECKING, Annotated
 
 import typer
 
+from exporters.entry import INTERRUPTED, STOPPED
 from exporters.terminal import (
     FAILED,
     HOLDS,
-    INTERRUPTED,
     REFUSED,
-    STOPPED,
     Shown,
     console,
     emit,
@@ -39,7 +38,7 @@ app = typer.Typer(
         "A drawn spring can maim without warning: read the cautions that check prints."
     ),
     epilog="Exit status: 0 every target holds; 1 a target falls short; 2 the design cannot be used; 3 disk, permissions "
-    "or a missing system library; 130 stopped.",
+    "or a missing system library; 130 interrupted.",
     add_completion=False,
     no_args_is_help=True,
     pretty_exceptions_enable=False,

@@ -13,12 +13,11 @@ import typer
 from rich.console import Console
 from rich.progress import BarColumn, Progress, TextColumn
 
+from exporters.entry import INTERRUPTED, STOPPED
 from exporters.failure import ToolFailure
 from parts.problems import DesignRefused
 
-HOLDS, FALLS_SHORT, REFUSED, FAILED, STOPPED = 0, 1, 2, 3, 130
-
-INTERRUPTED = "drawcrank: stopped; nothing was changed"
+HOLDS, FALLS_SHORT, REFUSED, FAILED = 0, 1, 2, 3
 
 Report = Callable[[str, int, int], None]
 
@@ -26,6 +25,14 @@ Report = Callable[[str, int, int], None]
 def message(text: str) -> None:
     """A line for the person, on standard error."""
     typer.echo(text, err=True)
+
+
+def width_of_messages() -> int:
+    """Columns of the window that messages go to, or 100 where they do not go to one."""
+    try:
+        return max(40, os.get_terminal_size(sys.stderr.fileno()).columns)
+    except (OSError, ValueError, AttributeError):  # not a window, closed, or no file at all
+        return 100
 
 
 def console() -> Console:
@@ -113,7 +120,7 @@ def guarded(app: typer.Typer) -> None:
     try:
         app()
     except DesignRefused as refused:
-        message(str(refused))
+        message(refused.wrapped(width_of_messages()))
         count = len(refused.problems)
         message(f"{count} problem{'s' if count != 1 else ''}; nothing was written")
         sys.exit(REFUSED)

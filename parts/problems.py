@@ -5,12 +5,15 @@ from __future__ import annotations
 import difflib
 import json
 import re
+import textwrap
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 
 _BARE_KEY = re.compile(r"[A-Za-z0-9_-]+")
 _LONGEST_SHOWN = 60
+_BEFORE_A_UNIT = re.compile(r"(?<=[0-9]) (?=[A-Za-z])")
+_GLUE = "\0"  # no message has one: what is not printable is shown escaped
 
 
 @dataclass(frozen=True, slots=True)
@@ -31,13 +34,17 @@ class Problem:
     file: str = ""
 
     @property
-    def sentence(self) -> str:
-        """Key and trouble in one line, without the place."""
+    def trouble(self) -> str:
+        """What is wrong and what would be right, in one line, without place and key."""
         parts = [self.text] if self.text else []
         parts += [f"found {self.found}"] if self.found else []
         parts += [f"accepted: {self.accepted}"] if self.accepted else []
-        said = "; ".join(parts)
-        return f"{self.key}: {said}" if self.key else said
+        return "; ".join(parts)
+
+    @property
+    def sentence(self) -> str:
+        """Key and trouble in one line, without the place."""
+        return f"{self.key}: {self.trouble}" if self.key else self.trouble
 
 
 class DesignRefused(Exception):
@@ -49,13 +56,17 @@ class DesignRefused(Exception):
         super().__init__(self.file, self.problems)
 
     def __str__(self) -> str:
-        return "\n".join(self._line(problem) for problem in self.problems)
+        return "\n".join(f"{self._place(problem)} {problem.trouble}" for problem in self.problems)
 
-    def _line(self, problem: Problem) -> str:
-        place = problem.file or self.file
-        if problem.line is not None:
-            place += f":{problem.line}"
-        return f"{place}: {problem.sentence}"
+    def wrapped(self, width: int) -> str:
+        """A block a problem: its first line begins with file, line and key unbroken, the others are set in."""
+        return "\n".join(_block(self._place(problem), problem.trouble, width) for problem in self.problems)
+
+    def _place(self, problem: Problem) -> str:
+        """``FILE:LINE: KEY:``, as editors and grep take it."""
+        line = "" if problem.line is None else f":{problem.line}"
+        key = f" {problem.key}:" if problem.key else ""
+        return f"{problem.file or self.file}{line}:{key}"
 
 
 class Refused(ValueError):
@@ -64,6 +75,19 @@ class Refused(ValueError):
     def __init__(self, found: str, accepted: str, text: str = "") -> None:
         self.found, self.accepted, self.text = found, accepted, text
         super().__init__(f"found {found}; accepted: {accepted}")
+
+
+def _block(place: str, trouble: str, width: int) -> str:
+    glued = _BEFORE_A_UNIT.sub(_GLUE, trouble)  # no line ends between a number and its unit
+    lines = textwrap.wrap(
+        glued,
+        width,
+        initial_indent=f"{place} ",
+        subsequent_indent="    ",
+        break_long_words=False,
+        break_on_hyphens=False,
+    )
+    return "\n".join(lines or [place]).replace(_GLUE, " ")
 
 
 def in_order(problems: Iterable[Problem]) -> tuple[Problem, ...]:

@@ -10,11 +10,11 @@ import difflib
 import math
 import re
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import lru_cache
 from typing import TYPE_CHECKING, Any, Literal
 
-from parts.problems import Refused, written
+from parts.problems import Problem, Refused, written
 
 if TYPE_CHECKING:
     from pint import UnitRegistry
@@ -116,6 +116,7 @@ _QUANTITY = re.compile(rf"({_NUMBER}) ?([^\s0-9.,+\-][^\s]*)")
 _PLAIN = re.compile(_NUMBER)
 _COMMA = re.compile(r"([+-]?[0-9]+),([0-9]+) ?([^\s0-9,.]\S*)?")
 _FRACTION = re.compile(r"(?:([0-9]+)[ -])?([0-9]+)/([0-9]+) ?([^\s0-9].*)?")
+_LENGTH_SAID = re.compile(rf'(?<![\w."])({_NUMBER}) mm(?![\w"/²³·^])')
 _SPACED = re.compile(r"([+-]?[0-9]{1,3}(?: [0-9]{3})+(?:\.[0-9]*)?) ?([^\s0-9]\S*)?")
 
 
@@ -160,6 +161,20 @@ def show(value: float | str, kind: str, units: Units) -> str:
     if unit == "N" and abs(value) >= 1e4:
         unit = "kN"
     return f"{_digits(value / factor(kind, unit))} {unit}"
+
+
+def with_inches(text: str) -> str:
+    """A message with its lengths in inches as well; what stands in quotes is the file's own wording and is left alone.
+
+    >>> with_inches('found 25.4 mm')
+    'found 25.4 mm (1 in)'
+    """
+    return _LENGTH_SAID.sub(lambda said: f"{said[0]} ({show(float(said[1]), 'length', 'us')})", text)
+
+
+def problem_with_inches(problem: Problem) -> Problem:
+    """What was found and what is accepted with their lengths in inches as well, for a design in US units."""
+    return replace(problem, found=with_inches(problem.found), accepted=with_inches(problem.accepted))
 
 
 @lru_cache(maxsize=256)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from math import acos, atan2, ceil, cos, dist, hypot, pi, sin, tau
 
 import numpy as np
@@ -45,16 +46,17 @@ def point_at(segment: Segment, fraction: float) -> Point:
     return (segment.center[0] + r * cos(angle), segment.center[1] + r * sin(angle))
 
 
-def covers(arc: Arc, angle: float | Floats, slack: float = 0.0) -> NDArray[np.bool_]:
-    """Whether directions (rad) from the centre fall on the arc, give or take ``slack`` mm along it."""
-    turn = sweep(arc)
-    if turn < 0:
-        first, turn = start_angle(arc) + turn, -turn
-    else:
-        first = start_angle(arc)
+def _stretch(arc: Arc) -> tuple[float, float]:
+    """Where an arc begins (rad) and how far it goes on from there counter-clockwise, whichever way it runs."""
+    first, turn = start_angle(arc), sweep(arc)
+    return (first + turn, -turn) if turn < 0 else (first, turn)
+
+
+def covers(arc: Arc, angle: float, slack: float = 0.0) -> bool:
+    """Whether a direction (rad) from the centre falls on the arc, give or take ``slack`` mm along it."""
+    first, turn = _stretch(arc)
     loose = slack / radius(arc)
-    past = (np.asarray(angle, dtype=np.float64) - first + loose) % tau
-    return np.asarray(past <= turn + 2 * loose)
+    return (angle - first + loose) % tau <= turn + 2 * loose
 
 
 def distance(segment: Segment, point: Point) -> float:
@@ -86,29 +88,72 @@ def steps(arc: Arc, tolerance: float, outside: bool = False) -> int:
     return max(1, ceil(abs(sweep(arc)) / max(2 * acos(sagitta), 1e-6)), ceil(abs(sweep(arc)) / (pi / 2)))
 
 
-def ray_hits(segment: Segment, origin: Point, directions: Floats) -> Floats:
-    """Distance from ``origin`` along each direction (rad) to the segment; infinite where it is missed."""
-    dx, dy = np.cos(directions), np.sin(directions)
-    miss = np.full(np.shape(dx), np.inf)
+def ray_hits(segments: Sequence[Segment], origin: Point, directions: Floats) -> Floats:
+    """Distance from ``origin`` along each direction (rad, any shape) to the nearest segment; infinite where all are missed.
+
+    All segments of one sort are met at once, segments by rays. Whole circles need no look at where on them a ray falls.
+    """
+    lines, rounds, arcs = _sorted_out(segments)
+    flat = np.ravel(directions)
+    dx, dy = np.cos(flat), np.sin(flat)
+    best = np.full(flat.shape, np.inf)
     with np.errstate(divide="ignore", invalid="ignore"):
+        if lines:
+            best = np.minimum(best, _line_hits(lines, origin, dx, dy).min(axis=0))
+        if rounds:
+            near, far = _circle_hits(rounds, origin, dx, dy)
+            best = np.minimum(best, np.where(near > TOUCH, near, np.where(far > TOUCH, far, np.inf)).min(axis=0))
+        if arcs:
+            for reach in _circle_hits(arcs, origin, dx, dy):
+                on = (reach > TOUCH) & _on_arcs(arcs, origin, reach * dx, reach * dy)
+                best = np.minimum(best, np.where(on, reach, np.inf).min(axis=0))
+    return best.reshape(np.shape(directions))
+
+
+def _sorted_out(segments: Sequence[Segment]) -> tuple[list[Line], list[Arc], list[Arc]]:
+    """Lines, whole circles and other arcs."""
+    lines: list[Line] = []
+    rounds: list[Arc] = []
+    arcs: list[Arc] = []
+    for segment in segments:
         if isinstance(segment, Line):
-            px, py = segment.start[0] - origin[0], segment.start[1] - origin[1]
-            ex, ey = segment.end[0] - segment.start[0], segment.end[1] - segment.start[1]
-            span = hypot(ex, ey)
-            across = dx * ey - dy * ex
-            s, u = (px * ey - py * ex) / across, (px * dy - py * dx) / across
-            slack = TOUCH / span if span else 0.0
-            hit = (np.abs(across) > 1e-14 * span) & (s > TOUCH) & (u >= -slack) & (u <= 1 + slack)
-            return np.where(hit, s, miss)
-        ox, oy = origin[0] - segment.center[0], origin[1] - segment.center[1]
-        b, c = dx * ox + dy * oy, ox * ox + oy * oy - radius(segment) ** 2
-        root = np.sqrt(b * b - c)
-        best = miss
-        for s in (-b - root, -b + root):
-            angle = np.arctan2(oy + s * dy, ox + s * dx)
-            hit = np.isfinite(s) & (s > TOUCH) & covers(segment, np.nan_to_num(angle), TOUCH)
-            best = np.where(hit, np.minimum(best, s), best)
-    return best
+            lines.append(segment)
+        else:
+            (rounds if abs(sweep(segment)) == tau else arcs).append(segment)
+    return lines, rounds, arcs
+
+
+def _columns(rows: list[tuple[float, ...]]) -> Floats:
+    """One column (segments, 1) for each place in the rows, to go with rays."""
+    return np.array(rows, dtype=np.float64).T[:, :, None]
+
+
+def _line_hits(lines: Sequence[Line], origin: Point, dx: Floats, dy: Floats) -> Floats:
+    """How far along each ray each line is met, (lines, rays); infinite where it is missed."""
+    x0, y0, x1, y1 = _columns([(*line.start, *line.end) for line in lines])
+    px, py, ex, ey = x0 - origin[0], y0 - origin[1], x1 - x0, y1 - y0
+    span = np.hypot(ex, ey)
+    slack = TOUCH / np.where(span > 0.0, span, np.inf)
+    across = dx * ey - dy * ex
+    s, u = (px * ey - py * ex) / across, (px * dy - py * dx) / across
+    hit = (np.abs(across) > 1e-14 * span) & (s > TOUCH) & (u >= -slack) & (u <= 1 + slack)
+    return np.where(hit, s, np.inf)
+
+
+def _circle_hits(arcs: Sequence[Arc], origin: Point, dx: Floats, dy: Floats) -> tuple[Floats, Floats]:
+    """How far along each ray each arc's whole circle is met, first and last, (arcs, rays); NaN where it is missed."""
+    x, y, r = _columns([(*arc.center, radius(arc)) for arc in arcs])
+    ox, oy = origin[0] - x, origin[1] - y
+    b, c = dx * ox + dy * oy, ox * ox + oy * oy - r**2
+    root = np.sqrt(b * b - c)
+    return -b - root, -b + root
+
+
+def _on_arcs(arcs: Sequence[Arc], origin: Point, x: Floats, y: Floats) -> NDArray[np.bool_]:
+    """Whether points (arcs, rays), given from ``origin``, lie on their arc, of whose circle they are."""
+    cx, cy, first, turn, loose = _columns([(*arc.center, *_stretch(arc), TOUCH / radius(arc)) for arc in arcs])
+    angle = np.arctan2(origin[1] - cy + y, origin[0] - cx + x)
+    return np.asarray((angle - first + loose) % tau <= turn + 2 * loose)
 
 
 def crossings(one: Segment, other: Segment) -> list[Point]:
@@ -177,6 +222,6 @@ def _arc_arc(a: Arc, b: Arc) -> list[Point]:
         ]
 
     def on(arc: Arc, at: Point) -> bool:
-        return bool(covers(arc, atan2(at[1] - arc.center[1], at[0] - arc.center[0]), TOUCH))
+        return covers(arc, atan2(at[1] - arc.center[1], at[0] - arc.center[0]), TOUCH)
 
     return [at for at in tests if on(a, at) and on(b, at)]

@@ -5,9 +5,10 @@ Nothing here needs the solid modeller. Lengths in mm, areas mm², volumes mm³, 
 
 from __future__ import annotations
 
+from collections import Counter
 from dataclasses import dataclass
 from itertools import pairwise
-from math import acos, atan2, cos, dist, inf, pi, sin
+from math import acos, atan2, cos, dist, inf, pi, sin, tau
 from typing import NamedTuple
 
 import numpy as np
@@ -127,8 +128,15 @@ def _round(feature: Hole | Counterbore) -> Moments:
 
 
 def signed_area(outline: Outline) -> float:
-    """Area inside a closed outline, positive when it runs counter-clockwise."""
-    return moments(outline).area
+    """Area inside a closed outline, positive when it runs counter-clockwise: the chords' polygon and each arc's segment."""
+    twice = 0.0
+    for segment in outline:
+        (x0, y0), (x1, y1) = segment.start, segment.end
+        twice += x0 * y1 - x1 * y0
+        if isinstance(segment, Arc):
+            turn = sweep(segment)
+            twice += radius(segment) ** 2 * (turn - sin(turn))
+    return twice / 2
 
 
 def area_beyond(outline: Outline, x: float) -> float:
@@ -260,10 +268,7 @@ def edge_distance(
     edges: list[Segment] = list(plate.outline)
     if holes:
         edges += [s for h in plate.holes if h.name not in skip for s in circle(h.center, h.diameter, h.name)]
-    best = np.full(np.shape(directions), np.inf)
-    for segment in edges:
-        best = np.minimum(best, ray_hits(segment, origin, np.asarray(directions, dtype=np.float64)))
-    return best
+    return ray_hits(edges, origin, np.asarray(directions, dtype=np.float64))
 
 
 def polygon(shape: Plate | Outline, tolerance: float, containing: bool = False) -> Floats:
@@ -304,17 +309,19 @@ def mirrored(outline: Outline) -> Outline:
 
 
 def is_inside(outline: Outline, point: Point) -> bool:
-    """Whether a point lies inside a closed outline: the outline turns once round it."""
-    first = outline[0]
-    if len(outline) == 1 and isinstance(first, Arc):
-        return dist(point, first.center) < radius(first)
+    """Whether a point lies inside a closed outline: the outline turns once round it.
+
+    Seen from the point an arc turns as its chord does, and once more where the point lies between the two.
+    """
     turned = 0.0
     for segment in outline:
-        n = 1 if isinstance(segment, Line) else max(4, 4 * steps(segment, radius(segment) / 10))
-        at = [point_at(segment, i / n) for i in range(n + 1)]
-        for (x0, y0), (x1, y1) in pairwise(at):
-            ax, ay, bx, by = x0 - point[0], y0 - point[1], x1 - point[0], y1 - point[1]
-            turned += atan2(ax * by - ay * bx, ax * bx + ay * by)
+        (x0, y0), (x1, y1) = segment.start, segment.end
+        ax, ay, bx, by = x0 - point[0], y0 - point[1], x1 - point[0], y1 - point[1]
+        across = ax * by - ay * bx + 0.0  # a negative zero would count as the other side of the chord
+        turned += atan2(across, ax * bx + ay * by)
+        if isinstance(segment, Arc) and dist(point, segment.center) < radius(segment):
+            between = abs(sweep(segment)) == tau or (across < 0.0) == segment.ccw
+            turned += (tau if segment.ccw else -tau) * between
     return abs(turned) > pi
 
 
@@ -332,8 +339,7 @@ def least_web(plate: Plate) -> tuple[Web, ...]:
             opposite = isinstance(one, Counterbore) and isinstance(other, Counterbore) and one.face != other.face
             if not nested and not opposite:
                 webs.append(Web(apart - (one.diameter + other.diameter) / 2, one.name, other.name))
-        nearest = min(plate.outline, key=lambda s: distance(s, one.center))
-        gap = distance(nearest, one.center)
+        gap, nearest = min(((distance(s, one.center), s) for s in plate.outline), key=lambda found: found[0])
         gap = gap if is_inside(plate.outline, one.center) else -gap
         webs.append(Web(gap - one.diameter / 2, one.name, nearest.name))
     return tuple(sorted(webs, key=lambda w: (w.thickness, w.one, w.other)))
@@ -368,14 +374,14 @@ def sound(plate: Plate) -> list[str]:
         for web in least_web(plate)
         if web.thickness <= 0
     ]
-    names = [f.name for f in (*outline, *plate.holes, *plate.counterbores, *plate.slots)]
-    faults += [f"the name {name} is used twice" for name in sorted({n for n in names if names.count(n) > 1})]
+    names = Counter(f.name for f in (*outline, *plate.holes, *plate.counterbores, *plate.slots))
+    faults += [f"the name {name} is used twice" for name in sorted(n for n, count in names.items() if count > 1)]
     faults += [
         f"{bore.name} is {bore.depth:.4g} mm deep in a plate of {plate.thickness:.4g} mm"
         for bore in plate.counterbores
         if not 0 < bore.depth < plate.thickness
     ]
-    reach = max((x for x, _ in polygon(outline, 0.01)), default=0.0)
+    reach = max(x for x, _ in polygon(outline, 0.01)) if plate.slots else 0.0
     faults += [
         f"{slot.name} does not cut the plate, or cuts it off"
         for slot in plate.slots

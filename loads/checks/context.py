@@ -69,16 +69,15 @@ class Context:
     ) -> Check:
         """The check at the crank angle where capacity over demand is least; both over crank angle (n)."""
         # a part that has no material somewhere has no capacity there, and a load on nothing is without bound
-        given = np.broadcast_to(np.asarray(capacity, dtype=float), demand.shape)
-        capacities = np.where(np.isnan(given), 0.0, np.maximum(given, 0.0))
+        capacities = np.fmax(np.asarray(capacity, dtype=float), 0.0)  # of NaN and 0 the 0
         demand = np.where(np.isfinite(demand), demand, UNBOUNDED)
-        use = np.where(demand > 0.0, demand / np.maximum(capacities, 1e-100), 0.0)
-        i = int(np.argmax(use))
+        i = int(np.maximum(demand / np.maximum(capacities, 1e-100), 0.0).argmax())
         loaded = bool(demand[i] > 0.0)
+        there = float(capacities.flat[i if capacities.size > 1 else 0])
         return Check(
             part=part, site=site, check=check, case=self.past.case_at(i) if loaded else "",
             crank_angle=float(self.past.state.crank_angle[i]) if loaded else None,
-            demand=float(demand[i]), capacity=float(capacities[i]), unit=unit, target=target,
+            demand=float(demand[i]), capacity=there, unit=unit, target=target,
             method=method, source=source, note=note,
         )  # fmt: skip
 

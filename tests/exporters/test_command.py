@@ -16,6 +16,8 @@ from exporters.command import main
 from exporters.starters import starters
 from tests.starters import changed, text_of
 
+RUN = "from exporters.entry import main; main()"
+
 
 def run(monkeypatch: pytest.MonkeyPatch, *words: str) -> int:
     monkeypatch.setattr(sys, "argv", ["drawcrank", *words])
@@ -92,6 +94,37 @@ def test_a_design_that_cannot_be_used(tmp_path: Path, monkeypatch: pytest.Monkey
     assert "absent.toml" in capsys.readouterr().err
 
 
+def test_refusals_are_broken_at_100_columns_where_no_window_takes_them(tmp_path: Path) -> None:
+    path = tmp_path / "d.toml"
+    path.write_text(changed("impact-rig", link__material='"mithril"', disc__colour='"red"'), encoding="utf-8")
+    done = subprocess.run([sys.executable, "-c", RUN, "check", str(path)], capture_output=True, text=True, check=False)
+    *blocks, last = done.stderr.splitlines()
+    assert last == "2 problems; nothing was written"
+    firsts = [line for line in blocks if not line.startswith("    ")]
+    assert {line.split(": ")[1] for line in firsts} == {"link.material", "disc.colour"}
+    assert all(line.startswith(f"{path}:") for line in firsts)
+    rest = [line for line in blocks if line.startswith("    ")]
+    assert 60 < max(map(len, rest)) <= 100
+
+
+@pytest.mark.skipif(os.name != "posix", reason="needs a pseudo-terminal")
+def test_refusals_are_broken_at_the_window_s_width(tmp_path: Path) -> None:
+    import fcntl
+    import struct
+    import termios
+
+    path = tmp_path / "d.toml"
+    path.write_text(changed("impact-rig", link__material='"mithril"'), encoding="utf-8")
+    ours, theirs = os.openpty()
+    fcntl.ioctl(theirs, termios.TIOCSWINSZ, struct.pack("HHHH", 24, 60, 0, 0))
+    subprocess.run([sys.executable, "-c", RUN, "check", str(path)], stdout=subprocess.PIPE, stderr=theirs, check=False)
+    os.close(theirs)
+    said = os.read(ours, 65536).decode().splitlines()
+    os.close(ours)
+    rest = [line for line in said if line.startswith("    ")]
+    assert 40 < max(map(len, rest)) <= 60
+
+
 def test_a_place_that_cannot_be_written(tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: Said) -> None:
     path = tmp_path / "d.toml"
     path.write_text(text_of("seed-thrower"), encoding="utf-8")
@@ -132,9 +165,6 @@ def test_messages_go_to_standard_error_and_results_to_standard_output(tmp_path: 
     assert done.stderr
 
 
-RUN = "from exporters.command import main; main()"
-
-
 def test_whoever_reads_only_the_head_gets_the_verdict_s_status(tmp_path: Path) -> None:
     path = tmp_path / "d.toml"
     path.write_text(text_of("seed-thrower"), encoding="utf-8")
@@ -172,9 +202,56 @@ def test_ctrl_c_stops_a_build_and_leaves_nothing(wait: float, tmp_path: Path) ->
     if process.returncode in (0, 1):  # it was done before the signal came
         assert (tmp_path / "out" / "manifest.json").exists()
         return
-    assert process.returncode in (130, -signal.SIGINT)  # the second where it came before the command began
+    assert process.returncode == 130
+    assert said == "drawcrank: interrupted; nothing was changed\n"
     assert "cannot be loaded" not in said
     assert sorted(p.name for p in tmp_path.iterdir()) == ["d.toml"]
+
+
+INTERRUPTED_AT = """
+import os, signal, sys
+
+class Interruption:
+    def find_spec(self, name, path=None, target=None):
+        if name == "{module}":
+            os.kill(os.getpid(), signal.SIGINT)
+
+sys.meta_path.insert(0, Interruption())
+from exporters.entry import main
+main()
+"""
+
+
+@pytest.mark.skipif(os.name != "posix", reason="sends a posix signal")
+@pytest.mark.parametrize(
+    "module", ["exporters.command", "typer", "rich.console", "numpy", "numpy.linalg", "pydantic", "pint"]
+)
+def test_ctrl_c_while_modules_are_loaded_is_one_line(module: str, tmp_path: Path) -> None:
+    path = tmp_path / "d.toml"
+    path.write_text(text_of("seed-thrower"), encoding="utf-8")
+    done = subprocess.run(
+        [sys.executable, "-c", INTERRUPTED_AT.format(module=module), "check", str(path)],
+        capture_output=True, text=True, check=False,
+    )  # fmt: skip
+    assert done.stderr == "drawcrank: interrupted; nothing was changed\n"
+    assert done.returncode == 130
+    assert done.stdout == ""
+
+
+@pytest.mark.skipif(os.name != "posix", reason="sends a posix signal")
+def test_an_interruption_that_the_shell_ignores_stays_ignored(tmp_path: Path) -> None:
+    """As for a command that a script has put into the background."""
+    code = "import signal; signal.signal(signal.SIGINT, signal.SIG_IGN)\n" + INTERRUPTED_AT.format(module="typer")
+    done = subprocess.run([sys.executable, "-c", code, "start"], capture_output=True, text=True, check=False)
+    assert done.returncode == 0
+    assert "seed-thrower" in done.stdout
+
+
+def test_the_command_begins_with_nothing_heavy() -> None:
+    code = "import sys; before = set(sys.modules); import exporters.entry; print(*(set(sys.modules) - before))"
+    done = subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=True)
+    ours = {name for name in done.stdout.split() if name.partition(".")[0] not in sys.stdlib_module_names}
+    assert ours == {"exporters", "exporters.entry"}
 
 
 def test_a_fault_of_the_tool_is_not_a_verdict(tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: Said) -> None:

@@ -5,8 +5,20 @@ from __future__ import annotations
 from pathlib import Path
 
 from parts.catalogue import Catalogue
-from parts.design import Material
+from parts.design import Design, Material, Sheave
+from parts.far_ends.chain import Chain
 from parts.read import Reading, read_design
+
+
+def chain_of(design: Design) -> Chain:
+    """The chain of a design that has one."""
+    assert isinstance(design.far_end, Chain)
+    return design.far_end
+
+
+def sheave_of(design: Design) -> Sheave:
+    assert design.sheave is not None
+    return design.sheave
 
 
 def _roller(designation: str, strands: int, width: float, strength: float) -> dict[str, object]:

@@ -7,10 +7,10 @@ from typing import Literal, Protocol
 import numpy as np
 
 from loads.cycle import events
-from loads.linkage import Linkage, chain_line, linkage_of, to_machine
+from loads.far_ends.registry import linkage_of
+from loads.linkage import Linkage, chain_line, to_machine
 from parts.clash import Sweep
 from parts.design import (
-    Chain,
     ChainEndWish,
     Design,
     DiscWish,
@@ -26,6 +26,7 @@ from parts.design import (
     StopWish,
     Targets,
 )
+from parts.far_ends.chain import Chain
 from parts.sizes import (
     ChainEndSizes,
     ChainPinSizes,
@@ -52,10 +53,14 @@ Style = Literal["post", "block"]
 STEEL = Material("S355J2", "structural steel", 210_000, 0.3, 7850, ((40, 345),), ((100, 470),), "a list", True)
 
 LEAF = Chain(
-    "LH1644", "leaf", 1, 25.4, 37.0, 24.0, 9.5, 169_000, 4.1, 4.0, (4, 4), None, 0.0, "a list", True
+    designation="LH1644", kind="leaf", strands=1, pitch=25.4, width_over_pins=37.0, plate_height=24.0, own_pin=9.5,
+    min_tensile_strength=169_000, tongue_width=4.1, plate_thickness=4.0, lacing=(4, 4), mass_per_metre=None, slack=0.0,
+    source="a list", confirmed=True,
 )  # fmt: skip
 ROLLER = Chain(
-    "08B-1", "roller", 1, 12.7, 17.0, 11.8, 4.45, 17_800, 7.5, 1.6, (2, 2), 0.7, 2.0, "a list", True
+    designation="08B-1", kind="roller", strands=1, pitch=12.7, width_over_pins=17.0, plate_height=11.8, own_pin=4.45,
+    min_tensile_strength=17_800, tongue_width=7.5, plate_thickness=1.6, lacing=(2, 2), mass_per_metre=0.7, slack=2.0,
+    source="a list", confirmed=True,
 )  # fmt: skip
 
 
@@ -105,7 +110,7 @@ def stack_of(design: Design, sizes: Sizes) -> Stack:
     return make_stack(
         design.mechanism.stack,
         design.targets.load_share,
-        design.chain,
+        design.far_end,
         sizes.chain_end.width,
         sizes.plate_gap,
         sizes.link.thickness,

@@ -9,6 +9,7 @@ from hypothesis import strategies as st
 
 from parts.assembly import matrix, placed, pose
 from parts.registry import make_parts
+from tests.parts.designs import sheave_of
 from tests.parts.machines import Rotation, large, small, stack_of, sweep_poses
 
 angles = st.floats(-7.0, 7.0)
@@ -65,8 +66,8 @@ def test_the_chain_ends_at_the_sheave_in_every_pose() -> None:
             at = pose(design, poses.disc_angle, poses.link_angle, poses.chain_angle).chain_end
             x = at.x + poses.free_length * np.cos(at.rotation)
             y = at.y + poses.free_length * np.sin(at.rotation)
-            cx, cy = design.sheave.center
-            assert np.hypot(x - cx, y - cy) == pytest.approx(np.full_like(x, design.sheave.pitch_radius))
+            cx, cy = sheave_of(design).center
+            assert np.hypot(x - cx, y - cy) == pytest.approx(np.full_like(x, sheave_of(design).pitch_radius))
 
 
 def test_a_matrix_carries_the_parts_frame() -> None:

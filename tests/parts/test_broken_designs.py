@@ -329,3 +329,32 @@ def test_the_mechanism_can_be_judged_although_another_table_is_wrong(tmp_path: P
 def test_a_refusal_is_one_line_a_problem() -> None:
     refusal = DesignRefused("rig.toml", [Problem("a.b", 12, "1", "2", "wrong"), Problem("a", 3, '"x"', "y")])
     assert str(refusal) == 'rig.toml:3: a: found "x"; accepted: y\nrig.toml:12: a.b: wrong; found 1; accepted: 2'
+
+
+def test_a_refusal_for_the_eye_is_a_block_a_problem() -> None:
+    """Place and key stay together on the first line, however long the path; nothing is lost or cut in two."""
+    long = ", ".join(f"EN-AW-{n}-T6" for n in range(6000, 6040))
+    folder = "a folder with spaces/" * 4
+    refusal = DesignRefused(
+        f"{folder}rig.toml",
+        [
+            Problem("link.material", 3, '"S355"', long, "not listed"),
+            Problem("a", 4, '"x"', "y"),
+            Problem("b", 5, "", ""),
+        ],
+    )
+    for width in (40, 100):
+        said = refusal.wrapped(width).splitlines()
+        first = [line for line in said if not line.startswith("    ")]
+        assert len(first) == 3
+        assert first[0].startswith(f"{folder}rig.toml:3: link.material: not")
+        assert first[1].startswith(f"{folder}rig.toml:4: a:")
+        assert max(len(line) for line in said if line.startswith("    ")) <= width
+        together = " ".join(line.strip() for line in said)
+        assert together == " ".join(line.strip() for line in str(refusal).splitlines())
+    for width in range(40, 70):
+        whole = DesignRefused("rig.toml", [Problem("a", 3, "25.4 mm of steel", "up to 58 mm, no more")]).wrapped(width)
+        assert "25.4 mm" in whole
+        assert "58 mm" in whole
+    (short,) = DesignRefused("rig.toml", [Problem("a", 3, '"x"', "y")]).wrapped(100).splitlines()
+    assert short == 'rig.toml:3: a: found "x"; accepted: y'

@@ -22,6 +22,7 @@ from parts.outline import Part, Plate
 from parts.registry import make_parts
 from parts.shape import cut_area, volume
 from parts.sizes import Sizes
+from tests.parts.designs import sheave_of
 from tests.parts.machines import Make, Rotation, Style, large, small, stack_of, sweep_poses
 
 machines = pytest.mark.parametrize("make", [large, small])
@@ -103,8 +104,8 @@ def test_a_chain_end_that_reaches_the_sheave_is_reported(rotation: Rotation) -> 
     assert clash.sweep == "winding"
     assert clash.crank_angle == pytest.approx(0.0)
     # it meets the sheave's rim, near where the chain does
-    cx, cy = design.sheave.center
-    rim = design.sheave.pitch_radius + design.chain.plate_height / 2
+    cx, cy = sheave_of(design).center
+    rim = sheave_of(design).pitch_radius + design.far_end.height / 2
     assert np.hypot(clash.x - cx, clash.y - cy) == pytest.approx(rim, abs=sizes.chain_end.height)
     assert "chain_end and sheave" in str(clash)
 

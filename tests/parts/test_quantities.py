@@ -9,7 +9,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from parts.problems import Refused
-from parts.quantities import KINDS, Units, read_quantity, show
+from parts.quantities import KINDS, Units, read_quantity, show, with_inches
 
 ACCEPTED = [
     ("58 mm", "length", 58.0),
@@ -159,3 +159,17 @@ def test_any_text_is_a_quantity_or_is_refused(text: str) -> None:
     except Refused:
         return
     assert math.isfinite(value)
+
+
+@pytest.mark.parametrize(
+    ("said", "shown"),
+    [
+        ("25.4 mm", "25.4 mm (1 in)"),
+        ("over 0 and up to 16 mm, what S500MC is for", "over 0 and up to 16 mm (0.629921 in), what S500MC is for"),
+        ("less than 92.34 mm; at least -1e2 mm", "less than 92.34 mm (3.63543 in); at least -1e2 mm (-3.93701 in)"),
+        ('one such as "58 mm"', 'one such as "58 mm"'),
+        ("5 mm², 5 N/mm, 5 mm/s, 5 mm^2, B5 mm, 3 deg", "5 mm², 5 N/mm, 5 mm/s, 5 mm^2, B5 mm, 3 deg"),
+    ],
+)
+def test_lengths_in_a_message_are_given_in_inches_too(said: str, shown: str) -> None:
+    assert with_inches(said) == shown

@@ -13,7 +13,7 @@ from hypothesis import strategies as st
 from parts.design import Design
 from parts.quantities import show
 from parts.read import read_design
-from tests.parts.designs import CATALOGUE, FULL, LEAST, line_of, read
+from tests.parts.designs import CATALOGUE, FULL, LEAST, chain_of, line_of, read, sheave_of
 
 
 def good(folder: Path, text: str) -> Design:
@@ -27,11 +27,12 @@ def test_full(tmp_path: Path) -> None:
     design = good(tmp_path, FULL)
     assert (design.identity.number, design.identity.revision) == ("PIR-100", "B")
     assert design.mechanism.seat_angle == math.radians(3)
-    assert design.sheave.center == (430.0, 35.0)
-    assert design.sheave.exit_angle == pytest.approx(-math.pi / 2)
+    assert sheave_of(design).center == (430.0, 35.0)
+    assert sheave_of(design).exit_angle == pytest.approx(-math.pi / 2)
     assert (design.spring.preload, design.spring.rate, design.spring.most_draw) == (1200.0, 210.0, 190.0)
-    assert (design.chain.min_tensile_strength, design.chain.lacing, design.chain.tongue_width) == (169_000, (4, 4), 4.0)
-    assert design.chain.confirmed is False
+    chain = chain_of(design)
+    assert (chain.min_tensile_strength, chain.lacing, chain.tongue_width) == (169_000, (4, 4), 4.0)
+    assert chain.confirmed is False
     assert design.disc.material is not None
     assert design.disc.material.yield_strength(20) == 345
     assert design.link.material is not None
@@ -104,13 +105,13 @@ def test_bare_numbers_and_us_units_give_the_same_machine(tmp_path: Path) -> None
     ],
 )
 def test_listed_chains(tmp_path: Path, lines: str, designation: str, strands: int, tongue: float) -> None:
-    chain = good(tmp_path, LEAST.replace('designation = "LH1644"', lines)).chain
+    chain = chain_of(good(tmp_path, LEAST.replace('designation = "LH1644"', lines)))
     assert (chain.designation, chain.strands) == (designation, strands)
     assert chain.tongue_width == pytest.approx(tongue)
 
 
 def test_own_numbers_go_before_listed_ones(tmp_path: Path) -> None:
-    chain = good(tmp_path, LEAST + 'min_tensile_strength = "180 kN"').chain
+    chain = chain_of(good(tmp_path, LEAST + 'min_tensile_strength = "180 kN"'))
     assert (chain.min_tensile_strength, chain.pitch) == (180_000, 25.4)
     assert chain.source == "a list; min_tensile_strength from the design file"
 
@@ -126,11 +127,12 @@ pin_diameter = 4.45
 
 def test_own_chain(tmp_path: Path) -> None:
     design = good(tmp_path, LEAST.replace('designation = "LH1644"', OWN))
-    assert (design.chain.designation, design.chain.kind, design.chain.confirmed) == ("own chain", "roller", True)
-    assert design.chain.tongue_width == pytest.approx(0.35 * 17)
+    chain = chain_of(design)
+    assert (chain.designation, chain.kind, chain.confirmed) == ("own chain", "roller", True)
+    assert chain.tongue_width == pytest.approx(0.35 * 17)
     assert {"chain.kind", "chain.tongue_width", "chain.plate_thickness"} <= {a.key for a in design.assumed}
     leaf = good(tmp_path, LEAST.replace('designation = "LH1644"', OWN + 'kind = "leaf"\nplate_thickness = 2\n'))
-    assert (leaf.chain.kind, leaf.chain.tongue_width) == ("leaf", 2.0)
+    assert (chain_of(leaf).kind, chain_of(leaf).tongue_width) == ("leaf", 2.0)
 
 
 def test_constant_force(tmp_path: Path) -> None:

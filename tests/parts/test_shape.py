@@ -117,6 +117,53 @@ def test_rays_agree_with_a_fine_polygon(outline: Outline, x: float, y: float) ->
         assert value == pytest.approx(expected, abs=0.05)
 
 
+@given(outlines(), st.integers(0, 2**31))
+def test_rays_stop_at_the_nearest_hole(outline: Outline, seed: int) -> None:
+    """Circles are met apart from the outline's arcs: each ray by itself, by the closed form of one circle."""
+    rng = np.random.default_rng(seed)
+    holes = tuple(
+        Hole(f"hole_{i}", (float(x), float(y)), float(d))
+        for i, (x, y, d) in enumerate(zip(*rng.uniform(-70, 70, (2, 6)), rng.uniform(1, 30, 6), strict=True))
+    )
+    directions = rng.uniform(-4, 4, (3, 5))
+    plate = Plate(outline, holes, 10.0)
+    found = edge_distance(plate, (0.0, 0.0), directions, holes=True, skip=("hole_0",))
+    bare = edge_distance(plate, (0.0, 0.0), directions)
+    assert found.shape == directions.shape
+    for at, direction in np.ndenumerate(directions):
+        reaches = [float(bare[at])]
+        for hole in holes[1:]:
+            along = hole.center[0] * cos(direction) + hole.center[1] * sin(direction)
+            square = (hole.diameter / 2) ** 2 - (dist((0, 0), hole.center) ** 2 - along**2)
+            if square >= 0:
+                reaches += [s for s in (along - sqrt(square), along + sqrt(square)) if s > 0]
+        assert found[at] == pytest.approx(min(reaches), rel=1e-9, abs=1e-6)
+
+
+@given(outlines(), st.floats(-70, 70), st.floats(-70, 70))
+def test_inside_agrees_with_a_fine_polygon(outline: Outline, x: float, y: float) -> None:
+    fine, point = area_of(outline), shapely.Point(x, y)
+    assume(fine.exterior.distance(point) > 1e-3)
+    assert is_inside(outline, (x, y)) == fine.contains(point)
+
+
+@given(outlines())
+def test_the_two_ways_to_an_area_agree(outline: Outline) -> None:
+    assert signed_area(outline) == pytest.approx(moments(outline).area, rel=1e-12)
+
+
+def test_a_point_on_an_arcs_chord_is_inside() -> None:
+    """An eye's centre lies on the chord of the half circle round it, and on that of the whole circle of a disc."""
+    for shift in (0.0, 1e-16, -1e-16):
+        assert is_inside(stadium(86.0, 22.0), (shift, shift))
+        assert is_inside(stadium(86.0, 22.0), (86.0 + shift, -shift))
+    assert not is_inside(stadium(86.0, 22.0), (-22.1, 0.0))
+    round_ = circle((3.0, -4.0), 10.0, "round")
+    assert is_inside(round_, (3.0, -4.0))
+    assert is_inside(mirrored(round_), (3.0, 4.0))
+    assert not is_inside(round_, (8.1, -4.0))
+
+
 @given(outlines(), st.floats(0.01, 2.0))
 def test_a_containing_polygon_holds_the_shape(outline: Outline, tolerance: float) -> None:
     fine, around = area_of(outline, 1e-3), shapely.Polygon(polygon(outline, tolerance, containing=True))
