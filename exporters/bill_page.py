@@ -166,6 +166,7 @@ def key_figures(e: Examination) -> list[tuple[str, str, str]]:
         return name, "", f"{angle(float(theta), 2)}°"
 
     start = figures(float(degrees(float(e.machine.start_direction)) or 0.0))
+    noun = e.design.far_end.noun
     return [
         ("start dead centre, direction of the crank pin in the machine frame", f"{start}°", "0°"),
         event("catch: the stop takes the link", at.catch),
@@ -177,10 +178,10 @@ def key_figures(e: Examination) -> list[tuple[str, str, str]]:
         row("second torque peak", f.second_peak, "torque", f.second_peak_at),
         row("torque at the hold", f.hold_torque, "torque", at.hold),
         row("mean torque from 0 to the hold", f.mean_torque, "torque"),
-        row("chain pulled at the hold", f.pull_at_hold, "length", at.hold),
+        row(f"{noun} pulled at the hold", f.pull_at_hold, "length", at.hold),
         row("spring drawn at the hold", f.draw_at_hold, "length", at.hold),
         row("energy stored at the hold", f.stored_energy, "energy", at.hold),
-        row("largest chain tension", f.largest_tension, "force", f.largest_tension_at),
+        row(f"largest {noun} tension", f.largest_tension, "force", f.largest_tension_at),
         row("largest crank pin force", f.largest_crank_pin, "force", f.largest_crank_pin_at),
         row("largest stop force", f.largest_stop, "force", f.largest_stop_at),
         row("largest bending of the link", f.largest_link_bending, "torque", f.largest_link_bending_at),

@@ -134,7 +134,7 @@ def cycle_row(e: Examination) -> Row:
 
 def check_document(e: Examination) -> Row:
     """Everything that is known of the machine, in the order in which it is printed."""
-    from exporters.chain_rows import adjustment_rows, chain_row  # here, for they round by this module
+    from exporters.chain_rows import adjustment_rows, chain_row, far_end_row  # here, for they round by this module
     from exporters.fatigue_rows import studies
     from exporters.from_memory import from_memory
 
@@ -149,6 +149,7 @@ def check_document(e: Examination) -> Row:
         "checks": [check_row(row) for row in e.checks],
         "assumed": [assumed_row(row, units) for row in e.assumed],
         "from_memory": from_memory(e),
+        "far_end": far_end_row(e),
         "chain": chain_row(e),
         "adjustment": adjustment_rows(e),
         "studies": studies(e),

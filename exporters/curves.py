@@ -42,7 +42,14 @@ def cycle_picture(e: Examination) -> str:
     body = _events(e, x_of, bottom)
     body += _panel(s.crank_angle, torque, x_of, TOP, f"torque on the disc, {shown.unit('torque')}", _peaks(e, shown))
     most = ((float(f.largest_tension_at), shown.value(float(f.largest_tension), "force")),)
-    body += _panel(s.crank_angle, tension, x_of, TOP + HIGH + BETWEEN, f"chain tension, {shown.unit('force')}", most)
+    body += _panel(
+        s.crank_angle,
+        tension,
+        x_of,
+        TOP + HIGH + BETWEEN,
+        f"{e.design.far_end.noun} tension, {shown.unit('force')}",
+        most,
+    )
     for mark in range(0, int(math.degrees(end)) + 1, 60):
         x = x_of(math.radians(mark))
         body.append(svg.line((x, bottom), (x, bottom + 4.0), "axis"))
@@ -57,7 +64,7 @@ def cycle_picture(e: Examination) -> str:
         f"Catch {angle(float(at.catch))}°, null {angle(float(at.null))}°, release {angle(float(at.release))}°."
     )
     box = [(0.0, 0.0), (LEFT + WIDE + 6.0, bottom + 36.0)]
-    return svg.picture("cycle", "Torque and chain tension over crank angle", text, body, box)
+    return svg.picture("cycle", f"Torque and {e.design.far_end.noun} tension over crank angle", text, body, box)
 
 
 def _peaks(e: Examination, shown: Shown) -> tuple[Point, ...]:

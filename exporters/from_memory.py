@@ -22,9 +22,9 @@ def from_memory(e: Examination) -> list[str]:
 
 
 def _chain(e: Examination) -> Iterator[str]:
-    chain = e.design.chain
-    if not chain.confirmed or MEMORY in chain.source:
-        yield f"chain {chain.designation}: {chain.source}"
+    far = e.design.far_end
+    if not far.confirmed or MEMORY in far.source:
+        yield f"{far.noun} {far.designation}: {far.source}"
 
 
 def _materials(e: Examination) -> Iterator[str]:
@@ -75,5 +75,5 @@ def _stock(e: Examination) -> Iterator[str]:
 
 def _checks(e: Examination) -> Iterator[str]:
     for row in e.checks:
-        if MEMORY in row.source and not row.source.startswith(e.design.chain.source):
+        if MEMORY in row.source and not row.source.startswith(e.design.far_end.source):
             yield f"{row.part}, {row.check}: {row.source}"

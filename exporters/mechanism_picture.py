@@ -12,15 +12,18 @@ from exporters.part_pictures import row_text, scale_bar
 from exporters.shown import Shown, angle
 from exporters.site_places import AT_SHEAVE, place, spring_side, worst_rows
 from loads.examine import Examination, directions
+from loads.lines import SheaveRun
 from loads.linkage import State, state
 from parts.assembly import PlacedPart, placed, pose
+from parts.far_ends.tie import Rocker, Tie
 from parts.making import turn_of
 from parts.outline import Part, Point, Turned
 
 ROOM = (400.0, 380.0)
+PIN = 10.0  # mm: room about the output's pin
 TURN = 30.0  # radius of a moment's arrow
 LEAST_CRANK = 26.0  # picture units under which the sheave is left out of the picture
-DRAWN = ("crank_disc", "stop", "swing_link", "chain_end", "crank_pin", "chain_pin")  # from the back to the front
+DRAWN = ("crank_disc", "stop", "swing_link", "chain_end", "tie", "crank_pin", "chain_pin")  # from the back to the front
 
 
 @dataclass(frozen=True, slots=True)
@@ -40,9 +43,10 @@ def scene(e: Examination, theta: float) -> Scene:
     s = state(e.machine, np.array([theta]), e.figures.events.catch)
     d = directions(e.machine, s)
     at = pose(e.design, d.disc[0], d.link[0], d.chain[0])
-    center, r_sheave = e.design.sheave.center, e.design.sheave.pitch_radius
     near, pin = e.sizes.disc.outer_diameter / 2, (float(at.chain_end.x), float(at.chain_end.y))
-    leave, anchor = spring_side(e)
+    leave, anchor = spring_side(e, theta)
+    sheave = e.design.sheave
+    center, r_sheave = (leave, PIN) if sheave is None else (sheave.center, sheave.pitch_radius)
     spots = [(-near, -near), (near, near), pin, anchor]
     spots += [(center[0] + a * r_sheave, center[1] + b * r_sheave) for a, b in ((-1, -1), (1, 1))]
     k = _fit(spots)
@@ -55,8 +59,11 @@ def scene(e: Examination, theta: float) -> Scene:
         return (k * p[0], -k * p[1])
 
     turn, phi = turn_of(e.design), float(d.chain[0])
-    if whole:
-        side = float(e.machine.wrap_side) * turn
+    run = e.machine.far
+    if whole and not isinstance(run, SheaveRun):
+        meets = leave
+    elif whole and isinstance(run, SheaveRun):
+        side = float(run.wrap_side) * turn
         meets = (center[0] - side * r_sheave * math.sin(phi), center[1] + side * r_sheave * math.cos(phi))
     else:
         meets = (pin[0] + near * math.cos(phi), pin[1] + near * math.sin(phi))
@@ -66,20 +73,29 @@ def scene(e: Examination, theta: float) -> Scene:
     labels = []
     if whole:
         c = put(center)
-        body += [svg.circle(c, k * r_sheave, "body"), svg.circle(c, 2.5, "dot")]
-        body += [_wrap(e, s, put(meets), put(leave), k * r_sheave), svg.line(put(leave), put(anchor), "chain")]
+        body.append(svg.line(put(leave), put(anchor), "chain"))
         points += [put(spots[4]), put(spots[5]), put(anchor)]
-        labels.append(svg.Label(c[0], c[1] + 14.0, ("sheave",), "middle"))
         labels.append(_off(put(leave), put(anchor), "spring"))
+        if isinstance(run, SheaveRun):
+            body += [svg.circle(c, k * r_sheave, "body"), svg.circle(c, 2.5, "dot")]
+            body.append(_wrap(run, turn, s, put(meets), put(leave), k * r_sheave))
+            labels.append(svg.Label(c[0], c[1] + 14.0, ("sheave",), "middle"))
+        else:
+            one, other = (put(p) for p in _guide(e, leave, near))
+            body += [svg.line(one, other, "centre"), svg.circle(c, 2.5, "dot")]
+            points += [one, other]
+            labels.append(svg.Label(c[0], c[1] + 14.0, ("output",), "middle"))
     else:
         far = Shown(e.design.identity.units).quantity(math.hypot(*center), "length")
-        labels.append(_off(put(pin), put(meets), f"sheave {far} away"))
+        what = "sheave" if sheave is not None else "output"
+        labels.append(_off(put(pin), put(meets), f"{what} {far} away"))
     first = {part.key: part for part in reversed(e.parts)}
     copies: dict[str, PlacedPart] = {}
     for copy in placed(first.values(), at):
         copies.setdefault(copy.part.key, copy)
     body += [_drawn(copies[key].part, copies[key].at, k) for key in DRAWN if key in copies]
-    body.append(svg.line(put(pin), put(meets), "chain"))
+    if sheave is not None:
+        body.append(svg.line(put(pin), put(meets), "chain"))
     crank = (float(at.link.x), float(at.link.y))
     body += [svg.line(put((0.0, 0.0)), put(crank), "centre"), svg.line(put(crank), put(pin), "centre")]
     # letters stand beside the link, whichever way it points
@@ -108,9 +124,19 @@ def _off(a: Point, b: Point, text: str) -> svg.Label:
     return svg.beside(a, b, (text,))[0]
 
 
-def _wrap(e: Examination, s: State, a: Point, b: Point, r: float) -> str:
+def _guide(e: Examination, pin: Point, span: float) -> tuple[Point, Point]:
+    """What leads the output's pin: a stretch of its slide, or its rocker arm; machine frame."""
+    tie = e.design.far_end
+    assert isinstance(tie, Tie)
+    if isinstance(tie.output, Rocker):
+        return tie.output.pivot, pin
+    c, s = span * math.cos(tie.output.direction), span * math.sin(tie.output.direction)
+    return (pin[0] - c, pin[1] - s), (pin[0] + c, pin[1] + s)
+
+
+def _wrap(run: SheaveRun, turn: int, s: State, a: Point, b: Point, r: float) -> str:
     """The chain on the sheave: from the tangent point on the disc's side to that on the spring's."""
-    ccw = float(e.machine.wrap_side) * turn_of(e.design) < 0  # a chain on the left turns clockwise round the sheave
+    ccw = float(run.wrap_side) * turn < 0  # a chain on the left turns clockwise round the sheave
     large = int(float(s.wrap[0]) > math.pi)
     n = svg.num
     return svg.tag(
@@ -140,11 +166,14 @@ def mechanism_picture(e: Examination, key: str, name: str, theta: float) -> str:
     points, shown = list(found.points), Shown(e.design.identity.units)
     corner = (max(x for x, _ in points), _lowest(points, found.labels) + 26.0)
     body = [*found.body, *scale_bar(found.scale, shown, corner, points)]
-    text = (
-        f"Seen from the front, crank angle {angle(theta)}°. O disc axis, A crank pin, B chain pin; the chain runs from B "
-        "to the sheave and on to the spring."
-    )
+    text = f"Seen from the front, crank angle {angle(theta)}°. O disc axis, A crank pin, B chain pin; {_way(e)}."
     return svg.picture(key, f"The mechanism at the {name}", text, body, points, found.labels)
+
+
+def _way(e: Examination) -> str:
+    if e.design.sheave is None:
+        return "the tie leads from B to the output, which the spring pulls"
+    return f"the {e.design.far_end.noun} runs from B to the sheave and on to the spring"
 
 
 def frame_picture(e: Examination) -> str:

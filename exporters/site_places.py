@@ -10,6 +10,7 @@ import math
 import numpy as np
 
 from loads.examine import Examination, directions
+from loads.lines import SheaveRun
 from loads.linkage import state, to_machine
 from loads.records import LoadRow
 from parts.making import flipped, turn_of
@@ -18,7 +19,7 @@ from parts.places import crank_pin, stop_middle
 
 ORIGIN: Point = (0.0, 0.0)
 ROUND_PINS = ("crank_pin", "chain_pin")  # their sites lie along the axis; see ``level``
-AT_SHEAVE = ("sheave", "spring_anchor")  # sites of the frame that lie where the chain leads to
+AT_SHEAVE = ("sheave", "output", "spring_anchor")  # sites of the frame that lie where the chain leads to
 
 
 def made(e: Examination, key: str) -> Part | None:
@@ -47,8 +48,8 @@ def place(e: Examination, part: str, site: str) -> Point:
         }[site]
     if part == "stop":
         return {"contact": _contact(e), "root": ORIGIN}[site]
-    if part == "chain_end":
-        return {"chain_pin_eye": ORIGIN, "chain_hole": (sizes.chain_end.length, 0.0)}[site]
+    if part == e.design.far_end.part:
+        return {"chain_pin_eye": ORIGIN, e.design.far_end.far_hole: (sizes.chain_end.length, 0.0)}[site]
     if part in ROUND_PINS:
         return ORIGIN
     return machine_place(e, site if part == "frame" else part)
@@ -58,26 +59,44 @@ def machine_place(e: Examination, what: str) -> Point:
     """Where a thing that stands still is, in the machine frame."""
     if what in ("main_bearing", "drive"):
         return ORIGIN
-    if what in ("sheave", "sheave_pin", "chain"):
-        return e.design.sheave.center
+    sheave = e.design.sheave
+    if sheave is not None and what in ("sheave", "sheave_pin", e.design.far_end.noun):
+        return sheave.center
+    if sheave is None and what in ("output", "output_pin"):
+        return spring_side(e)[0]
     if what == "spring_anchor":
         return spring_side(e)[1]
     raise KeyError(what)
 
 
-def spring_side(e: Examination) -> tuple[Point, Point]:
-    """Where the chain leaves the sheave, and a point on it further towards the spring; machine frame."""
+def spring_side(e: Examination, theta: float | None = None) -> tuple[Point, Point]:
+    """Where the spring takes hold, and a point further towards it, at a crank angle (rad; the hold if None).
+
+    Machine frame. Over a sheave it is where the chain leaves that, whatever the angle; else the output's pin.
+    """
     m = e.machine
-    w, radius = float(m.wrap_side), float(m.pitch_radius)
-    leave = -w * float(m.start_wrap)
-    run = radius + 0.3 * (e.design.mechanism.crank_radius + e.design.mechanism.link_length)
-    x = float(m.sheave_distance) - w * radius * math.sin(leave)
-    y = -w * radius + w * radius * math.cos(leave)
+    far, span = m.far, 0.3 * (e.design.mechanism.crank_radius + e.design.mechanism.link_length)
+    leave = float(far.spring_direction)
+    if isinstance(far, SheaveRun):
+        w, radius = float(far.wrap_side), float(far.pitch_radius)
+        x = float(far.distance) - w * radius * math.sin(leave)
+        y = -w * radius + w * radius * math.cos(leave)
+        span += radius
+    else:
+        x, y = _output_pin(e, theta)
     ends = []
-    for along in (0.0, run):
+    for along in (0.0, span):
         at = to_machine(m, np.asarray(x + along * math.cos(leave)), np.asarray(y + along * math.sin(leave)))
         ends.append((float(at[0]), float(at[1])))
     return ends[0], ends[1]
+
+
+def _output_pin(e: Examination, theta: float | None) -> Point:
+    """The output's pin at a crank angle (rad; the hold if None), in the chain frame."""
+    at = float(e.figures.events.hold) if theta is None else theta
+    line = state(e.machine, np.array([at]), e.figures.events.catch).line
+    reach = float(line.free_length[0])
+    return float(line.qx[0]) + reach * float(line.ux[0]), float(line.qy[0]) + reach * float(line.uy[0])
 
 
 def _contact(e: Examination) -> Point:

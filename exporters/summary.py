@@ -100,7 +100,7 @@ def key_lines(e: Examination) -> list[tuple[str, str]]:
         ("torque at the hold", load(f.hold_torque, "torque")),
         ("draw at the hold", load(f.draw_at_hold, "length")),
         ("energy stored", load(f.stored_energy, "energy")),
-        ("largest chain tension", load(f.largest_tension, "force")),
+        (f"largest {e.design.far_end.noun} tension", load(f.largest_tension, "force")),
         ("largest stop force", load(f.largest_stop, "force")),
         ("largest crank pin force", load(f.largest_crank_pin, "force")),
     ]

@@ -8,7 +8,7 @@ from functools import lru_cache
 from importlib.resources import files
 from typing import Any
 
-from parts.catalogue import Catalogue
+from parts.catalogue import Catalogue, Rope, RopeEnd, Webbing
 from parts.design import Material
 
 
@@ -21,51 +21,11 @@ def load_catalogue() -> Catalogue:
     return Catalogue(
         chains={row["designation"]: row for row in rows} | named,
         materials={name: _material(name, row) for name, row in materials.items() if isinstance(row, dict)},
+        ropes={rope.designation: rope for rope in ropes()},
+        rope_ends={end.name: end for end in rope_ends()},
+        webbings={f"{sling.width:g}": sling for sling in webbings()},
+        sheave_ratio_of_webbing=float(_table("ropes.toml")["webbing"]["least_sheave_ratio"]),
     )
-
-
-@dataclass(frozen=True, slots=True)
-class Rope:
-    """A wire rope: mm, N at the rope grades 1770 and 1960, kg/m."""
-
-    construction: str
-    diameter: float
-    breaking_force_1770: float
-    breaking_force_1960: float
-    mass_per_metre: float
-    least_sheave_ratio: float
-    source: str
-    confirmed: bool
-    from_memory: tuple[str, ...]
-
-    @property
-    def designation(self) -> str:
-        return f"{self.construction} {self.diameter:g}"
-
-
-@dataclass(frozen=True, slots=True)
-class RopeEnd:
-    """How a rope ends; ``efficiency`` is the share of its breaking force that the end carries."""
-
-    name: str
-    efficiency: float
-    source: str
-    confirmed: bool
-
-
-@dataclass(frozen=True, slots=True)
-class Webbing:
-    """A flat woven sling: mm, kg straight, N."""
-
-    width: float
-    working_load: float
-    breaking_force: float
-    source: str
-    confirmed: bool
-
-    @property
-    def designation(self) -> str:
-        return f"polyester webbing {self.width:g}"
 
 
 @dataclass(frozen=True, slots=True)
@@ -126,7 +86,15 @@ def ropes() -> tuple[Rope, ...]:
 @lru_cache(maxsize=1)
 def rope_ends() -> tuple[RopeEnd, ...]:
     return tuple(
-        RopeEnd(str(row["name"]), float(row["efficiency"]), str(row["source"]), bool(row["confirmed"]))
+        RopeEnd(
+            name=str(row["name"]),
+            efficiency=float(row["efficiency"]),
+            width=float(row["width"]),
+            height=float(row["height"]),
+            pin=float(row["pin"]),
+            source=str(row["source"]),
+            confirmed=bool(row["confirmed"]),
+        )
         for row in _table("ropes.toml")["end"]
     )
 
@@ -135,8 +103,9 @@ def rope_ends() -> tuple[RopeEnd, ...]:
 def webbings() -> tuple[Webbing, ...]:
     """Flat woven slings; the least breaking force is the working load by the standard's factor."""
     row = _table("ropes.toml")["webbing"]
+    thickness, factor = float(row["thickness"]), float(row["factor"]) * G
     return tuple(
-        Webbing(float(w), float(m), float(row["factor"]) * float(m) * G, str(row["source"]), bool(row["confirmed"]))
+        Webbing(float(w), thickness, float(m), factor * float(m), str(row["source"]), bool(row["confirmed"]))
         for w, m in zip(row["widths"], row["working_loads"], strict=True)
     )
 

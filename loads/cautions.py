@@ -57,9 +57,10 @@ def cautions(design: Design, figures: Cycle, sizes: Sizes, checks: tuple[Check, 
             f"At the hold the spring still turns the disc back with {share:.0%} of the largest torque: the drive or its "
             "brake must hold that; a smaller hold margin leaves less."
         )
-    if not design.chain.confirmed:
+    far = design.far_end
+    if not far.confirmed:
         rows.append(
-            f"The ratings of chain {design.chain.designation} are from memory: confirm them with the maker's certificate."
+            f"The ratings of {far.noun} {far.designation} are from memory: confirm them with the maker's certificate."
         )
     parts = (sizes.disc, sizes.link, sizes.stop, sizes.crank_pin, sizes.chain_pin, sizes.chain_end)
     memory = sorted({p.material.name for p in parts if not p.material.confirmed})
@@ -72,8 +73,10 @@ def cautions(design: Design, figures: Cycle, sizes: Sizes, checks: tuple[Check, 
     return tuple(rows)
 
 
-def chain_cautions(study: ChainStudy) -> tuple[str, ...]:
+def chain_cautions(noun: str, study: ChainStudy | None) -> tuple[str, ...]:
     """The chain's speed while it winds against the practice of lifting; the figure where no disc speed is given."""
+    if study is None or noun != "chain":
+        return ()
     practice = f"{_per_minute(LIFTING_SPEED)} m/min to which lifting chains are kept (common practice)"
     after = "After the release the spring, not the drive, sets the chain's speed."
     limit = study.limit_disc_speed * 30.0 / math.pi

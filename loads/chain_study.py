@@ -1,7 +1,7 @@
-"""The chain beyond its strength: length in whole pitches, wear, speed, bending over the sheave, and what slack does.
+"""Chain, rope or webbing beyond its strength: length (a chain's in whole pitches), wear, speed, what slack does.
 
-The adjustment table lets someone tune the machine by pitches: every row is the same machine with another slack, all
-solved in one call of the cycle, slack along the leading axis. mm, N, N·mm, rad.
+The adjustment table lets someone tune the machine by pitches or by a thread: every row is the same machine with another
+slack, all solved in one call of the cycle, slack along the leading axis. mm, N, N·mm, rad.
 """
 
 from __future__ import annotations
@@ -12,10 +12,12 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from loads.cycle import Cycle, cycle
+from loads.lines import SheaveRun
 from loads.linkage import Linkage
 from loads.members import History
-from loads.spring_law import SpringLaw
-from parts.design import Chain, Design, Floats
+from parts.design import Design
+from parts.far_ends.base import FarEnd
+from parts.far_ends.chain import Chain
 from parts.sizes import Sizes
 
 DISCARD = 0.03  # elongation at which a chain is taken off; common practice, no source
@@ -23,6 +25,7 @@ LIFTING_SPEED = 500.0  # mm/s, 30 m/min: speed up to which leaf chains lift; com
 BY_DESIGN, BY_WEAR, BY_THREAD = "as designed", "worn by 3 %", "thread of the anchor"
 BY_PITCHES = "links"  # a pair of pitches: an inner and an outer link
 BY_ONE_PITCH = {"roller": "offset link or the other end fitting", "leaf": "the other end fitting"}
+THREAD_STEP, THREAD_STEPS = 5.0, 4  # mm a step of the thread where there are no pitches, and steps each way
 PITCHES, QUARTERS = 4, 4  # pitches that the table goes up and down; steps into which the thread divides the first
 
 
@@ -45,14 +48,14 @@ class Adjustment:
 
 @dataclass(frozen=True, slots=True)
 class ChainStudy:
-    """Lengths at the start dead centre, of the chain between its first and its last pin, taut."""
+    """Lengths at the start dead centre, between first and last pin, taut. What goes by pitches is None without them."""
 
-    pitch: float
+    pitch: float | None
     straight: float  # from the chain's first pin to the sheave
     on_sheave: float
     run_to_spring: float | None
     angle_per_link: float | None  # between two pins that lie on the sheave; None where a link is longer than it is wide
-    sheave_in_pitches: float  # pitch radius over pitch
+    sheave_in_pitches: float | None  # pitch radius over pitch
     most_reach: float  # mm of chain a rad of the disc, at the fastest while it winds
     most_reach_at: float
     release_reach: float
@@ -70,18 +73,20 @@ class ChainStudy:
     @property
     def whole_pitches(self) -> int | None:
         """The least number of pitches that is long enough."""
-        return None if self.taut_length is None else whole(self.taut_length, self.pitch)
+        return None if self.taut_length is None or self.pitch is None else whole(self.taut_length, self.pitch)
 
     @property
     def slack_of_whole(self) -> float | None:
         """What the least number of pitches leaves over."""
-        if self.taut_length is None or self.whole_pitches is None:
+        if self.taut_length is None or self.whole_pitches is None or self.pitch is None:
             return None
         return max(0.0, self.whole_pitches * self.pitch - self.taut_length)
 
     @property
     def wear(self) -> float:
-        """What 3 % of the chain, or of its known part, comes to."""
+        """What 3 % of the chain, or of its known part, comes to; nothing for what is not discarded by its length."""
+        if self.pitch is None:
+            return 0.0
         return DISCARD * (self.up_to_sheave if self.taut_length is None else self.taut_length)
 
     @property
@@ -109,31 +114,20 @@ def angle_per_link(pitch: float, radius: float) -> float | None:
     return 2.0 * math.asin(pitch / (2.0 * radius)) if pitch <= 2.0 * radius else None
 
 
-def with_slacks(machine: Linkage, slacks: Floats) -> Linkage:
-    """One machine as many, alike but for their slack (mm), which lies along the leading axis."""
-    shape = np.shape(slacks)
-    values = {
-        name: np.broadcast_to(getattr(machine, name), shape)
-        for name in Linkage.__dataclass_fields__
-        if name not in ("spring", "slack")
-    }
-    law = machine.spring
-    spring = SpringLaw(np.broadcast_to(law.preload, shape), np.broadcast_to(law.rate, shape), law.draws, law.forces)
-    return replace(machine, **values, spring=spring, slack=slacks)
-
-
-def chain_study(design: Design, machine: Linkage, figures: Cycle, past: History, sizes: Sizes) -> ChainStudy:
-    """Length, speed and bending of a design's chain, and its adjustment table."""
-    chain, m = design.chain, design.mechanism
-    radius = float(machine.pitch_radius)
-    straight = float(machine.sheave_distance) - m.crank_radius - m.link_length - sizes.chain_end.length
+def chain_study(design: Design, machine: Linkage, figures: Cycle, past: History, sizes: Sizes) -> ChainStudy | None:
+    """Length, speed and bending of what runs over a design's sheave, and its adjustment table; None without a sheave."""
+    chain, m, run = design.far_end, design.mechanism, machine.far
+    if not isinstance(run, SheaveRun):
+        return None
+    radius, pitch = float(run.pitch_radius), chain.grain
+    straight = float(run.distance) - m.crank_radius - m.link_length - sizes.chain_end.length
     taut = past.state.pull >= chain.slack
     reach = np.where(taut, np.abs(past.state.line.arm), 0.0)
     fastest = int(np.argmax(reach))
     study = ChainStudy(
-        pitch=chain.pitch, straight=straight, on_sheave=radius * float(machine.start_wrap),
-        run_to_spring=chain.run_to_spring, angle_per_link=angle_per_link(chain.pitch, radius),
-        sheave_in_pitches=radius / chain.pitch, most_reach=float(reach[fastest]),
+        pitch=pitch, straight=straight, on_sheave=radius * float(run.start_wrap),
+        run_to_spring=chain.run_to_spring, angle_per_link=None if pitch is None else angle_per_link(pitch, radius),
+        sheave_in_pitches=None if pitch is None else radius / pitch, most_reach=float(reach[fastest]),
         most_reach_at=float(past.state.crank_angle[fastest]), release_reach=float(reach[-1]),
         disc_speed=None if design.moving is None else design.moving.disc_speed, rows=(),
     )  # fmt: skip
@@ -146,16 +140,20 @@ def least_slack(machine: Linkage, figures: Cycle) -> float:
     return max(0.0, float(figures.most_pull) - machine.spring.last_draw)
 
 
-def slack_steps(chain: Chain, study: ChainStudy, pull: float, least: float) -> list[tuple[float, str, int | None]]:
+def slack_steps(chain: FarEnd, study: ChainStudy, pull: float, least: float) -> list[tuple[float, str, int | None]]:
     """Slack, what it is set by, and the chain's pitches; rising, each once, between ``least`` and the pull at the hold.
 
     Where the length is known the chain has whole pitches and the steps are what those leave; else they count from the
     slack that the design gives. A chain of the same ends changes by two pitches, an inner and an outer link; by one with
     an offset link (roller chain) or with the other kind of fitting at one end.
     """
-    p, given = chain.pitch, chain.slack
-    single = BY_ONE_PITCH[chain.kind]
-    found: list[tuple[float, str, int | None]] = [(given, BY_DESIGN, None), (given + study.wear, BY_WEAR, None)]
+    p, given = chain.grain, chain.slack
+    found: list[tuple[float, str, int | None]] = [(given, BY_DESIGN, None)]
+    if p is None:  # cut to length: a thread sets it
+        found += [(given + k * THREAD_STEP, BY_THREAD, None) for k in range(-THREAD_STEPS, THREAD_STEPS + 1)]
+        return _kept(found, pull, least)
+    single = BY_ONE_PITCH[chain.kind] if isinstance(chain, Chain) else ""
+    found.append((given + study.wear, BY_WEAR, None))
     if study.taut_length is not None and study.whole_pitches is not None:
         first = study.whole_pitches
         base = first * p - study.taut_length
@@ -163,6 +161,11 @@ def slack_steps(chain: Chain, study: ChainStudy, pull: float, least: float) -> l
     else:
         found += [(given + k * p, BY_PITCHES if k % 2 == 0 else single, None) for k in range(-PITCHES, PITCHES + 1)]
     found += [(given + k * p / QUARTERS, BY_THREAD, None) for k in range(-QUARTERS + 1, QUARTERS)]
+    return _kept(found, pull, least)
+
+
+def _kept(found: list[tuple[float, str, int | None]], pull: float, least: float) -> list[tuple[float, str, int | None]]:
+    """Rising, each once, within what the spring's table tells and what the hold still draws."""
     kept: dict[float, tuple[float, str, int | None]] = {}
     for slack, by, pitches in found:
         key = round(max(slack, 0.0), 6)
@@ -181,7 +184,8 @@ def adjustments(
     """The machine at every slack, in one call of the cycle."""
     if not steps:
         return ()
-    c = cycle(with_slacks(machine, np.array([slack for slack, _, _ in steps])))
+    slacks = np.array([slack for slack, _, _ in steps])
+    c = cycle(replace(machine.copies(slacks.shape), slack=slacks))
     return tuple(
         Adjustment(
             slack, by, pitches, float(c.draw_at_hold[i]), float(c.stored_energy[i]), float(c.first_peak[i]),

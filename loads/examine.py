@@ -13,8 +13,9 @@ from loads.chain_study import ChainStudy, chain_study
 from loads.checks import all_checks
 from loads.checks.context import Context
 from loads.cycle import Cycle, cycle
+from loads.far_ends.registry import behaviour, linkage_of
 from loads.fatigue.study import FatigueStudy, fatigue_cautions, fatigue_study
-from loads.linkage import Linkage, State, chain_line, free_line, linkage_of, state
+from loads.linkage import Linkage, State, chain_line, free_line, state
 from loads.members import History, history, load_rows, members, site_histories
 from loads.proportions import SPIGOT, proportion
 from loads.records import Check, LoadRow, SiteHistory
@@ -46,7 +47,7 @@ class Examination:
     loads: tuple[LoadRow, ...]
     checks: tuple[Check, ...]
     findings: Findings
-    chain: ChainStudy
+    chain: ChainStudy | None  # None for a tie
     assumed: tuple[Assumed, ...]
     cautions: tuple[str, ...]
     fatigue: FatigueStudy | None = None  # where the design has its table
@@ -86,7 +87,7 @@ def examine(path: Path) -> Examination:
     machine, rubbing = with_friction(design, machine, sizes)
     past = history(machine, figures)
     parts = make_parts(design, sizes, stack)
-    sites = site_histories(past, stack, design.targets, sizes.disc.bolt_circle / 2.0)
+    sites = site_histories(past, stack, design.targets, sizes.disc.bolt_circle / 2.0, behaviour(design).sites)
     findings = sweep(parts, design, sizes, stack, sweep_poses(machine, figures))
     context = Context(
         design=design, sizes=sizes, stack=stack, parts=parts, past=past,
@@ -100,7 +101,11 @@ def examine(path: Path) -> Examination:
         design=design, machine=machine, figures=figures, past=past, sizes=sizes, stack=stack, parts=parts, sites=sites,
         loads=load_rows(past, sites), checks=checks, findings=findings, chain=chain,
         assumed=(*_as_solved(design, machine, len(stack.sides) > 1), *rubbing, *proportioned),
-        cautions=(*cautions(design, figures, sizes, checks), *chain_cautions(chain), *fatigue_cautions(fatigue)),
+        cautions=(
+            *cautions(design, figures, sizes, checks),
+            *chain_cautions(design.far_end.noun, chain),
+            *fatigue_cautions(fatigue),
+        ),
         fatigue=fatigue,
     )  # fmt: skip
 
@@ -157,11 +162,9 @@ def directions(machine: Linkage, s: State) -> Directions:
 
 
 def free_lengths(machine: Linkage, s: State) -> Floats:
-    """Straight chain (mm) between the chain pin and the sheave, one element a crank angle."""
-    bx, by = chain_pin_places(machine, s)
-    gap_x = float(machine.sheave_distance) - bx
-    gap_y = -float(machine.wrap_side * machine.pitch_radius) - by
-    return np.asarray(np.sqrt(np.maximum(gap_x**2 + gap_y**2 - float(machine.pitch_radius) ** 2, 0.0)))
+    """Straight from the chain pin to the sheave, or to the output's pin (mm), one element a crank angle."""
+    line = chain_line(machine.expanded(), *chain_pin_places(machine, s))
+    return np.broadcast_to(line.free_length, s.crank_angle.shape)
 
 
 def chain_pin_places(machine: Linkage, s: State) -> tuple[Floats, Floats]:
@@ -197,6 +200,6 @@ def sweep_poses(machine: Linkage, figures: Cycle) -> Sweep:
         disc_angle=np.concatenate([d.disc, disc]),
         link_angle=np.concatenate([d.link, link]),
         chain_angle=np.concatenate([d.chain, chain]),
-        free_length=np.concatenate([free_lengths(machine, s), line.free_length]),
+        free_length=np.concatenate([free_lengths(machine, s), np.broadcast_to(line.free_length, swing.shape)]),
         taut=np.concatenate([np.ones(len(winding), bool), np.zeros(len(swing), bool)]),
     )

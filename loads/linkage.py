@@ -1,8 +1,8 @@
 """Kinematics and statics of the over-centre draw, for many designs and crank angles at once.
 
 Everything is worked out in the *chain frame*: a right-handed plane with its origin on the disc axis, x along the chain
-line through it (the start direction), the disc turning counter-clockwise. There the sheave stands at (t0, −w R) whatever
-the design, so a clockwise machine is the mirror image of a counter-clockwise one by construction.
+line through it (the start direction), the disc turning counter-clockwise, so a clockwise machine is the mirror image of
+a counter-clockwise one by construction. What the chain line is drawn to is told in ``loads.lines``.
 
 Arrays: the fields of ``Linkage`` have the designs' leading axes (...); crank angles have shape (..., n).
 """
@@ -15,8 +15,9 @@ from typing import Any
 
 import numpy as np
 
-from loads.spring_law import SpringLaw, law_of, spring_force
-from parts.design import Design, Floats
+from loads.lines import FarLine, Line, RockerRun, SheaveRun, SlideRun
+from loads.spring_law import SpringLaw, spring_force
+from parts.design import Floats
 
 TAUT_WITHIN = 1e-6  # mm of pull by which rounding may fall short of the slack
 
@@ -32,10 +33,7 @@ class Linkage:
     hold_margin: Floats
     slack: Floats
     efficiency: Floats
-    sheave_distance: Floats  # t0, along the chain line from O to the sheave's tangent point
-    pitch_radius: Floats
-    wrap_side: Floats  # w: +1 chain on the left of O→C when the disc turns counter-clockwise, −1 on the right
-    start_wrap: Floats  # arc of chain on the sheave at the start
+    far: FarLine
     start_direction: Floats  # machine frame, counter-clockwise positive
     turn: Floats  # +1 ccw, −1 cw
     spring: SpringLaw
@@ -55,15 +53,22 @@ class Linkage:
     def chunk(self, rows: slice) -> Linkage:
         """Some of many machines that lie along one leading axis."""
         values: list[Any] = [getattr(self, name) for name in _FIELDS]
-        some: list[Any] = [v.chunk(rows) if isinstance(v, SpringLaw) else v[rows] for v in values]
+        some: list[Any] = [v.chunk(rows) if isinstance(v, (SpringLaw, FarLine)) else v[rows] for v in values]
         return Linkage(*some)
+
+    def copies(self, shape: tuple[int, ...]) -> Linkage:
+        """One machine as many alike."""
+        values: list[Any] = [getattr(self, name) for name in _FIELDS]
+        whole = (SpringLaw, FarLine)
+        many: list[Any] = [v.copies(shape) if isinstance(v, whole) else np.broadcast_to(v, shape) for v in values]
+        return Linkage(*many)
 
 
 _FIELDS = tuple(f.name for f in fields(Linkage))
 
 
-def _expanded(value: Floats | SpringLaw) -> Floats | SpringLaw:
-    return value.expanded() if isinstance(value, SpringLaw) else value[..., None]
+def _expanded(value: Floats | SpringLaw | FarLine) -> Floats | SpringLaw | FarLine:
+    return value.expanded() if isinstance(value, (SpringLaw, FarLine)) else value[..., None]
 
 
 def make_linkage(
@@ -108,78 +113,72 @@ def make_linkage(
     wrap_angle = np.where(np.isnan(leave), np.pi, np.mod(w * (direction - sense * leave), 2.0 * np.pi))
     return Linkage(
         crank_radius=r, link_length=length, seat_angle=beta, stop_reach=reach, hold_margin=margin, slack=slack_,
-        efficiency=eta, sheave_distance=t0, pitch_radius=radius, wrap_side=w, start_wrap=wrap_angle,
-        start_direction=sense * direction, turn=sense, spring=SpringLaw(pre, rate, spring.draws, spring.forces),
+        efficiency=eta, far=SheaveRun(t0, radius, w, wrap_angle), start_direction=sense * direction, turn=sense,
+        spring=SpringLaw(pre, rate, spring.draws, spring.forces),
         friction_bearing=fb, friction_crank_pin=fp, friction_chain_pin=fc,
     )  # fmt: skip
 
 
-def linkage_of(design: Design) -> Linkage:
-    """The machine of one design, without the friction that needs pin sizes."""
-    m, s = design.mechanism, design.sheave
-    return make_linkage(
-        crank_radius=m.crank_radius,
-        link_length=m.link_length,
-        seat_angle=m.seat_angle,
-        stop_reach=m.stop_reach,
-        hold_margin=m.hold_margin,
-        sheave_x=s.center[0],
-        sheave_y=s.center[1],
-        pitch_radius=s.pitch_radius,
-        wrap=1.0 if s.wrap == "left" else -1.0,
-        turn=1.0 if m.rotation == "ccw" else -1.0,
-        exit_angle=np.nan if s.exit_angle is None else s.exit_angle,
-        efficiency=s.efficiency,
-        slack=design.chain.slack,
-        spring=law_of(design.spring),
-    )
+def make_tied(
+    *,
+    crank_radius: Floats | float,
+    link_length: Floats | float,
+    seat_angle: Floats | float,
+    stop_reach: Floats | float,
+    tie_length: Floats | float,
+    spring: SpringLaw,
+    slide: tuple[Floats | float, Floats | float, Floats | float] | None = None,
+    rocker: tuple[Floats | float, ...] | None = None,
+    turn: Floats | float = 1.0,
+    hold_margin: Floats | float = np.radians(4.0),
+    efficiency: Floats | float = 1.0,
+) -> Linkage:
+    """Machines with a rigid tie, from their parameters in the machine frame; leading axes broadcast.
 
-
-@dataclass(frozen=True)  # without slots, so that what is asked for twice is worked out once
-class ChainLine:
-    """The chain line from a point Q that the crank carries. All shaped like the crank angle."""
-
-    machine: Linkage  # expanded to meet Q's shape
-    qx: Floats
-    qy: Floats
-    ux: Floats  # unit vector from Q to the sheave
-    uy: Floats
-    free_length: Floats  # t, mm from Q to the tangent point
-    gain: Floats  # t² − t0², mm²
-
-    @cached_property
-    def direction(self) -> Floats:
-        """φ, rad from the start direction."""
-        return np.arctan2(self.uy, self.ux)
-
-    @cached_property
-    def drawn(self) -> Floats:
-        """ℓ(Q) − ℓ(A at θ = 0), mm."""
-        m = self.machine
-        straight = self.gain / (self.free_length + m.sheave_distance)
-        return np.asarray(straight + m.crank_radius + m.pitch_radius * m.wrap_side * self.direction)
-
-    @property
-    def arm(self) -> Floats:
-        """dℓ/dθ, mm: the signed distance from O to the chain line."""
-        return self.ux * self.qy - self.uy * self.qx
-
-    @property
-    def turning(self) -> Floats:
-        """dφ/dθ."""
-        return -(self.ux * self.qx + self.uy * self.qy) / self.free_length
-
-
-def chain_line(m: Linkage, qx: Floats, qy: Floats) -> ChainLine:
-    """Tangent from Q to the pitch circle. ``m`` is already expanded to meet Q's shape."""
-    t0, side = m.sheave_distance, m.pitch_radius * m.wrap_side
-    dx, dy = t0 - qx, -side - qy
-    # t² − t0², written so that a sheave ten kilometres away costs no digits
-    gain = qx**2 + qy**2 - 2.0 * (t0 * qx - side * qy)
-    with np.errstate(invalid="ignore"):
-        t = np.sqrt(t0**2 + gain)
-    squared = dx**2 + dy**2
-    return ChainLine(m, qx, qy, (dx * t - dy * side) / squared, (dy * t + dx * side) / squared, t, gain)
+    Either ``slide``: x and y of a point that the output's pin passes, and the direction (rad) in which drawing moves it;
+    or ``rocker``: pivot x and y, arm, side (+1 the pin on the left of O→pivot, −1 on the right), the spring's arm, and
+    the direction in which the spring's line leaves (NaN: away along the tie at the start). Where the output's pin cannot
+    be as far from O as crank, link and tie reach, everything comes out as NaN. Lengths in mm, angles in rad.
+    """
+    given = (0.0, 0.0, 0.0) if slide is None else slide
+    arms = (0.0, 0.0, 1.0, 1.0, 1.0, 0.0) if rocker is None else rocker
+    values = np.broadcast_arrays(
+        crank_radius, link_length, seat_angle, stop_reach, tie_length, turn, hold_margin, efficiency, spring.preload,
+        spring.rate, *given, *arms,
+    )  # fmt: skip
+    r, link, beta, reach, tie, sense, margin, eta, pre, rate = (np.asarray(v, dtype=float) for v in values[:10])
+    rest = [np.asarray(v, dtype=float) for v in values[10:]]
+    start = r + link + tie
+    with np.errstate(invalid="ignore", divide="ignore"):
+        if rocker is None:
+            x, y, draw = rest[:3]
+            ex, ey = np.cos(draw), np.sin(draw)
+            foot = x * ex + y * ey
+            along = np.sqrt(start**2 - (x**2 + y**2 - foot**2))
+            # the pin starts where drawing it brings it nearer to O
+            px, py = x - (foot + along) * ex, y - (foot + along) * ey
+        else:
+            x, y, arm, side, spring_arm, leave = rest[3:]
+            away = np.hypot(x, y)
+            opening = side * np.arccos((away**2 + start**2 - arm**2) / (2.0 * away * start))
+            towards = np.arctan2(y, x) + opening
+            px, py = start * np.cos(towards), start * np.sin(towards)
+        direction = np.arctan2(py * sense, px)  # in the frame of the counter-clockwise mirror image
+        far: FarLine
+        if rocker is None:
+            far = SlideRun(start, tie, sense * draw - direction)
+        else:
+            c, s = np.cos(direction), np.sin(direction)
+            mirrored = y * sense
+            out = np.where(np.isnan(leave), 0.0, sense * leave - direction)
+            far = RockerRun(start, tie, x * c + mirrored * s, mirrored * c - x * s, arm, spring_arm, out)
+    zero = np.zeros_like(r)
+    return Linkage(
+        crank_radius=r, link_length=link, seat_angle=beta, stop_reach=reach, hold_margin=margin, slack=zero,
+        efficiency=eta, far=far, start_direction=sense * direction, turn=sense,
+        spring=SpringLaw(pre, rate, spring.draws, spring.forces),
+        friction_bearing=zero, friction_crank_pin=zero, friction_chain_pin=zero,
+    )  # fmt: skip
 
 
 def crank_pin_at(m: Linkage, theta: Floats) -> tuple[Floats, Floats]:
@@ -195,15 +194,21 @@ def seated_chain_pin_at(m: Linkage, theta: Floats) -> tuple[Floats, Floats]:
     return x * c - y * s, x * s + y * c
 
 
-def free_line(m: Linkage, theta: Floats) -> ChainLine:
-    return chain_line(m, *crank_pin_at(m, theta))
+def free_line(m: Linkage, theta: Floats) -> Line:
+    """From the crank pin, the link in line with what pulls it. ``m`` is already expanded to meet the angles."""
+    return m.far.line(m.crank_radius, *crank_pin_at(m, theta), m.link_length, m.link_length)
 
 
-def seated_line(m: Linkage, theta: Floats) -> ChainLine:
+def seated_line(m: Linkage, theta: Floats) -> Line:
     return chain_line(m, *seated_chain_pin_at(m, theta))
 
 
-def lift(m: Linkage, line: ChainLine, theta: Floats) -> Floats:
+def chain_line(m: Linkage, qx: Floats, qy: Floats) -> Line:
+    """From a chain pin at Q. ``m`` is already expanded to meet Q's shape."""
+    return m.far.line(m.crank_radius, qx, qy, 0.0, m.link_length)
+
+
+def lift(m: Linkage, line: Line, theta: Floats) -> Floats:
     """sin α of the seated link: positive while the chain holds it on its stop, zero at catch and release."""
     ex, ey = -np.cos(theta + m.seat_angle), -np.sin(theta + m.seat_angle)
     return np.asarray(line.ux * ey - line.uy * ex)
@@ -220,7 +225,7 @@ class State:
     machine: Linkage  # expanded to meet the crank angles
     crank_angle: Floats
     seated: np.ndarray[tuple[int, ...], np.dtype[np.bool_]]
-    line: ChainLine
+    line: Line
     pull: Floats
     draw: Floats
     force: Floats  # of the spring, F
@@ -309,31 +314,27 @@ class State:
 
     @property
     def sheave_x(self) -> Floats:
-        """Force of the chain on the sheave: T towards Q, F along the exit."""
-        return np.asarray(self.shaft_x + self.force * np.cos(self._exit))
+        """Force of chain and spring on the sheave, or of tie and spring on the output's guide: T towards Q, and F."""
+        return np.asarray(self.shaft_x + self.force * np.cos(self.machine.far.spring_direction))
 
     @property
     def sheave_y(self) -> Floats:
-        return np.asarray(self.shaft_y + self.force * np.sin(self._exit))
+        return np.asarray(self.shaft_y + self.force * np.sin(self.machine.far.spring_direction))
 
     @property
     def sheave_force(self) -> Floats:
         return np.hypot(self.sheave_x, self.sheave_y)
 
     @property
-    def _exit(self) -> Floats:
-        """Direction in which the chain leaves the sheave: it does not change over the cycle."""
-        return -self.machine.wrap_side * self.machine.start_wrap
-
-    @property
     def wrap(self) -> Floats:
-        return self.machine.start_wrap + self.machine.wrap_side * self.line.direction
+        """rad on the sheave; NaN where there is none."""
+        return self.machine.far.wrap(self.line)
 
 
 def state(machine: Linkage, theta: Floats, catch: Floats) -> State:
     """Pull, torque and member forces at crank angles ``theta`` (..., n), for machines whose catch is at ``catch`` (...).
 
-    Free up to and with the catch, seated behind it. T = F(x)/η; the slack is without tension.
+    Free up to and with the catch, seated behind it. T = F(x)/η times the line's gearing; the slack is without tension.
     """
     return expanded_state(machine.expanded(), theta, np.asarray(catch)[..., None])
 
@@ -345,11 +346,12 @@ def expanded_state(m: Linkage, theta: Floats, catch: Floats) -> State:
     x = m.crank_radius - np.where(seated, m.link_length * np.cos(m.seat_angle), 0.0)
     y = np.where(seated, -m.link_length * np.sin(m.seat_angle), 0.0)
     c, s = np.cos(theta), np.sin(theta)
-    line = chain_line(m, x * c - y * s, x * s + y * c)
-    pull = line.drawn + np.where(seated, m.link_length, 0.0)
+    taken = np.where(seated, 0.0, m.link_length)
+    line = m.far.line(m.crank_radius, x * c - y * s, x * s + y * c, taken, m.link_length)
+    pull = line.pull
     draw = np.maximum(pull - m.slack, 0.0)
     force = np.where(pull >= m.slack - TAUT_WITHIN, spring_force(m.spring, draw), 0.0)
-    return State(m, theta, seated, line, pull, draw, force, force / m.efficiency)
+    return State(m, theta, seated, line, pull, draw, force, force * line.gearing / m.efficiency)
 
 
 def to_machine(m: Linkage, x: Floats, y: Floats) -> tuple[Floats, Floats]:

@@ -14,7 +14,7 @@ import numpy as np
 
 from loads.cycle import Cycle, corner_angles, trace_angles
 from loads.linkage import Linkage, State, state
-from loads.records import CASES, FIRST_HALF, HOLD, SECOND_HALF, LoadRow, SiteHistory
+from loads.records import CASES, FIRST_HALF, HOLD, SECOND_HALF, FarSite, LoadRow, SiteHistory
 from parts.design import Floats, Targets
 from parts.stack import Stack
 
@@ -123,8 +123,10 @@ def _rank(force: Floats) -> Floats:
     return np.asarray(np.linalg.norm(force, axis=0))
 
 
-def site_histories(past: History, stack: Stack, targets: Targets, bolt_radius: float) -> tuple[SiteHistory, ...]:
-    """Loads at every site of every part, (3, n) each, in the part's frame."""
+def site_histories(
+    past: History, stack: Stack, targets: Targets, bolt_radius: float, far: tuple[FarSite, ...]
+) -> tuple[SiteHistory, ...]:
+    """Loads at every site of every part, (3, n) each, in the part's frame; ``far`` are the sites of the far end."""
     s, m = past.state, past.machine
     f = members(past, stack, targets)
     turn = float(m.turn)
@@ -160,9 +162,10 @@ def site_histories(past: History, stack: Stack, targets: Targets, bolt_radius: f
     twist_side = np.stack([np.zeros_like(f.torque), np.zeros_like(f.torque), f.torque_side])
     bolts = np.sqrt(_rank(f.chain_side) ** 2 + (_rank(tilt)[:] / bolt_radius) ** 2 + (f.torque_side / bolt_radius) ** 2)
     sheave = f.spring_pull - f.chain_on_pin
-    # the rope friction of the sheave: what the two legs leave over is a couple on its pin
-    rubbing = (_rank(f.spring_pull) - _rank(f.chain_on_pin)) * float(m.pitch_radius) * -float(m.wrap_side)
+    # friction of the sheave or the guide: what the two legs leave over is a couple on its pin
+    rubbing = m.far.rubbing(s.line, _rank(f.chain_on_pin), _rank(f.spring_pull))
     rub = np.stack([np.zeros_like(rubbing), np.zeros_like(rubbing), rubbing])
+    of_far_end = {"pull": (f.chain_on_pin, none), "back": (-f.chain_on_pin, none), "guide": (sheave, rub)}
     whole = twist + np.stack([np.zeros_like(f.torque), np.zeros_like(f.torque), f.friction_torque])
     return (
         in_disc("crank_disc", "crank_pin_hole", -f.pin_on_link, pin_root),
@@ -177,15 +180,11 @@ def site_histories(past: History, stack: Stack, targets: Targets, bolt_radius: f
         in_disc("crank_pin", "root", f.pin_on_link, -pin_root, _rank(pin_root)),
         in_link("chain_pin", "journal", f.chain_on_pin, none),
         in_link("chain_pin", "link_seat", -f.chain_side, -f.chain_couple),
-        in_machine("chain_end", "chain_pin_eye", -f.chain_on_pin, none),
-        in_machine("chain_end", "chain_hole", f.chain_on_pin, none),
-        in_machine("chain", "strand", f.chain_on_pin, none),
+        *(in_machine(site.part, site.site, *of_far_end[site.force]) for site in far if site.part != "frame"),
         in_machine("main_bearing", "hub_face", f.chain_side, tilt - twist_side, bolts),
-        in_machine("sheave", "groove", sheave, rub),
-        in_machine("sheave_pin", "journal", sheave, rub),
         in_machine("spring_anchor", "anchor", -f.spring_pull, none),
         in_machine("frame", "main_bearing", f.chain_on_pin, none),
-        in_machine("frame", "sheave", sheave, rub),
+        *(in_machine(site.part, site.site, *of_far_end[site.force]) for site in far if site.part == "frame"),
         in_machine("frame", "spring_anchor", -f.spring_pull, none),
         in_machine("frame", "drive", none, -whole, np.abs(f.torque + f.friction_torque)),
     )

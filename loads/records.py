@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Literal
 
 import numpy as np
 
@@ -28,6 +29,15 @@ class SiteHistory:
     force: Floats
     moment: Floats
     demand: Floats
+
+
+@dataclass(frozen=True, slots=True)
+class FarSite:
+    """Where a far end carries load: the pull away from the chain pin, the pull back, or what its guide has to hold."""
+
+    part: str
+    site: str
+    force: Literal["pull", "back", "guide"]
 
 
 @dataclass(frozen=True, slots=True)

@@ -3,15 +3,16 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Iterable
 
 from loads.cycle import Cycle
+from loads.far_ends.registry import behaviour
 from loads.proportions.basis import BAR, PLATE
 from parts.catalogue import Catalogue
 from parts.design import Design, Material
 from parts.problems import Problem
+from parts.quantities import problem_with_inches
 from parts.sizes import Sizes
-
-MOST_WRAP = math.radians(270.0)
 
 
 def mechanism_problems(design: Design, figures: Cycle) -> tuple[Problem, ...]:
@@ -21,24 +22,14 @@ def mechanism_problems(design: Design, figures: Cycle) -> tuple[Problem, ...]:
     beta = f"{math.degrees(m.seat_angle):g} deg"
     for name, event in (("catch", at.catch), ("release", at.release), ("null", at.null)):
         if math.isnan(float(event)):
-            text = f"the mechanism has no {name}: the chain never {_MISSING[name]}"
-            return (
-                Problem(
-                    "mechanism.seat_angle", None, beta, "a seat angle nearer to 0 deg, or a sheave farther away", text
-                ),
+            text = f"the mechanism has no {name}: the {design.far_end.noun} never {_MISSING[name]}"
+            farther = (
+                "a sheave farther away" if design.far_end.over_sheave else "a longer tie, or another slide or pivot"
             )
-    problems = []
-    if float(figures.most_wrap) > MOST_WRAP or float(figures.least_wrap) < 0.0:
-        wrap = f"a wrap of {math.degrees(figures.least_wrap):.1f} to {math.degrees(figures.most_wrap):.1f} deg over the turn"
-        key = "sheave.exit_angle" if design.sheave.exit_angle is not None else "sheave.wrap"
-        text = "the chain would cross itself, or leave the sheave: above 270 deg or below 0"
-        problems.append(Problem(key, None, wrap, "a wrap within 0 and 270 deg at every crank angle", text))
-    slack, most_pull = design.chain.slack, float(figures.most_pull)
-    if slack >= most_pull:
-        text = "the slack is never taken up"
-        problems.append(
-            Problem("chain.slack", None, f"{slack:g} mm", f"less than the whole pull, {most_pull:.2f} mm", text)
-        )
+            accepted = f"a seat angle nearer to 0 deg, or {farther}"
+            return (Problem("mechanism.seat_angle", None, beta, accepted, text),)
+    problems = list(behaviour(design).problems(design, figures))
+    slack, most_pull = design.far_end.slack, float(figures.most_pull)
     table = design.spring.table
     if table is not None and most_pull - slack > float(table[0, -1]) + 1e-9:
         problems.append(
@@ -52,12 +43,13 @@ def mechanism_problems(design: Design, figures: Cycle) -> tuple[Problem, ...]:
         text = "the hold lies before the catch"
         found = f"{math.degrees(m.hold_margin):g} deg"
         problems.append(Problem("mechanism.hold_margin", None, found, f"less than {most:.2f} deg", text))
-    return tuple(problems)
+    return _shown(design, problems)
 
 
 def given_size_problems(design: Design, catalogue: Catalogue) -> tuple[Problem, ...]:
     """Sizes that the design gives and that the material, given or proportioned, is not listed for."""
     d, plate, bar = design, catalogue.materials[PLATE], catalogue.materials[BAR]
+    far = d.far_end
     rows: tuple[tuple[str, float | None, Material], ...] = (
         ("disc.thickness", d.disc.thickness, d.disc.material or plate),
         ("link.thickness", d.link.thickness, d.link.material or plate),
@@ -65,11 +57,11 @@ def given_size_problems(design: Design, catalogue: Catalogue) -> tuple[Problem, 
         ("stop.width", d.stop.width, d.stop.material or bar),
         ("crank_pin.diameter", d.crank_pin.diameter, d.crank_pin.material or bar),
         ("chain_pin.diameter", d.chain_pin.diameter, d.chain_pin.material or bar),
-        ("chain_end.width", d.chain_end.width, d.chain_end.material or bar),
+        (f"{far.part}.{far.width_key}", d.chain_end.width, d.chain_end.material or (bar if far.over_sheave else plate)),
         ("shaft.diameter", d.shaft.diameter, d.shaft.material or bar),
         ("sheave.pin_diameter", d.sheave_pin.diameter, d.sheave_pin.material or bar),
     )
-    return tuple(
+    problems = (
         Problem(
             key, None, f"{size:g} mm of {material.name}",
             f"over 0 and up to {material.largest_size:g} mm, what {material.name} is listed for; or another material",
@@ -78,6 +70,7 @@ def given_size_problems(design: Design, catalogue: Catalogue) -> tuple[Problem, 
         for key, size, material in rows
         if size is not None and not material.covers(size)
     )  # fmt: skip
+    return _shown(design, problems)
 
 
 def proportioned_size_problems(design: Design, sizes: Sizes) -> tuple[Problem, ...]:
@@ -91,9 +84,9 @@ def proportioned_size_problems(design: Design, sizes: Sizes) -> tuple[Problem, .
         ("crank_pin", "diameter", z.crank_pin.diameter, d.crank_pin.diameter, z.crank_pin.material),
         ("chain_pin", "diameter", z.chain_pin.diameter, d.chain_pin.diameter, z.chain_pin.material),
         ("chain_pin", "middle diameter", z.chain_pin.middle_diameter, None, z.chain_pin.material),
-        ("chain_end", "width", z.chain_end.width, d.chain_end.width, z.chain_end.material),
+        (d.far_end.part, d.far_end.width_key, z.chain_end.width, d.chain_end.width, z.chain_end.material),
     )
-    return tuple(
+    problems = (
         Problem(
             f"{part}.material", None, f"{material.name} for a {what} of {size:g} mm",
             f"a material listed for {size:g} mm; {material.name} is for over 0 and up to {material.largest_size:g} mm",
@@ -102,6 +95,12 @@ def proportioned_size_problems(design: Design, sizes: Sizes) -> tuple[Problem, .
         for part, what, size, given, material in rows
         if given is None and not material.covers(size)
     )  # fmt: skip
+    return _shown(design, problems)
+
+
+def _shown(design: Design, problems: Iterable[Problem]) -> tuple[Problem, ...]:
+    """The problems as the design's units have them shown: mm, and inches beside them where those are wanted."""
+    return tuple(problems if design.identity.units == "metric" else map(problem_with_inches, problems))
 
 
 _MISSING = {

@@ -25,6 +25,11 @@ class SpringLaw:
     def chunk(self, rows: slice) -> SpringLaw:
         return SpringLaw(self.preload[rows], self.rate[rows], self.draws, self.forces)
 
+    def copies(self, shape: tuple[int, ...]) -> SpringLaw:
+        """One machine's law as that of many alike."""
+        full = np.broadcast_to
+        return SpringLaw(full(self.preload, shape), full(self.rate, shape), self.draws, self.forces)
+
     @property
     def last_draw(self) -> float:
         """Largest draw (mm) that the table tells of; infinite without a table."""

@@ -4,12 +4,11 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from parts.crank_disc import HEAD_BELOW
 from parts.design import Design
-from parts.hardware import cap_screw
 from parts.quantities import show
 from parts.sizes import Sizes
 from parts.stack import Stack
+from parts.stop_layout import bolt_engagement, floor_under_head
 
 
 @dataclass(frozen=True, slots=True)
@@ -22,23 +21,33 @@ class Bought:
 
 def bought(design: Design, sizes: Sizes, stack: Stack) -> list[Bought]:
     """Everything the machine needs that is not one of its made parts. Notes are in the design's units."""
-    sides, disc, stop, chain = len(stack.sides), sizes.disc, sizes.stop, design.chain
+    sides, disc, stop, far = len(stack.sides), sizes.disc, sizes.stop, design.far_end
     units = design.identity.units
 
     def size(value: float) -> str:
         return show(value, "length", units)
 
-    strands = f", {chain.strands} strands" if chain.strands > 1 else ""
-    slack = f"{size(chain.slack)} longer than taut" if chain.slack else "taut"
-    rows = [
-        Bought("chain", "Chain", 1, f"{chain.designation}{strands}; cut to be {slack} at the start dead centre"),
-        Bought(
-            "chain_connecting_pin", "Connecting pin of the chain", 1,
-            f"the chain's own, diameter {size(sizes.chain_end.pin_diameter)}, locked; joins chain and chain end",
-        ),
+    own = f"the pin {far.pin_note}, diameter {size(sizes.chain_end.pin_diameter)}, locked"
+    rows = []
+    if far.over_sheave:
+        slack = f"{size(far.slack)} longer than taut" if far.slack else "taut"
+        what = f"{far.designation}{far.strands_note}; cut to be {slack} at the start dead centre"
+        rows = [
+            Bought(far.noun, far.noun.capitalize(), 1, what),
+            Bought(
+                f"{far.noun}_connecting_pin",
+                f"Connecting pin of the {far.noun}",
+                1,
+                f"{own}; joins {far.noun} and chain end",
+            ),
+        ]
+    else:
+        rows = [Bought("output_pin", "Pin of the output", 1, f"{own}; joins {far.noun} and output")]
+    rows += [
         Bought("hub_bolt", "Hub bolt", disc.bolt_count * sides, f"ISO 4762 {disc.bolt_thread}, head flush in the disc"),
     ]  # fmt: skip
     if stop.style == "block":
+        long = floor_under_head(disc.thickness, stop.bolt_thread) + bolt_engagement(stop)
         rows += [
             Bought(
                 "stop_dowel",
@@ -50,21 +59,21 @@ def bought(design: Design, sizes: Sizes, stack: Stack) -> list[Bought]:
                 "stop_bolt",
                 "Bolt of the stop block",
                 2 * sides,
-                f"ISO 4762 {stop.bolt_thread}, from the disc's back, head flush; {_reach(sizes):.0f} mm long or less",
+                f"ISO 4762 {stop.bolt_thread}, from the disc's back, head flush; {long:.1f} mm long under it, "
+                "a longer one shortened",
             ),
         ]
     if stack.chain_pin_support == "cantilever":
         standard = "DIN 471" if units == "metric" else "external, inch series"
         ring = f"{standard}, for a shaft of {size(sizes.chain_pin.middle_diameter)}"
         rows.append(Bought("retaining_ring", "Retaining ring of the chain pin", 1, ring))
+    if design.sheave is not None:
+        what = f"pitch radius {size(design.sheave.pitch_radius)}, for {far.designation}, on its own pin"
+        rows.append(Bought("sheave", "Sheave", 1, what))
+    else:
+        rows.append(Bought("output", "Output with its guide", 1, far.output_note(units)))
     return [
         *rows,
-        Bought(
-            "sheave",
-            "Sheave",
-            1,
-            f"pitch radius {size(design.sheave.pitch_radius)}, for {chain.designation}, on its own pin",
-        ),
         Bought("spring", "Spring", 1, _spring(design)),
         Bought(
             "hub",
@@ -74,12 +83,6 @@ def bought(design: Design, sizes: Sizes, stack: Stack) -> list[Bought]:
         ),
         Bought("motor", "Motor and drive", 1, "for the torque in the bill of loads; turns one way only"),
     ]
-
-
-def _reach(sizes: Sizes) -> float:
-    """From under a stop bolt's head to just below the block's top, mm."""
-    screw = cap_screw(sizes.stop.bolt_thread)
-    return sizes.disc.thickness - screw.head_height - HEAD_BELOW + 0.9 * sizes.stop.height
 
 
 def _spring(design: Design) -> str:

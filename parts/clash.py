@@ -13,6 +13,7 @@ from numpy.typing import NDArray
 
 from parts.assembly import Frame, Pose, pose
 from parts.design import Design, Floats
+from parts.far_ends.registry import KINDS
 from parts.layers import Geometry, Layer, Strip, machine_layers
 from parts.meeting import at_poses, gaps, meeting_point, relative
 from parts.outline import Part
@@ -23,7 +24,7 @@ MEETS = 0.01  # mm of overlap in z from which two layers can meet
 TOUCHES = 0.01  # mm of depth from which two parts that should be apart clash
 
 # What may be in the chain's plane, besides the chain.
-IN_CHAIN_PLANE = frozenset({"chain_pin", "chain_end", "chain_spacer", "chain", "sheave"})
+IN_CHAIN_PLANE = frozenset({"chain_pin", "chain_end", "chain_spacer", "sheave", *KINDS})
 
 # Parts that are meant to meet, and how deep (mm) they may seem to: no limit where one is inside the other.
 _INSIDE = float("inf")
@@ -37,9 +38,9 @@ MEANT: dict[frozenset[str], float] = {
         ("stop", "crank_disc"): _INSIDE,
         ("crank_spacer", "crank_pin"): _INSIDE,  # a ring on its pin
         ("chain_spacer", "chain_pin"): _INSIDE,
-        ("chain", "chain_end"): _INSIDE,  # in its slots
-        ("chain", "sheave"): _INSIDE,
+        ("chain_pin", "tie"): _INSIDE,
         ("stop", "swing_link"): 0.05,  # the flank on the stop
+        **{(name, other): _INSIDE for name in KINDS for other in ("chain_end", "sheave")},  # in its slots, on its rim
     }.items()
 }
 
@@ -142,7 +143,7 @@ def sweep(parts: Iterable[Part], design: Design, sizes: Sizes, stack: Stack, pos
     for a, b in _pairs(layers):
         allowed = MEANT.get(frozenset((a.key, b.key)), TOUCHES)
         for motion in motions:
-            if not motion.chain_taut and "chain" in (a.key, b.key):
+            if not motion.chain_taut and not KINDS.keys().isdisjoint((a.key, b.key)):
                 continue
             clash, clearance = _look(a, b, motion, allowed)
             if clash is not None:

@@ -9,6 +9,8 @@ from typing import Literal
 import numpy as np
 from numpy.typing import NDArray
 
+from parts.far_ends.base import FarEnd
+
 Floats = NDArray[np.float64]
 
 
@@ -59,29 +61,6 @@ class Spring:
     table: Floats | None  # shape (2, n)
     most_draw: float | None
     table_file: str | None = None
-
-
-@dataclass(frozen=True, slots=True)
-class Chain:
-    """One chain, listed or of one's own; widths are along the pins, strength is of the whole chain (all strands)."""
-
-    designation: str
-    kind: Literal["leaf", "roller"]
-    strands: int
-    pitch: float
-    width_over_pins: float
-    plate_height: float
-    pin_diameter: float
-    min_tensile_strength: float
-    tongue_width: float  # room between the plates for the chain end: inner link width, or one slot of a leaf chain
-    plate_thickness: float
-    lacing: tuple[int, int]  # leaf chain: plates per pitch; roller chain (2, 2)
-    mass_per_metre: float | None
-    slack: float
-    source: str
-    confirmed: bool
-    strand_pitch: float = 0.0  # roller chain of several strands: from one to the next
-    run_to_spring: float | None = None  # from where it leaves the sheave to its last pin, at zero draw
 
 
 @dataclass(frozen=True, slots=True)
@@ -164,7 +143,10 @@ class PinWish:
 
 @dataclass(frozen=True, slots=True)
 class ChainEndWish:
-    width: float | None = None
+    """Of the plate on the chain pin, be it the chain's end or a tie."""
+
+    width: float | None = None  # along the pins
+    height: float | None = None  # across
     pin_diameter: float | None = None  # of the pin that joins it to the chain
     material: Material | None = None
 
@@ -263,9 +245,9 @@ class Fatigue:
 class Design:
     identity: Identity
     mechanism: Mechanism
-    sheave: Sheave
+    sheave: Sheave | None  # None where the far end does not run over one
     spring: Spring
-    chain: Chain
+    far_end: FarEnd
     disc: DiscWish
     link: LinkWish
     stop: StopWish

@@ -72,7 +72,7 @@ Geometry = Round | Shape | Strip
 
 @dataclass(frozen=True, slots=True)
 class Layer:
-    key: str  # of the part, or "chain" or "sheave"
+    key: str  # of the part, or what the far end is called, or "sheave"
     name: str  # of the copy
     mover: str
     z_low: float
@@ -153,12 +153,14 @@ def _moved(build: Any, place: Placement) -> Geometry:
 
 
 def machine_layers(parts: Iterable[Part], design: Design, sizes: Sizes) -> list[Layer]:
-    """Layers of the parts, of the straight chain and of the sheave with the chain on it."""
-    chain, sheave = design.chain, design.sheave
-    half_width, half = chain.width_over_pins / 2, chain.plate_height / 2
+    """Layers of the parts, and where there is a sheave those of the straight chain (rope, …) and of the sheave with it."""
+    far, sheave = design.far_end, design.sheave
     found = [layer for part in parts for layer in part_layers(part)]
+    if sheave is None:
+        return found
+    half_width, half = far.plane_width / 2, far.height / 2
     straight = Strip(sizes.chain_end.length - half, half)
-    around = Round(*sheave.center, sheave.pitch_radius + half)
-    found.append(Layer("chain", "chain", "chain_end", -half_width, half_width, straight))
+    around = Round(*sheave.center, sheave.pitch_radius + far.thickness_on_sheave / 2)
+    found.append(Layer(far.noun, far.noun, "chain_end", -half_width, half_width, straight))
     found.append(Layer("sheave", "sheave", "machine", -half_width, half_width, around))
     return found

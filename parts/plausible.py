@@ -12,7 +12,6 @@ from collections.abc import Iterator, Mapping
 from parts.polygons import covers, polygon_fault
 from parts.problems import Problem, key_of, written
 from parts.schema import (
-    ChainTable,
     EnclosureTable,
     MaterialTable,
     MechanismTable,
@@ -22,22 +21,10 @@ from parts.schema import (
     StopTable,
 )
 
-NEEDED: Mapping[str, tuple[str, ...]] = {
-    "mechanism": ("crank_radius", "link_length"),
-    "sheave": ("center",),
-    "spring": (),
-    "chain": (),
-}
+NEEDED: Mapping[str, tuple[str, ...]] = {"mechanism": ("crank_radius", "link_length"), "spring": ()}
+OF_A_SHEAVE = ("center",)
 NEEDED_OF_A_MATERIAL = ("yield", "ultimate", "youngs_modulus", "density", "source")
 _BLOCK, _POST = ("length", "width"), ("diameter",)
-_SMALLER = (
-    ("pin_diameter", "pitch"),
-    ("pin_diameter", "plate_height"),
-    ("plate_thickness", "width_over_pins"),
-    ("inner_width", "width_over_pins"),
-    ("inner_link_width", "width_over_pins"),
-)
-OWN_CHAIN = ("min_tensile_strength", "pitch", "width_over_pins", "plate_height", "pin_diameter")
 
 
 def missing_keys(path: tuple[str, ...], raw: object, needed: tuple[str, ...]) -> Iterator[Problem]:
@@ -113,34 +100,6 @@ def spring_problems(spring: SpringTable, raw: Mapping[str, object]) -> Iterator[
         yield Problem("spring.rate", None, "nothing", "rate (0 for a constant force), or table", "missing")
     elif spring.rate == 0 and (spring.preload == 0 or "preload" not in raw):
         yield Problem("spring.rate", None, "no preload and no rate", "one of them above 0", "this spring never pulls")
-
-
-def chain_problems(chain: ChainTable, raw: Mapping[str, object], row: Mapping[str, object] | None) -> Iterator[Problem]:
-    """A listed chain, or all of what must be known of one's own; and sizes that can be those of one chain.
-
-    ``row`` is the listed one, whose values stand where the design gives none.
-    """
-    if "designation" not in raw:
-        absent = [key for key in OWN_CHAIN if key not in raw]
-        if len(absent) == len(OWN_CHAIN):
-            yield Problem("chain.designation", None, "nothing", f"a listed chain, or {', '.join(OWN_CHAIN)}", "missing")
-        else:
-            for key in absent:
-                yield Problem(
-                    f"chain.{key}", None, "nothing", f"{key} = …, or the designation of a listed chain", "missing"
-                )
-    for small, large in _SMALLER:
-        if small not in raw and large not in raw:
-            continue
-        size, bound = (getattr(chain, key) if key in raw else (row or {}).get(key) for key in (small, large))
-        if not isinstance(size, (int, float)) or not isinstance(bound, (int, float)) or size < bound:
-            continue
-        if small in raw:
-            found, accepted = _mm(size), f"less than {large}, {_mm(bound)}"
-        else:
-            found, accepted = _mm(bound), f"more than {small}, {_mm(size)}"
-        key = small if small in raw else large
-        yield Problem(f"chain.{key}", None, found, accepted, "no chain can be like that")
 
 
 def stop_problems(stop: StopTable, raw: Mapping[str, object]) -> Iterator[Problem]:

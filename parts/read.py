@@ -11,10 +11,8 @@ from typing import Any, TypeVar
 
 from parts import plausible, records
 from parts.catalogue import Catalogue
-from parts.chosen_chain import build_chain, find_row
 from parts.design import (
     BearingWish,
-    Chain,
     ChainEndWish,
     Design,
     DiscWish,
@@ -25,6 +23,9 @@ from parts.design import (
     ShaftWish,
     SheavePinWish,
 )
+from parts.far_ends.base import FarEnd
+from parts.far_ends.reading import Found, Source
+from parts.far_ends.registry import KINDS
 from parts.problems import DesignRefused, Problem, in_order, key_of, nearest, written
 from parts.schema import (
     NOT_YET,
@@ -32,7 +33,6 @@ from parts.schema import (
     BearingsTable,
     BearingTable,
     ChainEndTable,
-    ChainTable,
     ClearancesTable,
     DesignTable,
     DiscTable,
@@ -49,15 +49,16 @@ from parts.schema import (
     SheaveTable,
     SpringTable,
     StopTable,
-    Table,
     TargetsTable,
     unknown_key,
     validate,
 )
+from parts.schema_values import Table
 from parts.spring_table import SpringFile, read_spring_csv, spring_table_problems
 from parts.toml_source import read_source
+from parts.trade_names import listed_material
 
-_KERNEL = ("mechanism", "sheave", "spring", "chain")  # the mechanics need all of these
+_KERNEL = ("mechanism", "sheave", "spring", *KINDS)  # the mechanics need all of these
 _UNREADABLE_CURVE = [(0.0, 0.0), (1.0, 1.0)]  # stands for a curve that has been refused, so that nothing asks for one
 T = TypeVar("T", bound=Table)
 
@@ -105,7 +106,7 @@ class _Draft:
     tables: dict[str, Table] = field(default_factory=dict)
     own_materials: dict[str, tuple[MaterialTable, Material]] = field(default_factory=dict)
     spring_file: SpringFile | None = None
-    chain_row: Mapping[str, object] | None = None
+    far: Found = field(default_factory=Found)
 
     def design(self) -> Design | None:
         if self._is_newer():
@@ -116,32 +117,41 @@ class _Draft:
             self.tables[name], found = validate(model, (name,), self.raw.get(name, {}))
             self.problems += found
         self._load_own_materials()
-        materials = {name: self._material(name) for name in TABLES if hasattr(self.tables[name], "material")}
-        chain = self._chain()
-        pitch_radius = self._pitch_radius(chain)
+        with_material = [
+            name for name, table in self.tables.items() if name not in KINDS and hasattr(table, "material")
+        ]
+        materials = {name: self._material(name) for name in with_material}
+        self.far = self._far_end()
+        far_end = self.far.far_end
+        pitch_radius = self._pitch_radius(far_end)
         self._check_together(pitch_radius)
         broken = self._kernel_is_broken()
         sheave_pin = self._sheave_pin()
-        if chain is None or pitch_radius is None or broken:
+        if far_end is None or broken or (far_end.over_sheave and pitch_radius is None):
             return None
         identity = records.identity(self._table(DesignTable, "design"), self.defaults)
         design = Design(
             identity=identity,
             mechanism=records.mechanism(self._table(MechanismTable, "mechanism"), self.defaults),
-            sheave=records.sheave(self._table(SheaveTable, "sheave"), pitch_radius, self.defaults),
+            sheave=(
+                records.sheave(self._table(SheaveTable, "sheave"), pitch_radius, far_end, self.defaults)
+                if far_end.over_sheave and pitch_radius is not None
+                else None
+            ),
             spring=records.spring(
                 self._table(SpringTable, "spring"), self.spring_file.name if self.spring_file else None, self.defaults
             ),
-            chain=chain,
+            far_end=far_end,
             disc=DiscWish(**_sizes(self._table(DiscTable, "disc")), material=materials["disc"]),
             link=LinkWish(**_sizes(self._table(LinkTable, "link")), material=materials["link"]),
             stop=records.stop(self._table(StopTable, "stop"), materials["stop"]),
             crank_pin=PinWish(**_sizes(self._table(PinTable, "crank_pin")), material=materials["crank_pin"]),
             chain_pin=PinWish(**_sizes(self._table(PinTable, "chain_pin")), material=materials["chain_pin"]),
-            chain_end=ChainEndWish(**_sizes(self._table(ChainEndTable, "chain_end")), material=materials["chain_end"]),
+            chain_end=self.far.end
+            or ChainEndWish(**_sizes(self._table(ChainEndTable, "chain_end")), material=materials["chain_end"]),
             plate_gap=self._table(ClearancesTable, "clearances").plate_gap,
             friction=records.friction(self._table(FrictionTable, "friction"), self.defaults),
-            targets=records.targets(self._table(TargetsTable, "targets"), self.defaults),
+            targets=records.targets(self._table(TargetsTable, "targets"), far_end, self.defaults),
             enclosure=(
                 records.enclosure(self._table(EnclosureTable, "enclosure")) if "enclosure" in self.raw else None
             ),
@@ -211,8 +221,6 @@ class _Draft:
             self.problems += plausible.hardening_problems(name, self._raw_table(name))
         if isinstance(raw := self.raw.get("spring"), dict):
             self.problems += plausible.spring_problems(spring, raw)
-        if isinstance(raw := self.raw.get("chain"), dict):
-            self.problems += plausible.chain_problems(self._table(ChainTable, "chain"), raw, self.chain_row)
         if isinstance(raw := self.raw.get("enclosure"), dict):
             self.problems += plausible.enclosure_problems(self._table(EnclosureTable, "enclosure"), raw)
         if isinstance(raw := self.raw.get("moving"), dict):
@@ -239,25 +247,49 @@ class _Draft:
         text = json.dumps(values, sort_keys=True, separators=(",", ":"), allow_nan=False)
         return hashlib.sha256(text.encode()).hexdigest()
 
-    def _chain(self) -> Chain | None:
-        given = self._table(ChainTable, "chain")
-        if given.designation is not None:
-            found = find_row(given.designation, given.strands, self.catalogue)
-            if isinstance(found, Problem):
-                self.problems.append(found)
-                return None
-            self.chain_row = found
-        elif any(getattr(given, key) is None for key in plausible.OWN_CHAIN):
-            return None  # said by chain_problems
-        chain, assumed = build_chain(given, self.chain_row)
-        self.defaults.assumed += assumed
-        return chain
+    def _far_end(self) -> Found:
+        """The one far end that the design has, and what is wrong with its table."""
+        named = [name for name in KINDS if name in self.raw]
+        if not named:
+            tables = [f"[{name}]" for name in KINDS]
+            accepted = f"one of {', '.join(tables[:-1])} or {tables[-1]}: what leads from the chain pin to the spring"
+            self.problems.append(Problem("chain", None, "nothing", accepted, "missing"))
+            return Found()
+        for name in named[1:]:
+            accepted = f"a design without it; or without [{named[0]}]"
+            self.problems.append(Problem(name, None, f"[{named[0]}] and [{name}]", accepted, "two far ends"))
+        kind, mechanism = KINDS[named[0]], self._table(MechanismTable, "mechanism")
+        raw = self._raw_table(kind.name)
+        source = Source(raw, self.catalogue, self._material, mechanism.crank_radius, mechanism.link_length)
+        if isinstance(self.raw[kind.name], dict):
+            found = kind.read(self.tables[kind.name], source)
+        else:
+            found = Found()  # said already
+        self.problems += found.problems
+        self.defaults.assumed += found.assumed
+        if len(named) > 1:
+            return Found()
+        if found.far_end is not None:
+            self._check_the_tables_of(found.far_end)
+        return found
 
-    def _pitch_radius(self, chain: Chain | None) -> float | None:
+    def _check_the_tables_of(self, far_end: FarEnd) -> None:
+        """A sheave where the far end runs over one, and neither that nor a chain end where it does not."""
+        if far_end.over_sheave:
+            self.problems += plausible.missing_keys(("sheave",), self.raw.get("sheave"), plausible.OF_A_SHEAVE)
+            return
+        for name in ("sheave", "chain_end"):
+            if name in self.raw:
+                text = f"a {far_end.noun} has none"
+                self.problems.append(
+                    Problem(name, None, f"[{name}]", f"a design without it; see [{far_end.table}]", text)
+                )
+
+    def _pitch_radius(self, far_end: FarEnd | None) -> float | None:
         given = self._table(SheaveTable, "sheave").pitch_radius
         if given is not None or "pitch_radius" in self._raw_table("sheave"):
             return given
-        return None if chain is None else 2.5 * chain.pitch
+        return None if far_end is None else far_end.usual_sheave[0]
 
     def _load_own_materials(self) -> None:
         rows = self.raw.get("materials", {})
@@ -286,8 +318,10 @@ class _Draft:
         if wanted in self.catalogue.materials:
             return self.catalogue.materials[wanted]
         names = [*self.own_materials, *self.catalogue.materials]
-        near = nearest(wanted, names)
-        accepted = f"{near} (the nearest); " if near else ""
+        hint = listed_material(wanted, self.catalogue.materials)
+        if hint is None and (near := nearest(wanted, names)):
+            hint = f"{near} (the nearest)"
+        accepted = f"{hint}; " if hint else ""
         accepted += f"one of {', '.join(names)}; or a table [materials.NAME] of one's own"
         self.problems.append(Problem(f"{table}.{key}", None, written(wanted), accepted, "not listed"))
         return None

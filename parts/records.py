@@ -9,7 +9,6 @@ from typing import Literal, TypeVar, cast
 
 import numpy as np
 
-from parts.chosen_chain import PRACTICE
 from parts.design import (
     Assumed,
     Enclosure,
@@ -24,6 +23,7 @@ from parts.design import (
     StopWish,
     Targets,
 )
+from parts.far_ends.base import PRACTICE, FarEnd
 from parts.schema import (
     DesignTable,
     EnclosureTable,
@@ -101,13 +101,13 @@ def mechanism(given: MechanismTable, defaults: Defaults) -> Mechanism:
     )
 
 
-def sheave(given: SheaveTable, pitch_radius: float, defaults: Defaults) -> Sheave:
+def sheave(given: SheaveTable, pitch_radius: float, far_end: FarEnd, defaults: Defaults) -> Sheave:
     """``center`` must be there; ``pitch_radius`` is the given one or the default."""
     if given.exit_angle is None:
-        why = "the chain goes back the way it came"
+        why = f"the {far_end.noun} goes back the way it came"
         defaults.assumed.append(Assumed("sheave.exit_angle", "half a wrap", "text", why))
     wrap: Literal["left", "right"] = "left"
-    defaults.take("sheave.pitch_radius", given.pitch_radius, pitch_radius, "length", f"2.5 chain pitches, {PRACTICE}")
+    defaults.take("sheave.pitch_radius", given.pitch_radius, pitch_radius, "length", far_end.usual_sheave[1])
     return Sheave(
         center=given.center or (0.0, 0.0),
         pitch_radius=pitch_radius,
@@ -159,14 +159,14 @@ def friction(given: FrictionTable, defaults: Defaults) -> Friction:
     )
 
 
-def targets(given: TargetsTable, defaults: Defaults) -> Targets:
+def targets(given: TargetsTable, far_end: FarEnd, defaults: Defaults) -> Targets:
     def factor(key: str, value: float | None, usual: float, why: str) -> float:
         return defaults.take(f"targets.{key}", value, usual, "number", why)
 
     return Targets(
         shock_factor=factor("shock_factor", given.shock_factor, 1.25, PRACTICE),
         load_share=factor("load_share", given.load_share, 0.6, f"two discs never turn quite together, {PRACTICE}"),
-        chain=factor("chain", given.chain, 5.0, PRACTICE),
+        chain=factor("chain", given.chain, *far_end.usual_factor),
         ultimate=factor("ultimate", given.ultimate, 2.4, "ASME BTH-1 design category A: fracture 1.20 Nd"),
         yield_=factor("yield", given.yield_, 2.0, "ASME BTH-1 design category A: Nd = 2.00"),
     )

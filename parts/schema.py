@@ -10,8 +10,9 @@ import re
 from collections.abc import Iterable, Mapping
 from typing import TYPE_CHECKING, Annotated, Literal, TypeVar, get_args
 
-from pydantic import BaseModel, ConfigDict, Field, PlainValidator, ValidationError
+from pydantic import Field, PlainValidator, ValidationError
 
+from parts.far_ends.registry import KINDS
 from parts.problems import Problem, Refused, key_of, nearest, written
 from parts.schema_values import (
     Coefficient,
@@ -27,6 +28,7 @@ from parts.schema_values import (
     SafetyTarget,
     SpringPoint,
     Stress,
+    Table,
     Text,
     file_format,
     number,
@@ -38,10 +40,6 @@ if TYPE_CHECKING:
     from pydantic_core import ErrorDetails
 
 NOT_YET = ("drive", "process", "tolerances")
-
-
-class Table(BaseModel):
-    model_config = ConfigDict(extra="forbid", strict=True, frozen=True)
 
 
 T = TypeVar("T", bound=Table)
@@ -83,24 +81,6 @@ class SpringTable(Table):
     most_draw: Length | None = None
 
 
-class ChainTable(Table):
-    designation: Text | None = None
-    kind: Literal["leaf", "roller"] | None = None
-    strands: Annotated[int | None, Field(ge=1, le=3)] = None
-    slack: LengthOrNone | None = None
-    run_to_spring: LengthOrNone | None = None
-    min_tensile_strength: Annotated[float | None, quantity("force", least=1, most=1e9)] = None
-    pitch: Length | None = None
-    width_over_pins: Length | None = None
-    plate_height: Length | None = None
-    plate_thickness: Length | None = None
-    pin_diameter: Length | None = None
-    inner_width: Length | None = None
-    inner_link_width: Length | None = None
-    lacing: Annotated[list[Annotated[int, Field(ge=1, le=12)]] | None, Field(min_length=2, max_length=2)] = None
-    mass_per_metre: Annotated[float | None, quantity("mass_per_length", least=0, most=1e4)] = None
-
-
 class DiscTable(Table):
     outer_diameter: Length | None = None
     thickness: Length | None = None
@@ -140,6 +120,7 @@ class PinTable(Table):
 
 class ChainEndTable(Table):
     width: Length | None = None
+    height: Length | None = None
     pin_diameter: Length | None = None
     material: Text | None = None
 
@@ -237,7 +218,7 @@ TABLES: Mapping[str, type[Table]] = {
     "mechanism": MechanismTable,
     "sheave": SheaveTable,
     "spring": SpringTable,
-    "chain": ChainTable,
+    **{kind.name: kind.table for kind in KINDS.values()},
     "disc": DiscTable,
     "link": LinkTable,
     "stop": StopTable,

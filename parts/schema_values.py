@@ -5,13 +5,20 @@ from __future__ import annotations
 import re
 from typing import Annotated
 
-from pydantic import Field, PlainValidator
+from pydantic import BaseModel, ConfigDict, Field, PlainValidator
 
 from parts.fits import classes_of, fit_classes
 from parts.problems import Refused, nearest, written
 from parts.quantities import KINDS, factor, read_quantity
 
 NEWEST_FORMAT = 1
+
+
+class Table(BaseModel):
+    """One table of a design file: no key that is not known, no value that has to be guessed at."""
+
+    model_config = ConfigDict(extra="forbid", strict=True, frozen=True)
+
 
 _NAME = re.compile(r"[A-Za-z0-9_][A-Za-z0-9_.-]{0,39}")
 _RESERVED = re.compile(r"(?i:con|prn|aux|nul|com[0-9]|lpt[0-9])(\..*)?")

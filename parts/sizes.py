@@ -128,8 +128,8 @@ class Running:
 
     shaft: ShaftSizes
     main_bearing: BearingSizes
-    sheave_bearing: BearingSizes
-    sheave_pin: SheavePinSizes
+    sheave_bearing: BearingSizes | None  # None, as the pin, where the far end does not run over a sheave
+    sheave_pin: SheavePinSizes | None
 
 
 @dataclass(frozen=True, slots=True)

@@ -72,7 +72,7 @@ def chain_spacers(design: Design, sizes: Sizes, stack: Stack) -> list[Part]:
         return []
     bore = pin.middle_diameter + LOOSE
     # wide enough to bear on, and clear of the plates at the chain's end
-    clear = 2 * (end.length - design.chain.plate_height / 2) - 1.0
+    clear = 2 * (end.length - design.far_end.height / 2) - 1.0
     outer = max(bore + 2 * LEAST_WALL, min(WIDE * pin.middle_diameter, end.height, clear))
     depth = end.width / 2 + END_PLAY / 2
     at = (design.mechanism.link_length, 0.0)

@@ -9,7 +9,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Literal
 
-from parts.design import Chain
+from parts.far_ends.base import FarEnd
 
 
 @dataclass(frozen=True, slots=True)
@@ -74,8 +74,8 @@ class Stack:
 def make_stack(
     kind: Literal["twin", "single"],
     load_share: float,
-    chain: Chain,
-    chain_end_width: float,
+    far_end: FarEnd,
+    end_width: float,
     plate_gap: float,
     link_thickness: float,
     disc_thickness: float,
@@ -88,7 +88,7 @@ def make_stack(
         load_share=load_share if twin else 1.0,
         chain_pin_support="double shear" if twin else "cantilever",
         crank_pin_headed=not twin,
-        chain_plane_width=max(chain.width_over_pins, chain_end_width) + 2 * plate_gap,
+        chain_plane_width=max(far_end.plane_width, end_width) + 2 * plate_gap,
         plate_gap=plate_gap,
         link_thickness=link_thickness,
         disc_thickness=disc_thickness,

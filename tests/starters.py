@@ -3,36 +3,68 @@
 from __future__ import annotations
 
 import re
+from collections.abc import Mapping
 from pathlib import Path
 
 from exporters.starters import starters
+from loads.chain_study import ChainStudy
 from loads.examine import Examination, examine
+from parts.design import Assumed
 
 NAMES = tuple(s.name for s in starters())
+
+
+def study_of(e: Examination) -> ChainStudy:
+    """The study of what runs over the sheave, of a design that has one."""
+    assert e.chain is not None
+    return e.chain
 
 
 def text_of(name: str) -> str:
     return next(s.text for s in starters() if s.name == name)
 
 
+def put(text: str, table: str, key: str, value: str | None) -> str:
+    """A design's text with ``key = value`` put into a table, or taken out where the value is None."""
+    text = re.sub(
+        rf"(?ms)(^\[{re.escape(table)}\]\n(?:(?!^\[)[^\n]*\n)*?){key} *=(?: \[ *(?:#[^\n]*)?\n.*?^\]|[^\n]*)\n",
+        r"\1",
+        text,
+        count=1,
+    )
+    if value is None:
+        return text
+    if f"[{table}]\n" in text:
+        return text.replace(f"[{table}]\n", f"[{table}]\n{key} = {value}\n", 1)
+    return f"{text}\n[{table}]\n{key} = {value}\n"
+
+
 def changed(name: str, **values: str | None) -> str:
     """A starter's text with ``table__key="value"`` put in, or taken out where the value is None."""
-    text = text_of(name)
+    return put_all(text_of(name), values)
+
+
+def put_all(text: str, values: Mapping[str, str | None]) -> str:
+    """A design's text with every ``table__key`` put in or taken out."""
     for where, value in values.items():
         table, key = where.split("__")
-        text = re.sub(
-            rf"(?ms)(^\[{table}\]\n(?:(?!^\[)[^\n]*\n)*?){key} *=(?: \[ *(?:#[^\n]*)?\n.*?^\]|[^\n]*)\n",
-            r"\1",
-            text,
-            count=1,
-        )
-        if value is None:
-            continue
-        if f"[{table}]\n" in text:
-            text = text.replace(f"[{table}]\n", f"[{table}]\n{key} = {value}\n", 1)
-        else:
-            text += f"\n[{table}]\n{key} = {value}\n"
+        text = put(text, table, key, value)
     return text
+
+
+def settled(folder: Path, name: str) -> str:
+    """A starter's text with every size and choice that it leaves out written in, so that nothing is proportioned anew."""
+    text = text_of(name)
+    for row in examined(folder, text).assumed:
+        table, key = row.key.rsplit(".", 1)
+        text = put(text, table, key, _written(row))
+    return text
+
+
+def _written(row: Assumed) -> str:
+    if row.quantity in ("text", "angle"):
+        return f'"{row.value}"' if row.quantity == "text" else f'"{row.value} rad"'
+    return str(int(row.value) if row.quantity == "count" else row.value)
 
 
 def examined(folder: Path, text: str) -> Examination:

@@ -6,12 +6,12 @@ from collections.abc import Callable
 
 import numpy as np
 
-from loads.checks import bearings, chain, disc, eyes, fit, link, pins, press, room, shaft, sheave, stop
+from loads.checks import bearings, disc, eyes, far_end, fit, link, pins, press, room, shaft, stop
 from loads.checks.context import Context
 from loads.records import Check
 
 FAMILIES: tuple[Callable[[Context], list[Check]], ...] = (
-    chain.check,
+    far_end.check,
     pins.check,
     eyes.check,
     link.check,
@@ -20,7 +20,6 @@ FAMILIES: tuple[Callable[[Context], list[Check]], ...] = (
     disc.check,
     shaft.check,
     bearings.check,
-    sheave.check,
     room.check,
     fit.check,
 )

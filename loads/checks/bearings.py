@@ -59,7 +59,7 @@ def bearing_checks(
 
 
 def check(c: Context) -> list[Check]:
-    """Both bearings of one main shaft, and the sheave's."""
+    """Both bearings of one main shaft; a sheave's goes with its far end."""
     run = c.running
     hub = c.site("main_bearing", "hub_face")
     load = shaft_load(hub.force, hub.moment, run.shaft.overhang, run.shaft.bearing_spacing)
@@ -68,13 +68,4 @@ def check(c: Context) -> list[Check]:
     rows = []
     for site, force in (("first", load.first), ("second", load.second)):
         rows += bearing_checks(c, "main_bearing", site, run.main_bearing, length_of(force), disc)
-    radius = c.design.sheave.pitch_radius
-    wheel = None if disc is None or radius <= 0.0 else disc * np.abs(_pull_rate(c)) / radius
-    force = length_of(c.site("sheave_pin", "journal").force)
-    return rows + bearing_checks(c, "sheave_bearing", "bore", run.sheave_bearing, force, wheel)
-
-
-def _pull_rate(c: Context) -> Floats:
-    """dp/dθ in mm a radian: torque over tension."""
-    tension = length_of(c.members.chain_on_pin)
-    return np.asarray(np.where(tension > 0.0, c.members.torque / np.maximum(tension, 1e-9), 0.0))
+    return rows

@@ -221,18 +221,25 @@ def eye_checks(c: Context, eye: Eye, force: Floats, moment: Floats) -> list[Chec
 
 
 def _around(c: Context, eye: Eye, along: Floats, outward: Floats) -> Around:
-    """What the plate's outline and other holes leave around an eye; a direction that comes often is met once."""
+    """What the plate's outline and other holes leave around an eye, all directions met in one go.
+
+    A direction that stays the same all the way is met once, and its room is one element long.
+    """
     plate = c.plate(eye.plate)
     hole = next(h for h in plate.holes if h.name == eye.hole)
-    beside = [outward + math.pi / 2.0, outward - math.pi / 2.0, outward]
-    wanted = np.round(np.concatenate([np.atleast_1d(x) for x in (along, *beside)]), 12)
-    angles, back = np.unique(wanted, return_inverse=True)
-    met = edge_distance(plate, hole.center, angles, holes=True, skip=(eye.hole,)) - hole.diameter / 2.0
+    force, out = _once(along), _once(outward)
+    directions = np.round(np.concatenate([force, out + math.pi / 2.0, out - math.pi / 2.0, out]), 12)
+    met = edge_distance(plate, hole.center, directions, holes=True, skip=(eye.hole,)) - hole.diameter / 2.0
     # a ray that meets no edge starts outside the part: a hole there has no material round it
-    room = np.where(np.isfinite(met), np.maximum(met, 0.0), 0.0)[back]
-    n, k = along.size, np.atleast_1d(outward).size
+    room = np.where(np.isfinite(met), np.maximum(met, 0.0), 0.0)
+    n, k = force.size, out.size
     left, right, ahead = room[n : n + k], room[n + k : n + 2 * k], room[n + 2 * k :]
     return Around(room[:n], np.minimum(left, right), ahead)
+
+
+def _once(angles: Floats) -> Floats:
+    several = np.atleast_1d(angles)
+    return several[:1] if np.all(several == several[0]) else several
 
 
 def largest_play(fit: str, nominal: float) -> float:
@@ -265,6 +272,7 @@ def check(c: Context) -> list[Check]:
     pressed, hangs = largest_play(fits.chain_pin_link, chain_d), largest_play(fits.chain_end, middle)
     own = largest_play(CHAINS_OWN_PIN, end.pin_diameter)
     disc, steel = z.disc.material, link.material
+    plate, far_hole = c.design.far_end.part, c.design.far_end.far_hole
     # fmt: off
     eyes = [
         (Eye("crank_disc", "crank_disc", "crank_pin_hole", t, in_disc, crank_d, held, crank_yield, disc, t, math.pi, False),
@@ -275,10 +283,10 @@ def check(c: Context) -> list[Check]:
         (Eye("swing_link", "swing_link", "chain_pin_eye", link.thickness, at_chain, chain_d, pressed, chain_yield, steel,
              link.thickness, math.pi, False, oblique=True),
          chain_eye.force, chain_eye.moment),
-        (Eye("chain_end", "chain_end", "chain_pin_eye", end.width, end.width, middle, hangs, chain_yield, end.material,
+        (Eye(plate, plate, "chain_pin_eye", end.width, end.width, middle, hangs, chain_yield, end.material,
              end.width, 0.0, True),
          -tension, none),
-        (Eye("chain_end", "chain_end", "chain_hole", meat, meat, end.pin_diameter, own, end_yield, end.material, end.width,
+        (Eye(plate, plate, far_hole, meat, meat, end.pin_diameter, own, end_yield, end.material, end.width,
              math.pi, False),
          tension, none),
     ]

@@ -6,10 +6,9 @@ from dataclasses import replace
 
 from loads.checks.context import COMMON, Context
 from loads.records import Check
-from parts.crank_disc import HEAD_BELOW
-from parts.hardware import cap_screw
 from parts.outline import Plate
 from parts.shape import Web, least_web, sound
+from parts.stop_layout import floor_under_head
 
 WEB_OVER_HOLE = 0.25  # least web beside a hole as a share of its diameter
 LEAST_WEB = 2.0  # mm
@@ -19,7 +18,7 @@ GEOMETRY = "geometry of the design"
 
 def check(c: Context) -> list[Check]:
     """All checks of shape and room."""
-    return [*_plates(c), *_gap(c), *_sinks(c), *_press(c), *_stop(c), *_spring(c), *_start(c), *_clashes(c)]
+    return [*_plates(c), *_gap(c), *_sinks(c), *_press(c), *_stop(c), *_spring(c), *_clashes(c)]
 
 
 def _gap(c: Context) -> list[Check]:
@@ -89,11 +88,10 @@ def _sinks(c: Context) -> list[Check]:
         )
     ]
     if c.sizes.stop.style == "block":
-        screw = cap_screw(c.sizes.stop.bolt_thread)
         rows.append(
             c.shape_check(
                 "crank_disc", "stop_bolt_sink", "floor under the stop's bolt heads", 0.3 * disc.thickness,
-                max(disc.thickness - screw.head_height - HEAD_BELOW, 0.0), "mm",
+                floor_under_head(disc.thickness, c.sizes.stop.bolt_thread), "mm",
                 "a third of the thickness stays under heads that lie below the back, where the hub seats", COMMON,
             )
         )  # fmt: skip
@@ -192,7 +190,7 @@ def _spring(c: Context) -> list[Check]:
     most = c.design.spring.most_draw
     if most is None:
         return []
-    drawn = float(c.past.figures.most_pull) - c.design.chain.slack
+    drawn = float(c.past.figures.most_pull) - c.design.far_end.slack
     return [
         c.shape_check(
             "spring",
@@ -203,24 +201,6 @@ def _spring(c: Context) -> list[Check]:
             "mm",
             "draw at the end of winding against what the spring bears",
             "the spring's maker, as given in the design",
-        )
-    ]
-
-
-def _start(c: Context) -> list[Check]:
-    """Room between the chain end and the sheave when the link points at it."""
-    m, end, chain = c.design.mechanism, c.sizes.chain_end, c.design.chain
-    reach = m.crank_radius + m.link_length + end.length + chain.pitch
-    return [
-        c.shape_check(
-            "chain_end",
-            "chain_hole",
-            "clear of the sheave at the start",
-            reach,
-            float(c.past.machine.sheave_distance),
-            "mm",
-            "chain end and one pitch of chain lie before the sheave",
-            COMMON,
         )
     ]
 

@@ -166,7 +166,7 @@ def running_checks(c: Context) -> list[Check]:
     rows = []
     for part, site, fit, d in (
         ("swing_link", "crank_pin_eye", z.fits.crank_pin_link, z.crank_pin.diameter),
-        ("chain_end", "chain_pin_eye", z.fits.chain_end, z.chain_pin.middle_diameter),
+        (c.design.far_end.part, "chain_pin_eye", z.fits.chain_end, z.chain_pin.middle_diameter),
     ):
         if covers(d):
             rows.append(

@@ -9,6 +9,7 @@ from loads.checks.eyes import bearing
 from loads.checks.fit import GEOMETRY
 from loads.records import Check
 from parts.hardware import cap_screw, cap_screws
+from parts.sizes import BearingSizes
 
 LOOSE_HOLE = 1.15  # of the screw's clearance hole, that a bolt hole may be
 LEAST_SPIGOT = 5.0  # mm
@@ -110,10 +111,13 @@ def _shaft(c: Context) -> list[Check]:
 
 def _bushes(c: Context) -> list[Check]:
     rows = []
-    for part, bush, on, room in (
-        ("main_bearing", c.running.main_bearing, c.running.shaft.diameter, None),
-        ("sheave_bearing", c.running.sheave_bearing, c.running.sheave_pin.diameter, c.running.sheave_pin.hub),
-    ):
+    run = c.running
+    bushes: list[tuple[str, BearingSizes, float, float | None]] = [
+        ("main_bearing", run.main_bearing, run.shaft.diameter, None)
+    ]
+    if run.sheave_bearing is not None and run.sheave_pin is not None:
+        bushes.append(("sheave_bearing", run.sheave_bearing, run.sheave_pin.diameter, run.sheave_pin.hub))
+    for part, bush, on, room in bushes:
         if bush.kind != "plain":
             continue
         larger, smaller = max(bush.diameter, on), min(bush.diameter, on)
@@ -147,6 +151,8 @@ def _bushes(c: Context) -> list[Check]:
 
 def _cheeks(c: Context) -> list[Check]:
     pin = c.running.sheave_pin
+    if pin is None:
+        return []
     force = length_of(c.site("sheave_pin", "journal").force) / 2.0
     f_y = min(CHEEK_YIELD, pin.material.yield_strength(pin.diameter))
     return [
@@ -167,10 +173,12 @@ def _cheeks(c: Context) -> list[Check]:
 def _sheave(c: Context) -> list[Check]:
     """Disc and link beside the sheave: its cheeks are wider than the chain, so they stand apart seen along the axis."""
     sheave, m = c.design.sheave, c.design.mechanism
+    if sheave is None:
+        return []
     away = float(np.hypot(*sheave.center))
-    rim = sheave.pitch_radius + c.design.chain.plate_height / 2.0
+    rim = sheave.pitch_radius + c.design.far_end.thickness_on_sheave / 2.0
     reach = m.crank_radius + m.link_length + c.sizes.link.width / 2.0
-    how = "apart seen along the axis, sheave taken to the chain's outer edge"
+    how = "apart seen along the axis, sheave taken to the outer edge of what runs on it"
     return [
         c.shape_check(
             "crank_disc",

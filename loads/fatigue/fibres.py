@@ -12,13 +12,13 @@ from dataclasses import dataclass
 import numpy as np
 
 from loads.checks.concentration import PETERSON
-from loads.checks.context import BEAM, Context
+from loads.checks.context import BEAM, COMMON, Context
 from loads.checks.link import rectangle_torsion_stress
 from loads.checks.pins import double_shear_moment, section_modulus
 from loads.checks.shaft import torque_of
-from loads.fatigue.data import press_fit
+from loads.fatigue.data import keyseat, press_fit
 from loads.fatigue.notches import edge_stress, outward_concentration, step_concentration
-from loads.fatigue.strength import AXIAL, notch_factor, rectangle_diameter, size_factor
+from loads.fatigue.strength import AXIAL, notch_factor, rectangle_diameter, size_factor, torsion_notch_factor
 from parts.design import Floats, Material
 from parts.shape import edge_distance
 from parts.sizes import ShaftSizes
@@ -26,7 +26,8 @@ from parts.sizes import ShaftSizes
 ROUND = np.radians(np.arange(0.0, 360.0, 15.0))
 SHIGLEY = "Shigley, 9th edition, chapter 6"
 HOLE = "stress along the hole's edge by finite elements of this project, no published source"
-FRETTING = "fretting between pin and hole is not in it"
+FRETTING = "fretting between pin and hole, and the stress of a fit, are not in it"
+MESH = "without the drive's own mesh force"
 TILT = "; a stub pin's tilt presses the hole straight-line through its depth, which is on the safe side for a tight pin"
 
 
@@ -54,6 +55,8 @@ def sites(c: Context) -> Iterator[Site]:
     yield from _stop(c)
     if c.sizes.running is not None:
         yield _main_shaft(c, c.sizes.running.shaft)
+        if c.sizes.running.shaft.drive == "key":
+            yield _keyseat(c, c.sizes.running.shaft)
 
 
 def _stop_section(c: Context) -> Site:
@@ -131,11 +134,12 @@ def _eyes(c: Context) -> Iterator[Site]:
             c, "crank_disc", "stop_seat", seat.force, seat.moment, disc.thickness, disc.material, disc.thickness,
             math.atan2(center[1], center[0]),
         )  # fmt: skip
+    far = c.design.far_end
     pull = np.linalg.norm(c.members.chain_on_pin, axis=0)
     along = np.stack([pull, np.zeros_like(pull), np.zeros_like(pull)])
     meat = max(end.width - 2.0 * sum(b - a for a, b in end.slots), 1e-3)
-    yield _eye(c, "chain_end", "chain_pin_eye", -along, 0.0 * along, end.width, end.material, end.width, math.pi)
-    yield _eye(c, "chain_end", "chain_hole", along, 0.0 * along, meat, end.material, end.width, 0.0)
+    yield _eye(c, far.part, "chain_pin_eye", -along, 0.0 * along, end.width, end.material, end.width, math.pi)
+    yield _eye(c, far.part, far.far_hole, along, 0.0 * along, meat, end.material, end.width, 0.0)
 
 
 def _pin(
@@ -145,6 +149,13 @@ def _pin(
     stress = k_f * (np.sin(ROUND)[:, None] * moment[0] - np.cos(ROUND)[:, None] * moment[1]) / float(section_modulus(d))
     shown = f"fibres all round, M/W of {d:.3g} mm, {how}K_f {k_f:.3g}"
     return Site(part, site, stress, material, d, "pins", float(size_factor(d)), shown, f"{SHIGLEY}; {source}")
+
+
+def _pressed(part: str, site: str, moment: Floats, d: float, material: Material) -> Site:
+    """A section at the edge of the hole that a pin is pressed into."""
+    fit = press_fit()
+    k_f = fit.k_f(material.ultimate_strength(d))
+    return _pin(part, site, moment, d, k_f, k_f, material, "press fit with fretting, ", fit.source)
 
 
 def _notched(c: Context, part: str, site: str, moment: Floats, small: float, large: float, m: Material) -> Site:
@@ -172,13 +183,11 @@ def _cross(force: Floats, arm: float) -> Floats:
 
 
 def _pins(c: Context) -> Iterator[Site]:
-    crank, chain, fit = c.sizes.crank_pin, c.sizes.chain_pin, press_fit()
+    crank, chain = c.sizes.crank_pin, c.sizes.chain_pin
     root, journal = c.site("crank_pin", "root"), c.site("crank_pin", "journal")
     to_face = c.stack.pin_root_arm / (c.stack.disc_middle - c.stack.link_middle)
     at_face = (root.moment + journal.moment) * to_face - journal.moment
-    yield _pin(
-        "crank_pin", "root", at_face, crank.diameter, fit.k_f, fit.k_f, crank.material, "press fit, ", fit.source
-    )
+    yield _pressed("crank_pin", "root", at_face, crank.diameter, crank.material)
     on_pin = c.site("chain_pin", "journal").force
     if c.stack.chain_pin_support == "double shear":
         inner = c.sizes.chain_end.width
@@ -199,10 +208,7 @@ def _pins(c: Context) -> Iterator[Site]:
         )
         return
     seat = min(chain.diameter, chain.collar_diameter)
-    yield _pin(
-        "chain_pin", "link_seat", _cross(on_pin, c.stack.chain_plane_width / 2.0), seat, fit.k_f, fit.k_f,
-        chain.material, "press fit, ", fit.source,
-    )  # fmt: skip
+    yield _pressed("chain_pin", "link_seat", _cross(on_pin, c.stack.chain_plane_width / 2.0), seat, chain.material)
     yield _notched(
         c, "chain_pin", "collar", _cross(on_pin, c.sizes.chain_end.width / 2.0),
         *_smaller(chain.middle_diameter, chain.collar_diameter), chain.material,
@@ -214,34 +220,64 @@ def _smaller(one: float, other: float) -> tuple[float, float]:
 
 
 def _stop(c: Context) -> Iterator[Site]:
-    stop, fit = c.sizes.stop, press_fit()
+    stop = c.sizes.stop
     push = c.site("stop", "contact").force
     if stop.style == "post":
         moment = _cross(push, c.stack.pin_root_arm)
-        yield _pin("stop", "root", moment, stop.diameter, fit.k_f, fit.k_f, stop.material, "press fit, ", fit.source)
+        yield _pressed("stop", "root", moment, stop.diameter, stop.material)
         return
     size = np.linalg.norm(push, axis=0)
     stress = 6.0 * size * c.stack.pin_root_arm / (stop.length * stop.width**2)
     yield Site(
         "stop", "root", np.stack([stress, -stress]), stop.material, stop.width, "pins",
         float(size_factor(rectangle_diameter(stop.length, stop.width))), "both edges of the block's foot, M/W",
-        f"{SHIGLEY}; {BEAM}", "bolts and dowels are not in it",
+        f"{SHIGLEY}; {BEAM}", "the holes in it and the rubbing of its foot are not in it",
     )  # fmt: skip
 
 
-def _main_shaft(c: Context, shaft: ShaftSizes) -> Site:
-    """The shaft at its first bearing, in its own frame, which turns with the disc: bending and torsion together.
+def _shaft_fibres(c: Context, arm: float, d: float, k_f: float, k_fs: float) -> Floats:
+    """Fibres all round the shaft ``arm`` mm behind the disc's back, in the disc's frame, which turns with it.
 
     √3 τ is added to the bending stress of each fibre, once with either sign: no less than the distortion energy of
-    both, whatever their phase.
+    both, whatever their phase. The torque turns round past the null, where the spring drives.
     """
-    hub, fit = c.site("crank_disc", "hub_face"), press_fit()
-    gx, gy = hub.moment[1] + shaft.overhang * hub.force[0], -hub.moment[0] + shaft.overhang * hub.force[1]
-    d, w = shaft.diameter, float(section_modulus(shaft.diameter))
-    bending = np.cos(ROUND)[:, None] * gx + np.sin(ROUND)[:, None] * gy
-    twist = math.sqrt(3.0) / 2.0 * torque_of(c)[0]
+    hub, w = c.site("crank_disc", "hub_face"), float(section_modulus(d))
+    gx, gy = hub.moment[1] + arm * hub.force[0], -hub.moment[0] + arm * hub.force[1]
+    bending = k_f / w * (np.cos(ROUND)[:, None] * gx + np.sin(ROUND)[:, None] * gy)
+    torque = np.copysign(torque_of(c)[0], c.members.torque_side)
+    twist = k_fs / w * math.sqrt(3.0) / 2.0 * torque
+    return np.vstack([bending + twist, bending - twist])
+
+
+def _main_shaft(c: Context, shaft: ShaftSizes) -> Site:
+    """The shaft at its first bearing: at the edge of a rolling bearing's ring as of a press fit.
+
+    In a plain bush, which presses on nothing, the least of that factor stands for edge pressure and shoulder.
+    """
+    d, fit = shaft.diameter, press_fit()
+    rolling = c.running.main_bearing.kind == "rolling"
+    k_f = fit.k_f(shaft.material.ultimate_strength(d)) if rolling else fit.least
+    seat = "press fit" if rolling else f"bush and shoulder, {COMMON}"
     return Site(
-        "main_shaft", "first_bearing", fit.k_f / w * np.vstack([bending + twist, bending - twist]), shaft.material, d,
-        "pins", float(size_factor(d)), f"fibres all round, M/W ± √3 T/(2 W) of {d:.3g} mm, press fit, K_f {fit.k_f:.3g}",
-        f"{SHIGLEY}; {fit.source}", "without the drive's own mesh force; the key's way is not in it",
+        "main_shaft", "first_bearing", _shaft_fibres(c, shaft.overhang, d, k_f, k_f), shaft.material, d,
+        "pins", float(size_factor(d)), f"fibres all round, M/W ± √3 T/(2 W) of {d:.3g} mm, {seat}, K_f {k_f:.3g}",
+        f"{SHIGLEY}; {fit.source if rolling else BEAM}", MESH,
+    )  # fmt: skip
+
+
+def _keyseat(c: Context, shaft: ShaftSizes) -> Site:
+    """The shaft at the inner end of the hub's key, wherever round the shaft that is.
+
+    A keyed hub frets as a pressed one does: in bending the larger of both factors.
+    """
+    d, fit, seat = shaft.diameter, press_fit(), keyseat()
+    s_ut, r = shaft.material.ultimate_strength(d), seat.r_over_d * d
+    k_f = max(float(notch_factor(seat.k_t, r, s_ut)), fit.k_f(s_ut))
+    k_fs = float(torsion_notch_factor(seat.k_ts, r, s_ut))
+    arm = min(shaft.key_length, shaft.overhang)
+    return Site(
+        "main_shaft", "key", _shaft_fibres(c, arm, d, k_f, k_fs), shaft.material, d, "pins", float(size_factor(d)),
+        f"fibres all round {arm:.3g} mm behind the disc, K_f M/W ± K_fs √3 T/(2 W) of {d:.3g} mm, end-milled keyseat, "
+        f"K_t {seat.k_t:g}, K_ts {seat.k_ts:g}, r {r:.3g} mm, hub's edge; K_f {k_f:.3g}, K_fs {k_fs:.3g}",
+        f"{SHIGLEY}; {seat.source}; {fit.source}", MESH,
     )  # fmt: skip

@@ -15,6 +15,7 @@ from numpy.typing import NDArray
 from loads.checks.context import COMMON, Context
 from loads.fatigue.counting import closed, count_cycles, most_cycles, padded, turning_points
 from loads.fatigue.data import chain_cycles, endurance, inspection, surface
+from loads.fatigue.fasteners import Fastened, fasteners
 from loads.fatigue.fibres import Site, sites
 from loads.fatigue.strength import (
     SNLine,
@@ -84,7 +85,9 @@ def fatigue_study(c: Context) -> FatigueStudy | None:
         [candidates(s.stress, line, wish.shots) for s, line in zip(looked_at, lines, strict=True)], wish.shots
     )
     found = [_judged(c, *row, wish) for row in zip(looked_at, lines, worst, strict=True)]
-    found.append(_chain(c, wish))
+    found += [_fastened(c, one, wish) for one in fasteners(c)]
+    if c.design.far_end.over_sheave:  # a tie is a plate, with eyes like the rest
+        found.append(_chain(c, wish))
     rows = tuple(row for row, _ in found)
     lives = [row.life for row in rows if row.life is not None]
     share, least = inspection()
@@ -206,6 +209,31 @@ def _judged(c: Context, site: Site, line: SNLine, worst: Worst, wish: Fatigue) -
     return row, _check(c, site.part, site.site, row.factor, _angle(c, site, worst), method, source, site.note)
 
 
+def _fastened(c: Context, one: Fastened, wish: Fatigue) -> tuple[FatigueRow, Check]:
+    """Bolts and dowels by their own lines, to which neither surface, size nor reliability is applied.
+
+    A preloaded joint has no factor beyond the growth at which it opens or its screw yields.
+    """
+    line, loaded = one.line, bool(np.max(one.amplitude, initial=0.0) > 0.0)
+    largest = int(np.argmax(one.amplitude)) if loaded else 0
+    amplitude, mean = (float(one.amplitude[largest]), float(one.mean[largest])) if loaded else (0.0, 0.0)
+    life = line.life(one.amplitude, one.count) if loaded else None
+    growth = line.growth(one.amplitude, one.count, wish.shots)
+    most = max(one.bound, 1.0)
+    factor = None if growth is None else min(growth, most)
+    row = FatigueRow(
+        part=one.part, site=one.site, life=life, factor=factor, endless=loaded and life is None,
+        endless_factor=min(line.endless / amplitude, most) if loaded else None,
+        life_factor=None if life is None else life / wish.shots, amplitude=amplitude, mean=mean,
+        cycles_a_shot=float(one.count.sum()), endurance_limit=line.endless, ultimate=one.ultimate, note=one.note,
+    )  # fmt: skip
+    method = (
+        f"rainflow, Miner; largest cycle {amplitude:.4g} about {mean:.4g} MPa, {line.limit:.4g} MPa at {line.cycles:g}, "
+        f"slope {line.slope:g}; {one.how}"
+    )
+    return row, _check(c, one.part, one.site, factor, one.at if loaded else None, method, one.source, one.note)
+
+
 def _angle(c: Context, site: Site, worst: Worst) -> int | None:
     """Index of the crank angle at which the worst fibre has its greatest stress, either way."""
     return int(np.argmax(np.abs(site.stress[worst.fibre]))) if len(worst.amplitude) else None
@@ -226,26 +254,26 @@ def _chain(c: Context, wish: Fatigue) -> tuple[FatigueRow, Check]:
 
     No chain is listed with a dynamic strength yet; without one in the design file the row has no factor.
     """
-    chain = c.design.chain
+    chain = c.design.far_end
     cycles, source = chain_cycles()
     pull = np.linalg.norm(c.members.chain_on_pin, axis=0)
     at, force = int(np.argmax(pull)), float(np.max(pull))
     rated = wish.chain_dynamic_strength
     if rated is None:
         note = "no rating: give the maker's dynamic strength as chain_dynamic_strength in [fatigue]"
-        blank = FatigueRow("chain", "strand", None, None, False, None, None, 0.0, 0.0, 1.0, 0.0, 0.0, note)
-        return blank, _check(c, "chain", "strand", None, None, "no rating, nothing was checked", COMMON, note)
+        blank = FatigueRow(chain.noun, "strand", None, None, False, None, None, 0.0, 0.0, 1.0, 0.0, 0.0, note)
+        return blank, _check(c, chain.noun, "strand", None, None, "no rating, nothing was checked", COMMON, note)
     slope = np.log10(rated / chain.min_tensile_strength) / np.log10(cycles)
     strength = rated if wish.shots >= cycles else chain.min_tensile_strength * wish.shots**slope
     endless = force <= rated
     life = None if endless else float((force / chain.min_tensile_strength) ** (1.0 / slope))
     factor = float(strength / force)
     row = FatigueRow(
-        "chain", "strand", life, factor, endless, rated / force, None if life is None else life / wish.shots,
+        chain.noun, "strand", life, factor, endless, rated / force, None if life is None else life / wish.shots,
         force / 2.0, force / 2.0, 1.0, rated, chain.min_tensile_strength, "N, not MPa",
     )  # fmt: skip
     method = (
         f"pull {force:.4g} N against {strength:.4g} N at {wish.shots:g} shots, from {chain.min_tensile_strength:.4g} N at "
         f"one to {rated:.4g} N at {cycles:g} (line between: {COMMON})"
     )
-    return row, _check(c, "chain", "strand", factor, at, method, source, "")
+    return row, _check(c, chain.noun, "strand", factor, at, method, source, "")

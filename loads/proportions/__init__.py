@@ -26,11 +26,12 @@ class _Proportioner(LinkSide, DriveSide):
     """Settles one design's sizes, in the order in which one needs another."""
 
     def settle(self) -> tuple[Sizes, Stack, tuple[Assumed, ...]]:
-        width, tongue, slots = self._end_width()
+        form = self._end_form()
+        width = form.width
         pair, link, bore, stop = self._link_and_stop(width)
         crank = self._crank_pin(pair)
         chain_pin = self._chain_pin(pair)
-        end = self._chain_end(pair, chain_pin, width, tongue, slots)
+        end = self._chain_end(pair, chain_pin, form)
         disc = self._disc(pair, link, stop, width, bore)
         stack = self.stack(width, link.thickness, disc.thickness)
         fits = self._fits(crank.diameter, chain_pin.diameter, stop, stack)

@@ -129,7 +129,10 @@ class Basis:
         # a block has dowels and tapped holes, which its hardened face does nothing for
         grade = design.stop.material or catalogue.materials[BAR]
         self.block_material = hardened(grade, design.stop.surface_yield, design.stop.case_depth, whole=False)
-        self.end_material = take("chain_end.material", design.chain_end.material, BAR, z)
+        far = design.far_end
+        self.end_material = take(
+            f"{far.part}.material", design.chain_end.material, PLATE if far.length_of_plate else BAR, z
+        )
         gap = 0.5 if design.mechanism.link_length < 60.0 else 1.0
         self.gap = self.ledger.take(
             "clearances.plate_gap", design.plate_gap, gap, "running gap of such plates; common practice, no source"
@@ -152,7 +155,7 @@ class Basis:
 
     def stack(self, end_width: float, link: float, disc: float) -> Stack:
         d = self.design
-        return make_stack(d.mechanism.stack, d.targets.load_share, d.chain, end_width, self.gap, link, disc)
+        return make_stack(d.mechanism.stack, d.targets.load_share, d.far_end, end_width, self.gap, link, disc)
 
     def within(self, sizes: Floats, material: Material) -> Floats:
         """The sizes (mm) that the material's table covers; the smallest of them where it covers none."""

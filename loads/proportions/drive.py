@@ -82,6 +82,8 @@ class DriveSide(DiscSide):
         force = self.loads.tension
         first = float(np.max(force * (1.0 + self._arm(stack, a) / b)))
         bearing = self._bearing("bearings.main", self.design.main_bearing, first, main.diameter, None)
+        if self.design.sheave is None:
+            return Running(main, bearing, None, None)
         pin = self._sheave_pin()
         load = float(np.max(self._sheave_force()))
         sheave = self._bearing("bearings.sheave", self.design.sheave_bearing, load, pin.diameter, pin.hub)
@@ -226,9 +228,9 @@ class DriveSide(DiscSide):
 
     def _sheave_pin(self) -> SheavePinSizes:
         wish, take = self.design.sheave_pin, self.ledger.take
-        chain = self.design.chain
+        far = self.design.far_end
         material = self.ledger.material("sheave.pin_material", wish.material, BAR, self.catalogue)
-        hub = round_up(value("sheave", "flange") * chain.width_over_pins, 1.0)
+        hub = round_up(value("sheave", "flange") * far.plane_width, 1.0)
         gap = value("sheave", "gap")
         cheek = take(
             "sheave.cheek", wish.cheek, max(round_up(value("sheave", "cheek") * hub, 1.0), 4.0),

@@ -10,6 +10,9 @@ import numpy as np
 from loads.checks import eyes, pins
 from loads.checks.link import link_rules
 from loads.checks.link_sections import LinkShape
+from loads.far_ends.behaviour import PlateUse
+from loads.far_ends.flexible import bridge_depth
+from loads.far_ends.registry import behaviour
 from loads.proportions.basis import (
     LEAST_LINK,
     LEAST_WIDTH,
@@ -23,7 +26,8 @@ from loads.proportions.basis import (
     sink_depth,
 )
 from parts.contact_lengths import chain_pin_in_link, crank_pin_in_link
-from parts.design import Floats
+from parts.design import Assumed, Floats
+from parts.far_ends.base import EndForm
 from parts.hardware import retaining_ring
 from parts.sizes import ChainEndSizes, ChainPinSizes, CrankPinSizes, LinkSizes
 
@@ -34,28 +38,30 @@ RUNNING, CLOSE = "H8/f7", "H7/h6"
 class LinkSide(Basis):
     """Chain end, link and pins, in the order in which one size needs another."""
 
-    def _end_width(self) -> tuple[float, float, tuple[tuple[float, float], ...]]:
-        chain, wish = self.design.chain, self.design.chain_end
-        if chain.kind == "roller":
-            tongue = chain.tongue_width
-            natural = (chain.strands - 1) * chain.strand_pitch + tongue
-            width = self.ledger.take(
-                "chain_end.width", wish.width, natural, "fills the room between the chain's outermost plates"
-            )
-            slots = strand_slots(chain.strands, chain.strand_pitch, tongue)
-            if width > natural + 1e-9:
-                slots = (*slots, (natural / 2.0, width / 2.0))
-            return width, min(tongue, width), slots
-        plates, finger = chain.lacing[1], math.floor(chain.tongue_width * 0.97 * 20.0) / 20.0
-        slot = chain.plate_thickness * 1.05 + 0.1
-        natural = (plates + 1) * finger + plates * slot
-        width = self.ledger.take(
-            "chain_end.width",
-            wish.width,
-            round_up(natural, 0.5),
-            "a finger beside each plate of the chain's last link",
-        )
-        return width, finger, leaf_slots(plates, finger, slot)
+    def _end_form(self) -> EndForm:
+        """The plate on the chain pin as the far end asks for it, as wide as the design has it."""
+        far, wish = self.design.far_end, self.design.chain_end
+        form = far.end_form()
+        use = behaviour(self.design).plate_use
+        if use is not None:
+            return self._tie_form(form, use)
+        width = self.ledger.take(f"{far.part}.width", wish.width, form.width, form.why)
+        slots = form.slots
+        # beside tongues that fill the room a wider plate is relieved; fingers and cheeks stay what they are
+        if far.tongues and width > form.width + 1e-9:
+            slots = (*slots, (form.width / 2.0, width / 2.0))
+        return replace(form, width=width, tongue=min(form.tongue, width), slots=slots)
+
+    def _tie_form(self, form: EndForm, use: PlateUse) -> EndForm:
+        """A tie's thickness: the least at which it is strong enough four times as wide as it is thick."""
+        far, steel, wish = self.design.far_end, self.end_material, self.design.chain_end
+        plates = self.within(self.plates, steel)
+        plates = plates[plates >= far.length_of_plate / LEAST_LINK / 4.0] if plates.size else plates
+        uses = np.array([float(use(self.design, t, np.array([4.0 * t]), steel, self.loads.whole)[0]) for t in plates])
+        best = float(plates[index(uses)]) if plates.size else float(self.plates[0])
+        why = "least at which a width of four thicknesses carries pull and push"
+        width = self.ledger.take(f"{far.part}.thickness", wish.width, best, why)
+        return replace(form, width=width, tongue=width)
 
     def _link_and_pins(self, end_width: float, thickness: float = 0.0) -> Pair:
         """Plate and pins that are smallest together, of plates of at least ``thickness`` mm."""
@@ -236,15 +242,15 @@ class LinkSide(Basis):
             max(1.5 * ring.groove_width, pair.middle - ring.groove_diameter), self.chain_pin_material,
         )  # fmt: skip
 
-    def _chain_end(
-        self, pair: Pair, pin: ChainPinSizes, width: float, tongue: float, slots: tuple[tuple[float, float], ...]
-    ) -> ChainEndSizes:
-        chain, wish = self.design.chain, self.design.chain_end
-        own = self.ledger.take("chain_end.pin_diameter", wish.pin_diameter, chain.pin_diameter, "the chain's own pin")
-        force = float(np.max(self.loads.whole))
+    def _chain_end(self, pair: Pair, pin: ChainPinSizes, form: EndForm) -> ChainEndSizes:
+        """The plate on the chain pin."""
+        far, wish, width = self.design.far_end, self.design.chain_end, form.width
+        own = self._own_pin(form)
+        pull = self.loads.whole
+        force = float(np.max(pull))
         f_y, f_u = self.end_material.yield_strength(width), self.end_material.ultimate_strength(width)
-        meat = width - 2.0 * sum(b - a for a, b in slots)
-        least = max(1.6 * pair.middle, 2.0 * own, chain.plate_height if slots else 0.0)
+        meat = width - 2.0 * sum(b - a for a, b in form.slots)
+        least = max(1.6 * pair.middle, 2.0 * own, form.least_height)
         h = np.arange(round_up(least, self.step), least + 300.0, self.step)
         use = np.zeros_like(h)
         hangs = self.design.fits.chain_end or RUNNING
@@ -254,31 +260,38 @@ class LinkSide(Basis):
             for rule in eyes.eye_rules(t, d, eyes.largest_play(fit, d), f_y, f_u, around):
                 target = self.yields if rule.by_yield else self.ultimate
                 use = np.maximum(use, force * target / np.maximum(rule.capacity, 1e-9))
-        height = first(h, use)
-        reach = 0.525 * chain.plate_height + 1.0
+        as_plate = behaviour(self.design).plate_use
+        if as_plate is not None:
+            use = np.maximum(use, as_plate(self.design, width, h, self.end_material, pull))
+        height = wish.height if wish.height is not None else first(h, use)
+        if as_plate is not None and wish.height is None:
+            why = "least at which eyes, section and strut reach their targets"
+            self.ledger.rows.append(Assumed(f"{far.part}.width", height, "length", why))
+        reach = form.reach + form.reach_of_pin * own
         beside = max(pair.middle / 2.0 + 0.35 * pair.middle, pin.collar_diameter / 2.0 + 2.0)
-        length = math.ceil((beside + reach) / chain.pitch) * chain.pitch
-        return ChainEndSizes(width, height, length, own, tongue, slots, height / 2.0 + reach, self.end_material)
+        span = far.pin_span(width, form.slots, self.gap)
+        if form.slots and span is not None:
+            beside = max(beside, pair.middle / 2.0 + bridge_depth(force, width, span[0], height, f_y / self.yields))
+        length = far.length_of_plate or math.ceil((beside + reach) / form.step) * form.step
+        return ChainEndSizes(
+            width, height, length, own, form.tongue, form.slots, height / 2.0 + reach, self.end_material
+        )
 
-
-def leaf_slots(plates: int, finger: float, slot: float) -> tuple[tuple[float, float], ...]:
-    """Where the slots for a leaf chain's plates lie, as distances from the block's middle (mm), both sides alike.
-
-    ``plates`` slots with a finger between each two; an odd number has one in the middle.
-    """
-    rows = [(0.0, slot / 2.0)] if plates % 2 else []
-    at = slot / 2.0 + finger if plates % 2 else finger / 2.0
-    for _ in range(plates // 2):
-        rows.append((at, at + slot))
-        at += slot + finger
-    return tuple(rows)
-
-
-def strand_slots(strands: int, pitch: float, tongue: float) -> tuple[tuple[float, float], ...]:
-    """Slots between the tongues of a roller chain's strands, as distances from the block's middle (mm)."""
-    if strands == 1:
-        return ()
-    gap = pitch - tongue
-    if strands % 2 == 0:
-        return ((0.0, gap / 2.0),)
-    return ((tongue / 2.0, tongue / 2.0 + gap),)
+    def _own_pin(self, form: EndForm) -> float:
+        """Diameter of the pin that joins the far end to the plate: its own, or one sized in double shear."""
+        far, wish = self.design.far_end, self.design.chain_end
+        span = far.pin_span(form.width, form.slots, self.gap)
+        key = f"{far.part}.pin_diameter"
+        if span is None:
+            return self.ledger.take(key, wish.pin_diameter, far.pin_diameter, f"the {far.noun}'s own pin")
+        force = float(np.max(self.loads.whole))
+        d = self.within(self.pins, self.chain_pin_material)
+        moment = float(pins.double_shear_moment(np.asarray(force), *span))
+        use = self.double_shear_use(d, self.chain_pin_material, force / 2.0, moment)
+        plate = self.end_material
+        use = np.maximum(
+            use, self.bearing_use(d, 2.0 * span[0] if form.slots else form.width, force, self.chain_pin_material, plate,
+                                  form.width, False)
+        )  # fmt: skip
+        why = "smallest at which shear, bending and bearing reach their targets"
+        return self.ledger.take(key, wish.pin_diameter, float(d[index(use)]), why)

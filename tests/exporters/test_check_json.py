@@ -11,7 +11,7 @@ from parts.quantities import KINDS, read_quantity
 from tests.exporters.examined import STARTERS, awkward, short, starter
 
 KEYS = [
-    "format", "design", "events", "cycle", "loads", "frame_forces", "checks", "assumed", "from_memory", "chain",
+    "format", "design", "events", "cycle", "loads", "frame_forces", "checks", "assumed", "from_memory", "far_end", "chain",
     "adjustment", "studies", "cautions", "holds",
 ]  # fmt: skip
 EVENTS = [

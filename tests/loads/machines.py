@@ -5,8 +5,15 @@ from __future__ import annotations
 import numpy as np
 from hypothesis import strategies as st
 
+from loads.lines import SheaveRun
 from loads.linkage import Linkage, make_linkage
 from loads.spring_law import SpringLaw
+
+
+def run_of(m: Linkage) -> SheaveRun:
+    """The sheave of a machine that has one."""
+    assert isinstance(m.far, SheaveRun)
+    return m.far
 
 
 def linear(preload: float, rate: float) -> SpringLaw:

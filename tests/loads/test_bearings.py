@@ -9,9 +9,11 @@ import numpy as np
 import pytest
 from anastruct import SystemElements
 
-from loads.checks import bearings, pins, sheave, stop
+from loads.checks import bearings, pins, stop
+from loads.far_ends.chain import least_running_diameter
 from loads.practice import key_for
 from tests.loads.test_press import metal
+from tests.parts.designs import chain_of
 from tests.starters import changed, examined, text_of
 
 
@@ -45,10 +47,10 @@ def test_contact_in_an_eye_is_hertz() -> None:
 
 
 def test_sheave_of_a_leaf_and_of_a_roller_chain(tmp_path: Path) -> None:
-    leaf = examined(tmp_path, text_of("impact-rig")).design.chain
-    roller = examined(tmp_path, text_of("soil-tamper")).design.chain
-    assert sheave.least_running_diameter(leaf) == 5 * leaf.pitch
-    assert sheave.least_running_diameter(roller) == pytest.approx(roller.pitch * 2.924, rel=1e-3)
+    leaf = chain_of(examined(tmp_path, text_of("impact-rig")).design)
+    roller = chain_of(examined(tmp_path, text_of("soil-tamper")).design)
+    assert least_running_diameter(leaf) == 5 * leaf.pitch
+    assert least_running_diameter(roller) == pytest.approx(roller.pitch * 2.924, rel=1e-3)
 
 
 def test_sheave_pin_carries_both_legs(tmp_path: Path) -> None:

@@ -3,9 +3,8 @@
 from __future__ import annotations
 
 from loads.catalogue import load_catalogue
-from parts.chosen_chain import build_chain, find_row
+from parts.far_ends.chain import ChainTable, build_chain, find_row
 from parts.problems import Problem
-from parts.schema import ChainTable
 
 
 def test_every_listed_chain_can_be_chosen() -> None:

@@ -18,13 +18,13 @@ from loads.chain_study import (
     angle_per_link,
     chain_study,
     whole,
-    with_slacks,
 )
 from loads.cycle import cycle
 from loads.examine import Examination
-from loads.linkage import linkage_of
+from loads.far_ends.registry import linkage_of
 from tests.loads.machines import TABLE
-from tests.starters import NAMES, changed, examined, text_of
+from tests.parts.designs import chain_of, sheave_of
+from tests.starters import NAMES, changed, examined, study_of, text_of
 
 FIGURES = (
     "draw_at_hold",
@@ -40,22 +40,22 @@ FIGURES = (
 @pytest.mark.parametrize("name", NAMES)
 def test_each_row_is_the_machine_with_that_slack(name: str, tmp_path: Path) -> None:
     e = examined(tmp_path, text_of(name))
-    assert len(e.chain.rows) > 5
-    for row in e.chain.rows:
+    assert len(study_of(e).rows) > 5
+    for row in study_of(e).rows:
         alone = cycle(replace(linkage_of(e.design), slack=np.asarray(row.slack)))
         for figure in FIGURES:
             assert getattr(row, figure) == pytest.approx(float(getattr(alone, figure)), rel=1e-7, abs=1e-6), figure
         assert float(alone.events.hold) == pytest.approx(float(e.figures.events.hold))
         assert row.hold_margin == e.design.mechanism.hold_margin
-    designed = e.chain.row(BY_DESIGN)
+    designed = study_of(e).row(BY_DESIGN)
     assert designed is not None
-    assert designed.slack == e.design.chain.slack
+    assert designed.slack == e.design.far_end.slack
     assert designed.stored_energy == pytest.approx(float(e.figures.stored_energy))
 
 
 @pytest.mark.parametrize("name", NAMES)
 def test_more_slack_draws_and_stores_less(name: str, tmp_path: Path) -> None:
-    rows = examined(tmp_path, text_of(name)).chain.rows
+    rows = study_of(examined(tmp_path, text_of(name))).rows
     slacks = [row.slack for row in rows]
     assert slacks == sorted(set(slacks))
     for less, more in pairwise(rows):
@@ -67,7 +67,7 @@ def test_more_slack_draws_and_stores_less(name: str, tmp_path: Path) -> None:
 def test_many_slacks_are_solved_in_one_call_for_tables_too() -> None:
     slacks = np.array([0.0, 4.0, 20.0])
     for machine in TABLE.values():
-        together = cycle(with_slacks(machine, slacks))
+        together = cycle(replace(machine.copies(slacks.shape), slack=slacks))
         for i, slack in enumerate(slacks):
             alone = cycle(replace(machine, slack=np.asarray(slack)))
             assert together.second_peak[i] == pytest.approx(float(alone.second_peak), rel=1e-7)
@@ -81,14 +81,15 @@ def straight_rig(tmp_path: Path, **more: str | None) -> Examination:
 def test_length_by_hand(tmp_path: Path) -> None:
     e = straight_rig(tmp_path, chain__run_to_spring='"300 mm"')
     # tangent from the disc axis to the sheave's pitch circle; link and crank in line; half a turn of the sheave
-    (x, y), radius, m = e.design.sheave.center, e.design.sheave.pitch_radius, e.design.mechanism
+    wheel, m = sheave_of(e.design), e.design.mechanism
+    (x, y), radius = wheel.center, wheel.pitch_radius
     straight = math.sqrt(x**2 + y**2 - radius**2) - m.crank_radius - m.link_length - e.sizes.chain_end.length
     taut = straight + math.pi * radius + 300.0
-    study = e.chain
+    study = study_of(e)
     assert study.straight == pytest.approx(straight)
     assert study.on_sheave == pytest.approx(math.pi * radius)
     assert study.taut_length == pytest.approx(taut)
-    pitch = e.design.chain.pitch
+    pitch = chain_of(e.design).pitch
     assert study.whole_pitches == math.ceil(taut / pitch)
     assert study.slack_of_whole == pytest.approx(math.ceil(taut / pitch) * pitch - taut)
     counted = [row for row in study.rows if row.pitches is not None]
@@ -101,7 +102,7 @@ def test_length_by_hand(tmp_path: Path) -> None:
 
 def test_without_the_run_the_steps_count_from_the_given_slack(tmp_path: Path) -> None:
     e = examined(tmp_path, changed("seed-thrower", chain__slack='"12 mm"'))
-    study, pitch = e.chain, e.design.chain.pitch
+    study, pitch = study_of(e), chain_of(e.design).pitch
     assert study.taut_length is None
     assert study.whole_pitches is None
     assert study.slack_of_whole is None
@@ -118,17 +119,17 @@ def test_no_row_draws_the_spring_beyond_its_table(tmp_path: Path) -> None:
     text = changed("impact-rig", chain__slack='"45 mm"', spring__table='[["0 mm", "0 N"], ["140 mm", "20 kN"]]')
     e = examined(tmp_path, text)
     most = float(e.figures.most_pull)
-    assert all(most - row.slack <= 140.0 + 1e-6 for row in e.chain.rows)
-    assert min(row.slack for row in e.chain.rows) < 45.0
+    assert all(most - row.slack <= 140.0 + 1e-6 for row in study_of(e).rows)
+    assert min(row.slack for row in study_of(e).rows) < 45.0
 
 
 def test_speed_is_compared_with_lifting_practice(tmp_path: Path) -> None:
     plain = examined(tmp_path, text_of("impact-rig"))
     # at its fastest the free link draws the chain at crank radius times speed, the chain line square to the crank
     r = plain.design.mechanism.crank_radius
-    assert plain.chain.most_reach == pytest.approx(r, rel=1e-4)
+    assert study_of(plain).most_reach == pytest.approx(r, rel=1e-4)
     limit = 500.0 / r * 30.0 / math.pi
-    assert plain.chain.limit_disc_speed * 30.0 / math.pi == pytest.approx(limit, rel=1e-4)
+    assert study_of(plain).limit_disc_speed * 30.0 / math.pi == pytest.approx(limit, rel=1e-4)
     assert any(f"{limit:.3g} rpm" in text and "no disc speed" in text for text in plain.cautions)
     for share, said in ((0.7, False), (1.5, True)):
         speed = f'"{share * limit:.6f} rpm"'
@@ -144,8 +145,8 @@ def test_speed_is_compared_with_lifting_practice(tmp_path: Path) -> None:
 def test_slack_taken_up_only_at_the_very_end(short_of: float, tmp_path: Path) -> None:
     most = float(examined(tmp_path, text_of("seed-thrower")).figures.most_pull)
     e = examined(tmp_path, changed("seed-thrower", chain__slack=f'"{most - short_of:.9f} mm"'))
-    assert all(math.isfinite(row.stored_energy) and row.draw_at_hold > 0.0 for row in e.chain.rows)
-    assert e.chain.limit_disc_speed > 0.0
+    assert all(math.isfinite(row.stored_energy) and row.draw_at_hold > 0.0 for row in study_of(e).rows)
+    assert study_of(e).limit_disc_speed > 0.0
     assert not any("inf" in text.split() for text in e.cautions)
 
 

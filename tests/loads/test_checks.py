@@ -59,30 +59,9 @@ def test_safety_factor_is_capacity_over_demand_and_no_demand_holds() -> None:
     assert idle.holds
 
 
+# five more of each starter, with all other sizes held, in test_weak_variants.py
 WEAK: dict[str, tuple[str, dict[str, str | None], set[tuple[str, str]], set[str]]] = {
     # name: starter, changes, what must fall short, parts that alone may fall short
-    "thin link": (
-        "impact-rig",
-        {
-            "link__thickness": '"4 mm"',
-            "crank_pin__diameter": '"14 mm"',
-            "chain_pin__diameter": '"14 mm"',
-            "link__width": '"28 mm"',
-        },
-        {("swing_link", "bearing")},
-        {"swing_link"},
-    ),
-    "slender link": (
-        "soil-tamper",
-        {
-            "link__thickness": '"2 mm"',
-            "link__width": '"16 mm"',
-            "chain_pin__diameter": '"6 mm"',
-            "crank_pin__diameter": '"6 mm"',
-        },
-        {("swing_link", "strut about the thin side")},
-        {"swing_link", "stop"},
-    ),
     "narrow link": (
         "impact-rig",
         {
@@ -93,24 +72,6 @@ WEAK: dict[str, tuple[str, dict[str, str | None], set[tuple[str, str]], set[str]
         },
         {("swing_link", "axial force with bending"), ("swing_link", "web")},
         {"swing_link"},
-    ),
-    "soft pin": (
-        "impact-rig",
-        {"crank_pin__diameter": '"14 mm"', "crank_pin__material": '"S235JR"', "disc__thickness": '"15 mm"'},
-        {("crank_pin", "pin bending"), ("crank_pin", "pin shear with bending")},
-        {"crank_pin", "swing_link", "crank_disc"},
-    ),
-    "small chain": (
-        "impact-rig",
-        {"chain__designation": '"LH1622"', "chain_end__pin_diameter": None},
-        {("chain", "tension")},
-        {"chain"},
-    ),
-    "short edge": (
-        "impact-rig",
-        {"disc__outer_diameter": '"135 mm"', "stop__width": '"18 mm"'},
-        {("crank_disc", "web")},
-        {"crank_disc", "stop"},
     ),
     "thick pin in the chain": (
         "seed-thrower",
@@ -151,7 +112,7 @@ def test_a_row_can_be_followed_by_hand(tmp_path: Path) -> None:
     tension = float(np.interp(drawn, table[0], table[1])) / 0.97 * 1.25
     chain = next(c for c in e.checks if (c.part, c.check) == ("chain", "tension"))
     assert chain.demand == pytest.approx(tension, rel=1e-9)
-    assert chain.capacity == e.design.chain.min_tensile_strength
+    assert chain.capacity == e.design.far_end.min_tensile_strength
     shear = next(c for c in e.checks if (c.part, c.check) == ("crank_pin", "pin shear"))
     assert shear.demand == pytest.approx(float(e.figures.largest_crank_pin) * 1.25 * 0.6, rel=1e-9)
     d = e.sizes.crank_pin.diameter
@@ -215,6 +176,9 @@ STRENGTH = {
     "post bending",
     "post shear with bending",
     "stays down under its bolts",
+    "punching under the bolt heads",
+    "thread stripping",
+    "bolt breaks before its thread strips",
     "bearing of the dowels",
     "fit stress",
     "interference",

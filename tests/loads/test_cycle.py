@@ -13,7 +13,7 @@ from scipy.integrate import quad
 from loads.cycle import Cycle, cycle, events, trace, trace_angles
 from loads.linkage import Linkage, make_linkage, state
 from loads.spring_law import SpringLaw, spring_energy, spring_force
-from tests.loads.machines import FAR, TABLE, linear, machine, machines
+from tests.loads.machines import FAR, TABLE, linear, machine, machines, run_of
 
 # catch, null, release (deg), pull (mm), first peak (N·m) at (deg), second peak at, least between, then the largest chain
 # tension, crank pin force, stop force (N) and link bending (N·m). Made by a separate calculation: virtual work on the
@@ -131,8 +131,8 @@ def test_work_is_energy_for_every_design(m: Linkage) -> None:
 @given(machines())
 def test_a_mirrored_design_has_the_same_scalars(m: Linkage) -> None:
     """Every y negated, left and right exchanged, cw for ccw."""
-    phi, t0, radius = m.start_direction * m.turn, m.sheave_distance, m.pitch_radius
-    w = m.wrap_side
+    run = run_of(m)
+    phi, t0, radius, w = m.start_direction * m.turn, run.distance, run.pitch_radius, run.wrap_side
     x, y = t0 * np.cos(phi) + w * radius * np.sin(phi), t0 * np.sin(phi) - w * radius * np.cos(phi)
 
     def build(turn: float) -> Linkage:

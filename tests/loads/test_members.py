@@ -8,12 +8,13 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from loads.cycle import cycle
+from loads.far_ends.chain import BEHAVIOUR as CHAIN
 from loads.linkage import Linkage
 from loads.members import History, history, load_rows, members, site_histories
 from loads.records import CASES, FIRST_HALF, HOLD, SECOND_HALF, SiteHistory
 from parts.design import Floats, Targets
 from parts.stack import Side, Stack
-from tests.loads.machines import TABLE, machines
+from tests.loads.machines import TABLE, machines, run_of
 
 SHOCK, SHARE = 1.25, 0.6
 
@@ -34,7 +35,7 @@ Sites = dict[tuple[str, str], SiteHistory]
 def solved(m: Linkage, twin: bool) -> tuple[History, Stack, Sites]:
     past = history(m, cycle(m))
     stack = stack_of(twin)
-    return past, stack, {(s.part, s.site): s for s in site_histories(past, stack, TARGETS, 40.0)}
+    return past, stack, {(s.part, s.site): s for s in site_histories(past, stack, TARGETS, 40.0, CHAIN.sites)}
 
 
 def cross(at: tuple[Floats | float, Floats | float, Floats | float], force: Floats) -> Floats:
@@ -119,11 +120,12 @@ def test_the_frame_takes_nothing_but_couples_that_cancel(m: Linkage, twin: bool)
     bearing, sheave, anchor, drive = (at["frame", s] for s in ("main_bearing", "sheave", "spring_anchor", "drive"))
     scale = float(np.abs(bearing.force).max())
     balanced(bearing.force + sheave.force + anchor.force, scale)
-    phi, t0, radius = float(m.start_direction * m.turn), float(m.sheave_distance), float(m.pitch_radius)
-    w, turn = float(m.wrap_side), float(m.turn)
+    run = run_of(m)
+    phi, t0, radius = float(m.start_direction * m.turn), float(run.distance), float(run.pitch_radius)
+    w, turn = float(run.wrap_side), float(m.turn)
     cx, cy = t0 * np.cos(phi) + w * radius * np.sin(phi), t0 * np.sin(phi) - w * radius * np.cos(phi)
     # the chain leaves the sheave at a quarter turn from its direction there, on the outer side
-    out = -w * float(m.start_wrap) + phi
+    out = -w * float(run.start_wrap) + phi
     ex, ey = np.cos(out), np.sin(out)
     leave = (cx - w * radius * ey, turn * (cy + w * radius * ex), 0.0)
     moment = cross((cx, turn * cy, 0.0), sheave.force) + sheave.moment + cross(leave, anchor.force) + drive.moment

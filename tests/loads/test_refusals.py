@@ -132,3 +132,30 @@ def test_a_mechanism_without_its_events_is_named(tmp_path: Path) -> None:
     (problem,) = mechanism_problems(e.design, replace(e.figures, events=early))
     assert problem.key == "mechanism.hold_margin"
     assert problem.accepted.startswith("less than 17")
+
+
+@pytest.mark.parametrize("units", ["metric", "us"])
+def test_sizes_are_refused_in_the_design_s_units(units: str, tmp_path: Path) -> None:
+    """20 mm are 0.787402 in, 16 mm 0.629921 in; the millimetres stay where they were."""
+    changes = {"link__material": '"S500MC"', "link__thickness": '"20 mm"', "design__units": f'"{units}"'}
+    with pytest.raises(DesignRefused) as refusal:
+        examined(tmp_path, changed("impact-rig", **changes))
+    (problem,) = refusal.value.problems
+    us = units == "us"
+    assert problem.found == f"20 mm{' (0.787402 in)' if us else ''} of S500MC"
+    assert f"up to 16 mm{' (0.629921 in)' if us else ''}, what" in problem.accepted
+
+
+@pytest.mark.parametrize(
+    "changes",
+    [
+        {"spring__table": '[["0 mm", "0 N"], ["100 mm", "10 kN"]]'},
+        {"chain_end__material": '"C15E"'},
+    ],
+)
+def test_every_length_of_a_us_refusal_has_its_inches(changes: dict[str, str], tmp_path: Path) -> None:
+    with pytest.raises(DesignRefused) as refusal:
+        examined(tmp_path, changed("impact-rig", design__units='"us"', **changes))
+    (problem,) = refusal.value.problems
+    for text in (problem.found, problem.accepted):
+        assert text.count(" mm") == text.count(" in)") > 0
