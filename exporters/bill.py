@@ -10,7 +10,7 @@ import io
 from collections.abc import Mapping
 from functools import lru_cache
 from importlib.resources import files
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING
 
 from exporters.check_json import FORMAT, Row, check_row, design_row, dump, frame_rows, load_rows
 from exporters.from_memory import from_memory
@@ -94,10 +94,14 @@ def bill_html(e: Examination, masses: Mapping[str, float] | None = None) -> str:
 
 @lru_cache(maxsize=1)
 def _template() -> Template:
-    from jinja2 import Environment, StrictUndefined
+    from jinja2 import Environment, FunctionLoader, StrictUndefined
 
     environment = Environment(
-        autoescape=True, undefined=StrictUndefined, trim_blocks=True, lstrip_blocks=True, keep_trailing_newline=True
+        loader=FunctionLoader(lambda name: (files("templates") / name).read_text(encoding="utf-8")),
+        autoescape=True,
+        undefined=StrictUndefined,
+        trim_blocks=True,
+        lstrip_blocks=True,
+        keep_trailing_newline=True,
     )
-    text: Any = (files("templates") / "bill.html").read_text(encoding="utf-8")
-    return environment.from_string(text)
+    return environment.get_template("bill.html")

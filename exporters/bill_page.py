@@ -8,13 +8,13 @@ from typing import Any
 from exporters.chain_rows import chain_values
 from exporters.check_json import FRAME, degrees
 from exporters.curves import cycle_picture
-from exporters.fatigue_rows import fatigue_values
 from exporters.from_memory import from_memory
 from exporters.mechanism_picture import frame_picture, mechanism_picture
 from exporters.part_pictures import part_picture, row_text
 from exporters.parts_list import items
 from exporters.shown import TITLES, Shown, angle, factor_text, figures
 from exporters.site_places import made, worst_rows
+from exporters.studies.registry import study_sections
 from loads.examine import Examination
 from loads.records import Check, LoadRow
 from parts.design import Assumed
@@ -63,7 +63,7 @@ def page(e: Examination, masses: Mapping[str, float] | None = None) -> Values:
         "items": [{"item": row, "mass": _mass(row.mass_kg, shown)} for row in items(e, masses)],
         "assumed": [_assumed(row, shown) for row in e.assumed],
         "chain": chain_values(e),
-        "fatigue": fatigue_values(e),
+        "studies": study_sections(e),
         "memory": from_memory(e),
     }
 

@@ -135,8 +135,8 @@ def cycle_row(e: Examination) -> Row:
 def check_document(e: Examination) -> Row:
     """Everything that is known of the machine, in the order in which it is printed."""
     from exporters.chain_rows import adjustment_rows, chain_row, far_end_row  # here, for they round by this module
-    from exporters.fatigue_rows import studies
     from exporters.from_memory import from_memory
+    from exporters.studies.registry import study_rows
 
     units = e.design.identity.units
     return {
@@ -152,7 +152,7 @@ def check_document(e: Examination) -> Row:
         "far_end": far_end_row(e),
         "chain": chain_row(e),
         "adjustment": adjustment_rows(e),
-        "studies": studies(e),
+        "studies": study_rows(e),
         "cautions": list(e.cautions),
         "holds": bool(e.holds),
     }

@@ -18,6 +18,8 @@ from exporters.manifest import may_be_replaced, write_manifest
 from exporters.modeller import need_modeller
 from exporters.parts_list import parts_list_csv
 from exporters.shown import shortfall
+from exporters.studies.leaving import Step
+from exporters.studies.registry import study_files
 from exporters.swap import beside, put_in_place, recover
 from loads.examine import Examination, directions
 from loads.linkage import state
@@ -28,7 +30,6 @@ from parts.shape import sound
 if TYPE_CHECKING:
     from cadquery import Face, Shape
 
-Step = tuple[str, Callable[[Path], None]]
 Report = Callable[[str, int, int], None]
 
 
@@ -160,6 +161,7 @@ def _steps(e: Examination, made: _Made) -> Iterator[Step]:
     yield text("bill_of_loads.json", lambda: bill_json(e))
     yield text("bill_of_loads.html", lambda: bill_html(e))
     yield text("parts_list.csv", lambda: parts_list_csv(e, masses))
+    yield from study_files(e)
 
 
 def is_sound(part: Part) -> bool:

@@ -7,8 +7,8 @@ from textwrap import wrap
 from typing import TYPE_CHECKING
 
 from exporters.chain_rows import adjustment_line
-from exporters.fatigue_rows import fatigue_line
 from exporters.shown import Shown, angle, factor_text
+from exporters.studies.registry import study_lines
 from loads.examine import Examination
 from loads.records import Check
 from parts.design import Floats
@@ -51,7 +51,7 @@ def print_summary(e: Examination, console: Console) -> None:
     say()
     count = len(e.assumed)
     say(f"{count} value{' was' if count == 1 else 's were'} assumed; check --json lists them with their reasons.")
-    for text in (adjustment_line(e), fatigue_line(e)):
+    for text in (adjustment_line(e), *study_lines(e)):
         for line in wrap(text or "", width):
             say(line)
     say()

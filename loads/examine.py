@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from collections.abc import Mapping
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 
 import numpy as np
@@ -14,12 +15,13 @@ from loads.checks import all_checks
 from loads.checks.context import Context
 from loads.cycle import Cycle, cycle
 from loads.far_ends.registry import behaviour, linkage_of
-from loads.fatigue.study import FatigueStudy, fatigue_cautions, fatigue_study
 from loads.linkage import Linkage, State, chain_line, free_line, state
 from loads.members import History, history, load_rows, members, site_histories
 from loads.proportions import SPIGOT, proportion
 from loads.records import Check, LoadRow, SiteHistory
 from loads.refusals import given_size_problems, mechanism_problems, proportioned_size_problems
+from loads.studies import Study
+from loads.studies.registry import run_studies
 from parts.clash import Findings, Sweep, sweep
 from parts.design import Assumed, Design, Floats
 from parts.outline import Part
@@ -50,7 +52,7 @@ class Examination:
     chain: ChainStudy | None  # None for a tie
     assumed: tuple[Assumed, ...]
     cautions: tuple[str, ...]
-    fatigue: FatigueStudy | None = None  # where the design has its table
+    studies: Mapping[str, Study] = field(default_factory=dict)  # those that ran, by name
 
     @property
     def holds(self) -> bool:
@@ -94,8 +96,8 @@ def examine(path: Path) -> Examination:
         members=members(past, stack, design.targets),
         sites={(s.part, s.site): s for s in sites}, findings=findings,
     )  # fmt: skip
-    fatigue = fatigue_study(context)
-    checks = all_checks(context, () if fatigue is None else fatigue.checks)
+    studies = run_studies(context)
+    checks = all_checks(context, tuple(row for study in studies.values() for row in study.checks))
     chain = chain_study(design, machine, figures, past, sizes)
     return Examination(
         design=design, machine=machine, figures=figures, past=past, sizes=sizes, stack=stack, parts=parts, sites=sites,
@@ -104,9 +106,9 @@ def examine(path: Path) -> Examination:
         cautions=(
             *cautions(design, figures, sizes, checks),
             *chain_cautions(design.far_end.noun, chain),
-            *fatigue_cautions(fatigue),
+            *(text for study in studies.values() for text in study.cautions),
         ),
-        fatigue=fatigue,
+        studies=studies,
     )  # fmt: skip
 
 

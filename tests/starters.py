@@ -9,6 +9,7 @@ from pathlib import Path
 from exporters.starters import starters
 from loads.chain_study import ChainStudy
 from loads.examine import Examination, examine
+from loads.fatigue.study import FatigueStudy
 from parts.design import Assumed
 
 NAMES = tuple(s.name for s in starters())
@@ -18,6 +19,13 @@ def study_of(e: Examination) -> ChainStudy:
     """The study of what runs over the sheave, of a design that has one."""
     assert e.chain is not None
     return e.chain
+
+
+def fatigue_of(e: Examination) -> FatigueStudy:
+    """The study of fatigue, of a design that asks for it."""
+    found = e.studies["fatigue"]
+    assert isinstance(found, FatigueStudy)
+    return found
 
 
 def text_of(name: str) -> str:

@@ -68,6 +68,14 @@ class FatigueStudy:
     inspect_after: int | None  # a suggestion; None: nothing wears out
 
     @property
+    def cautions(self) -> tuple[str, ...]:
+        """What is to be said beside the lives."""
+        return (
+            f"Fatigue lives are estimates for parts as drawn, {100.0 * self.reliability:.6g} % of which hold; {RELEASE}.",
+            "Fatigue: corrosion, wear, fretting in running joints, nicks and welds are not in the lives.",
+        )
+
+    @property
     def weakest(self) -> FatigueRow | None:
         """The row with the least factor."""
         loaded = [row for row in self.rows if row.factor is not None]
@@ -94,16 +102,6 @@ def fatigue_study(c: Context) -> FatigueStudy | None:
     after = max(least, int(share * min(min(lives), wish.shots))) if lives else None
     checks = tuple(check for _, check in found)
     return FatigueStudy(wish.shots, wish.reliability, wish.surfaces, rows, checks, after)
-
-
-def fatigue_cautions(study: FatigueStudy | None) -> tuple[str, ...]:
-    """What is to be said beside the lives, where the study ran."""
-    if study is None:
-        return ()
-    return (
-        f"Fatigue lives are estimates for parts as drawn, {100.0 * study.reliability:.6g} % of which hold; {RELEASE}.",
-        "Fatigue: corrosion, wear, fretting in running joints, nicks and welds are not in the lives.",
-    )
 
 
 def line_of(site: Site, wish: Fatigue) -> SNLine:

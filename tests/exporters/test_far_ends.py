@@ -5,8 +5,8 @@ from __future__ import annotations
 import json
 from pathlib import Path
 
-from ezdxf.filemanagement import readfile
 import pytest
+from ezdxf.filemanagement import readfile
 
 from exporters.bill import bill_html
 from exporters.check_json import check_document, dump

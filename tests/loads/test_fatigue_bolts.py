@@ -34,6 +34,7 @@ from loads.fatigue.study import FatigueRow
 from parts.design import Floats
 from parts.hardware import cap_screw
 from tests.loads.test_fatigue_study import context, fibres, machine, row
+from tests.starters import fatigue_of
 
 KSI = 6.894757
 
@@ -187,9 +188,7 @@ def test_a_keyseat() -> None:
 
 
 def fatigue_rows(name: str, **values: str) -> tuple[FatigueRow, ...]:
-    found = machine(name, **values).fatigue
-    assert found is not None
-    return found.rows
+    return fatigue_of(machine(name, **values)).rows
 
 
 def test_the_torque_turns_round_past_the_null() -> None:

@@ -6,15 +6,16 @@ from typing import Any
 
 from exporters.check_json import Row, tidy
 from exporters.shown import Shown, figures
+from exporters.studies.leaving import Leaving
 from loads.examine import Examination
 from loads.fatigue.study import FatigueRow, FatigueStudy
 
 NO_RATING, FOR_EVER = "no rating", "for ever"
 
 
-def studies(e: Examination) -> Row:
-    """``studies`` of check.json: the studies that ran, by name."""
-    return {} if e.fatigue is None else {"fatigue": [fatigue_row(row, e.fatigue) for row in e.fatigue.rows]}
+def fatigue_rows(e: Examination, study: FatigueStudy) -> list[Row]:
+    """One row a feature."""
+    return [fatigue_row(row, study) for row in study.rows]
 
 
 def fatigue_row(row: FatigueRow, study: FatigueStudy) -> Row:
@@ -59,11 +60,8 @@ def life_text(row: FatigueRow) -> str:
     return FOR_EVER if row.life is None else shots_text(row.life)
 
 
-def fatigue_line(e: Examination) -> str | None:
-    """The weakest feature and the suggestion of when to look, in one or two sentences; None where the study did not run."""
-    study = e.fatigue
-    if study is None:
-        return None
+def fatigue_line(e: Examination, study: FatigueStudy) -> str:
+    """The weakest feature and the suggestion of when to look, in one or two sentences."""
     weakest = study.weakest
     if weakest is None:
         return "Fatigue: no stress."
@@ -84,11 +82,8 @@ def suggestion(study: FatigueStudy) -> str:
     return f" A suggestion: look for cracks after {shots_text(study.inspect_after)} shots, and then as often."
 
 
-def fatigue_values(e: Examination) -> dict[str, Any] | None:
-    """What the page's section says; None where the study did not run."""
-    study = e.fatigue
-    if study is None:
-        return None
+def fatigue_values(e: Examination, study: FatigueStudy) -> dict[str, Any]:
+    """What the page's section says."""
     shown = Shown(e.design.identity.units)
     return {
         "shots": whole(study.shots),
@@ -119,3 +114,6 @@ def _shown_row(row: FatigueRow, shown: Shown) -> dict[str, str]:
         "cycles": figures(row.cycles_a_shot, 3) if stressed else "–", "limit": stress(row.endurance_limit),
         "ultimate": stress(row.ultimate), "note": row.note,
     }  # fmt: skip
+
+
+LEAVING = Leaving("Fatigue", fatigue_rows, fatigue_values, fatigue_line)

@@ -10,10 +10,12 @@ from rich.console import Console
 
 from exporters.bill import bill_html, bill_json
 from exporters.check_json import check_document, dump
-from exporters.fatigue_rows import FOR_EVER, fatigue_line, fatigue_values, life_text, shots_text
+from exporters.studies import fatigue
+from exporters.studies.fatigue import FOR_EVER, life_text, shots_text
 from exporters.summary import print_summary
 from loads.examine import Examination
 from tests.exporters.examined import starter
+from tests.starters import fatigue_of
 
 
 def tired(*lines: str, shots: str = "20000") -> Examination:
@@ -67,7 +69,7 @@ def test_the_page_in_us_units() -> None:
     e = starter(
         "impact-rig", ('units = "metric"', 'units = "us"'), ("[targets]\n", "[fatigue]\nshots = 20000\n\n[targets]\n")
     )
-    values = fatigue_values(e)
+    values = fatigue.fatigue_values(e, fatigue_of(e))
     assert values is not None
     assert values["stress"] == "ksi"
     assert "Amplitude ksi" in bill_html(e)
@@ -83,12 +85,12 @@ def test_the_summary_has_a_line() -> None:
     assert "The chain has no fatigue rating." in text
     assert "A suggestion: look for cracks after" in text
     assert all(len(line) <= 80 for line in out.getvalue().splitlines())
-    assert fatigue_line(starter("impact-rig")) is None
+    assert "fatigue" not in starter("impact-rig").studies
 
 
 def test_a_rated_chain_is_not_said_to_have_no_rating() -> None:
     e = tired('chain_dynamic_strength = "60 kN"')
-    assert "no fatigue rating" not in (fatigue_line(e) or "")
+    assert "no fatigue rating" not in fatigue.fatigue_line(e, fatigue_of(e))
     row = next(r for r in check_document(e)["studies"]["fatigue"] if r["part"] == "chain")
     assert row["factor"] > 0
     assert row["amplitude_MPa"] is None
@@ -111,13 +113,13 @@ def test_shots_as_people_read_them(value: float, text: str) -> None:
 
 
 def test_the_stated_shots_are_not_rounded() -> None:
-    text = fatigue_line(tired(shots="12345")) or ""
+    e = tired(shots="12345")
+    text = fatigue.fatigue_line(e, fatigue_of(e))
     assert "12 345 shots" in text.replace("\N{NO-BREAK SPACE}", " ")
 
 
 def test_what_lives_for_ever_says_so() -> None:
     e = starter("soil-tamper")
-    assert e.fatigue is not None
-    assert all(life_text(row) == FOR_EVER for row in e.fatigue.rows if row.factor is not None)
-    assert e.fatigue.inspect_after is None
-    assert "suggestion" not in (fatigue_line(e) or "")
+    assert all(life_text(row) == FOR_EVER for row in fatigue_of(e).rows if row.factor is not None)
+    assert fatigue_of(e).inspect_after is None
+    assert "suggestion" not in fatigue.fatigue_line(e, fatigue_of(e))
