@@ -19,7 +19,7 @@ from exporters.shown import shortfall
 from loads.examine import Examination
 
 if TYPE_CHECKING:
-    from jinja2 import Template
+    from jinja2 import Environment
 
 COLUMNS = (
     "row", "part", "site", "check", "case", "crank_angle_deg", "frame", "fx_N", "fy_N", "fz_N", "mx_Nm", "my_Nm",
@@ -89,14 +89,15 @@ def bill_html(e: Examination, masses: Mapping[str, float] | None = None) -> str:
     """
     from exporters.bill_page import page  # draws, so only when a page is wanted
 
-    return _template().render(page(e, masses))
+    return environment().get_template("bill.html").render(page(e, masses))
 
 
 @lru_cache(maxsize=1)
-def _template() -> Template:
+def environment() -> Environment:
+    """Where pages come from: templates of the package, everything put into them escaped."""
     from jinja2 import Environment, FunctionLoader, StrictUndefined
 
-    environment = Environment(
+    return Environment(
         loader=FunctionLoader(lambda name: (files("templates") / name).read_text(encoding="utf-8")),
         autoescape=True,
         undefined=StrictUndefined,
@@ -104,4 +105,3 @@ def _template() -> Template:
         lstrip_blocks=True,
         keep_trailing_newline=True,
     )
-    return environment.get_template("bill.html")

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
+from exporters import svg
 from exporters.chain_rows import chain_values
 from exporters.check_json import FRAME, degrees
 from exporters.curves import cycle_picture
@@ -45,18 +46,18 @@ def page(e: Examination, masses: Mapping[str, float] | None = None) -> Values:
         "governing": [check_values(row, shown) for row in under_load(e)[:GOVERNING]],
         "tightest": [check_values(row, shown) for row in of_shape(e)[:TIGHTEST]],
         "key_figures": key_figures(e),
-        "curve": _markup(cycle_picture(e)),
+        "curve": svg.markup(cycle_picture(e)),
         "positions": [
             {
                 "name": name,
                 "angle": angle(float(theta)),
-                "picture": _markup(mechanism_picture(e, f"at-{name}", name, float(theta))),
+                "picture": svg.markup(mechanism_picture(e, f"at-{name}", name, float(theta))),
             }
             for name, theta in (("catch", at.catch), ("hold", at.hold))
         ],
         "sections": [_section(e, key, shown) for key in section_keys(e)],
         "frame": {
-            "picture": _markup(frame_picture(e)),
+            "picture": svg.markup(frame_picture(e)),
             "captions": [row_text(e, row) for row in worst_rows(e, FRAME)],
             "rows": _load_values(e, FRAME, shown),
         },
@@ -103,7 +104,7 @@ def _section(e: Examination, key: str, shown: Shown) -> Values:
         "title": part_title(e, key),
         "made": part,
         "twin": len(e.stack.sides) > 1 and key in ONE_SIDE,
-        "picture": None if picture is None else _markup(picture),
+        "picture": None if picture is None else svg.markup(picture),
         "captions": [row_text(e, row) for row in worst_rows(e, key)],
         "rows": _load_values(e, key, shown),
         "checks": [check_values(row, shown) for row in e.checks if row.part == key],
@@ -194,10 +195,3 @@ def _assumed(row: Assumed, shown: Shown) -> Values:
 
 def _mass(kilograms: float | None, shown: Shown) -> str:
     return "" if kilograms is None else shown.number(kilograms, "mass", 3)
-
-
-def _markup(text: str) -> Any:
-    """Pictures are markup of our own with everything in them escaped."""
-    from markupsafe import Markup
-
-    return Markup(text)

@@ -63,7 +63,7 @@ def far_end_row(e: Examination) -> Row:
         "confirmed": far.confirmed,
     }
     if isinstance(far, Tie):
-        line = e.past.state.line
+        line = e.past.winding.line
         assert isinstance(line, TiedLine)
         kind = "slide" if isinstance(far.output, Slide) else "rocker"
         row |= {
@@ -183,13 +183,13 @@ def chain_values(e: Examination) -> dict[str, Any]:
 
 
 def _tied(e: Examination) -> tuple[str, str]:
-    line = e.past.state.line
+    line = e.past.winding.line
     assert isinstance(line, TiedLine)
     i = int(np.argmin(line.closing))
     turned = math.acos(min(1.0, max(-1.0, float(line.closing[i]))))
     return (
         "greatest angle between it and the way of its pin",
-        f"{angle(turned)}° at {angle(float(e.past.state.crank_angle[i]))}°",
+        f"{angle(turned)}° at {angle(float(e.past.winding.crank_angle[i]))}°",
     )
 
 

@@ -19,6 +19,7 @@ from exporters.terminal import (
     HOLDS,
     REFUSED,
     Shown,
+    ShownLate,
     console,
     emit,
     finish,
@@ -113,8 +114,10 @@ def check(
 ) -> None:
     from exporters.check_json import check_document, dump
     from loads.examine import examine
+    from loads.studies.progress import listening
 
-    e = examine(file)
+    with ShownLate() as report, listening(report):
+        e = examine(file)
     if json:
         emit(dump(check_document(e)))
     else:
@@ -132,8 +135,10 @@ def build(
 ) -> None:
     from exporters.folder import build_folder
     from loads.examine import examine
+    from loads.studies.progress import listening
 
-    e = examine(file)
+    with ShownLate() as report, listening(report):
+        e = examine(file)
     target = to or Path(f"{e.design.identity.number}-{e.design.identity.revision}")
     try:
         with Shown() as report:

@@ -12,7 +12,7 @@ from loads.examine import Examination
 from parts.design import Floats
 from parts.outline import Point
 
-Across = Callable[[float], float]  # from crank angle (rad) to x in the picture
+Across = Callable[[float], float]  # from crank angle (rad), or what else is drawn over, to x in the picture
 
 WIDE, HIGH = 400.0, 120.0
 LEFT, TOP, BETWEEN = 46.0, 66.0, 34.0
@@ -40,9 +40,9 @@ def cycle_picture(e: Examination) -> str:
     tension = [shown.value(float(v), "force") for v in s.tension]
     bottom = TOP + 2 * HIGH + BETWEEN
     body = _events(e, x_of, bottom)
-    body += _panel(s.crank_angle, torque, x_of, TOP, f"torque on the disc, {shown.unit('torque')}", _peaks(e, shown))
+    body += panel(s.crank_angle, torque, x_of, TOP, f"torque on the disc, {shown.unit('torque')}", _peaks(e, shown))
     most = ((float(f.largest_tension_at), shown.value(float(f.largest_tension), "force")),)
-    body += _panel(
+    body += panel(
         s.crank_angle,
         tension,
         x_of,
@@ -85,10 +85,10 @@ def _events(e: Examination, x_of: Across, bottom: float) -> list[str]:
     return body
 
 
-def _panel(
-    theta: Floats, values: Sequence[float], x_of: Across, top: float, name: str, marks: tuple[Point, ...]
+def panel(
+    across: Floats, values: Sequence[float], x_of: Across, top: float, name: str, marks: tuple[Point, ...]
 ) -> list[str]:
-    """One curve with its axis; ``marks`` are (crank angle, value) of what is worth a dot."""
+    """One curve over ``across`` with its axis; ``marks`` are (across, value) of what is worth a dot."""
     ticks = nice_ticks(min(0.0, *values), max(values))
     low, high = ticks[0], ticks[-1]
 
@@ -99,7 +99,7 @@ def _panel(
     for tick in ticks:
         body.append(svg.line((LEFT, y_of(tick)), (LEFT + WIDE, y_of(tick)), "zero" if tick == 0.0 else "grid"))
         body.append(svg.label(svg.Label(LEFT - 5.0, y_of(tick), (tick_text(tick),), "end"), "small"))
-    body.append(svg.polyline([(x_of(float(a)), y_of(v)) for a, v in zip(theta, values, strict=True)], "curve"))
+    body.append(svg.polyline([(x_of(float(a)), y_of(v)) for a, v in zip(across, values, strict=True)], "curve"))
     for a, value in marks:
         body.append(svg.circle((x_of(a), y_of(value)), 3.4, "load-head"))
     return body

@@ -5,7 +5,7 @@ Layers: CUT outlines and holes to size, PILOT holes under size, DRILL centre mar
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from contextlib import contextmanager
 from itertools import pairwise
 from math import atan, degrees, dist, hypot, isclose, pi, sin, tan
@@ -26,7 +26,7 @@ from parts.shape import cut_area, mirrored, polygon
 
 _COLORS = {"CUT": 7, "PILOT": 1, "DRILL": 6, "MARK": 3, "NOTE": 8}  # black or white, red, magenta, green, grey
 _WARNING_COLOR = 1
-_SCALE: dict[Units, float] = {"metric": 1.0, "us": 1 / 25.4}
+SCALE: dict[Units, float] = {"metric": 1.0, "us": 1 / 25.4}
 _INSUNITS: dict[Units, int] = {"metric": 4, "us": 1}
 _ALLOWED = {
     "CUT": {"LWPOLYLINE", "CIRCLE"},
@@ -59,8 +59,8 @@ def write_plate(
     with the words FALLS SHORT. A part whose body lies above z = 0 is drawn mirrored, its text is not.
     """
     plate = _plate(part)
-    document = _new_document(units)
-    draw = _Pen(document, _SCALE[units])
+    document = new_document(units)
+    draw = _Pen(document, SCALE[units])
     flip = _flip(part)
     outline = mirrored(plate.outline) if flip < 0 else plate.outline
     corners = polygon(outline, 0.05)
@@ -82,12 +82,12 @@ def write_plate(
     )
     draw.notes(lay_out(part, plate, corners, lines, units))
     draw.finish()
-    with _fixed_metadata():
+    with fixed_metadata():
         document.saveas(path)
 
 
 @contextmanager
-def _fixed_metadata() -> Iterator[None]:
+def fixed_metadata() -> Iterator[None]:
     """No time stamps and no random identifiers while this lasts."""
     options: Any = ezdxf.options  # type: ignore[attr-defined]
     before = options.write_fixed_meta_data_for_testing
@@ -109,16 +109,17 @@ def _flip(part: Part) -> float:
     return -1.0 if part.away > 0 else 1.0
 
 
-def _new_document(units: Units) -> Drawing:
-    with _fixed_metadata():
+def new_document(units: Units, colors: Mapping[str, int] = _COLORS) -> Drawing:
+    """An empty drawing in the design's unit, with a layer of each name."""
+    with fixed_metadata():
         document = new("R2000", setup=False)
     document.header["$INSUNITS"] = _INSUNITS[units]
     document.header["$MEASUREMENT"] = 1 if units == "metric" else 0
     document.header["$LUNITS"] = 2
     document.header["$LUPREC"] = 3 if units == "metric" else 4
-    dash = 3.0 * _SCALE[units]
+    dash = 3.0 * SCALE[units]
     document.linetypes.add("DASHED", [1.5 * dash, dash, -0.5 * dash], description="Dashed __ __ __")
-    for name, color in _COLORS.items():
+    for name, color in colors.items():
         document.layers.add(name, color=color)
     return document
 
@@ -225,7 +226,7 @@ def audit(path: Path, part: Part) -> None:
     found = document.audit()
     faults = [f"the file's structure: {e.message}" for e in (*found.errors, *found.fixes)]
     unit = document.header.get("$INSUNITS")
-    scale = next((s for u, s in _SCALE.items() if _INSUNITS[u] == unit), None)
+    scale = next((s for u, s in SCALE.items() if _INSUNITS[u] == unit), None)
     if scale is None:
         raise CutFileError(f"{path.name}: the file's unit is neither millimetre nor inch")
     entities = list(document.modelspace())

@@ -12,11 +12,13 @@ import numpy as np
 from exporters.bill import bill_csv, bill_html, bill_json
 from exporters.check_json import check_document, dump
 from exporters.confirm import RECORD_VOLUME_LIMIT, Confirmation, confirm
+from exporters.controller import controller_json
 from exporters.cycle_csv import cycle_csv
 from exporters.failure import ToolFailure
 from exporters.manifest import may_be_replaced, write_manifest
 from exporters.modeller import need_modeller
 from exporters.parts_list import parts_list_csv
+from exporters.procedures import procedures_html
 from exporters.shown import shortfall
 from exporters.studies.leaving import Step
 from exporters.studies.registry import study_files
@@ -161,6 +163,8 @@ def _steps(e: Examination, made: _Made) -> Iterator[Step]:
     yield text("bill_of_loads.json", lambda: bill_json(e))
     yield text("bill_of_loads.html", lambda: bill_html(e))
     yield text("parts_list.csv", lambda: parts_list_csv(e, masses))
+    yield text("controller.json", lambda: controller_json(e))
+    yield text("procedures.html", lambda: procedures_html(e))
     yield from study_files(e)
 
 

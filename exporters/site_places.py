@@ -126,8 +126,7 @@ def part_turn(e: Examination, part: Part, row: LoadRow) -> float:
     """Angle (rad) from the axes in which a row's components are given to the part's own."""
     if row.frame != "machine":
         return part.placements[0].angle
-    s = state(e.machine, np.array([row.crank_angle]), e.figures.events.catch)
-    return float(directions(e.machine, s).chain[0])
+    return float(directions(e.machine, e.past.state).chain[row.index])
 
 
 def force_in_part(e: Examination, part: Part, row: LoadRow) -> tuple[float, float]:
@@ -139,9 +138,8 @@ def force_in_part(e: Examination, part: Part, row: LoadRow) -> tuple[float, floa
 
 def worst_rows(e: Examination, part: str) -> list[LoadRow]:
     """One row a site: the case in which the site's demand is greatest."""
-    theta = e.past.state.crank_angle
     found = []
     for site in (s for s in e.sites if s.part == part):
         rows = [row for row in e.loads if (row.part, row.site) == (part, site.site)]
-        found.append(max(rows, key=lambda row: float(site.demand[int(np.argmin(np.abs(theta - row.crank_angle)))])))
+        found.append(max(rows, key=lambda row: float(site.demand[row.index])))
     return found

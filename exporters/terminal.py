@@ -94,6 +94,26 @@ class Shown:
         self.work.__exit__()
 
 
+class ShownLate:
+    """The same, from the first step on: work that never reports one can be interrupted as anything else."""
+
+    def __enter__(self) -> Report:
+        self.inner: Shown | None = None
+        return self._step
+
+    def _step(self, what: str, done: int, of: int) -> None:
+        if self.inner is None:
+            self.inner = Shown()
+            self.report = self.inner.__enter__()
+        self.report(what, done, of)
+
+    def __exit__(self, kind: object, *_: object) -> None:
+        if self.inner is not None:
+            self.inner.__exit__()
+            if kind is None:
+                self.inner.work.check()  # asked to stop after the last step
+
+
 def emit(text: str) -> None:
     """Write a result to standard output; that whoever read it has gone, such as ``head``, is no failure."""
     try:

@@ -19,32 +19,13 @@ def cautions(design: Design, figures: Cycle, sizes: Sizes, checks: tuple[Check, 
     """One sentence a caution, the general ones first."""
     unit = KINDS["energy"].metric if design.identity.units == "metric" else KINDS["energy"].us
     energy = f"{float(figures.stored_energy) / factor('energy', unit):.4g} {unit}"
-    at = figures.events
     rows = [
         f"Stored energy: at the hold the spring holds {energy}. It can maim or kill without warning.",
         "Keep clear of the line of fire and of the chain's plane whenever the spring may be drawn.",
         "Unwind the spring and lock the drive out before reaching in (ISO 14118: unexpected start-up).",
         "Work behind a guard and with a second person; reduce risk in the order that ISO 12100 gives.",
         "Local rules and a licensed engineer come before this bill: it is a calculation, not an approval.",
-        "The release is NOT covered: what swing and snatch do to the parts is not in these loads and factors.",
     ]
-    if design.moving is not None:
-        rows.append(
-            "[moving] was read, but the study of the release is not part of this version: only disc_speed was used, for "
-            "the blow of the catch and the speed in the bushes."
-        )
-    if design.enclosure is not None:
-        rows.append("[enclosure] was read, but its study is not part of this version: no clearance to it was checked.")
-    if float(at.null) < float(at.release):
-        rows.append(
-            f"From {math.degrees(at.null):.1f}° (null) to {math.degrees(at.release):.1f}° (release) the spring drives the "
-            "disc forwards: past the null the machine fires by itself."
-        )
-    if float(figures.middle_least) <= 0.0:
-        rows.append(
-            "Near the middle of the turn the drive torque is nothing or turns round: without drive the machine can stop "
-            "there with the spring drawn."
-        )
     if design.mechanism.hold_margin < LEAST_MARGIN:
         rows.append(
             f"The hold lies only {math.degrees(design.mechanism.hold_margin):.2g}° before it fires: play, a worn chain or "

@@ -121,14 +121,14 @@ def chain_study(design: Design, machine: Linkage, figures: Cycle, past: History,
         return None
     radius, pitch = float(run.pitch_radius), chain.grain
     straight = float(run.distance) - m.crank_radius - m.link_length - sizes.chain_end.length
-    taut = past.state.pull >= chain.slack
-    reach = np.where(taut, np.abs(past.state.line.arm), 0.0)
+    taut = past.winding.pull >= chain.slack
+    reach = np.where(taut, np.abs(past.winding.line.arm), 0.0)
     fastest = int(np.argmax(reach))
     study = ChainStudy(
         pitch=pitch, straight=straight, on_sheave=radius * float(run.start_wrap),
         run_to_spring=chain.run_to_spring, angle_per_link=None if pitch is None else angle_per_link(pitch, radius),
         sheave_in_pitches=None if pitch is None else radius / pitch, most_reach=float(reach[fastest]),
-        most_reach_at=float(past.state.crank_angle[fastest]), release_reach=float(reach[-1]),
+        most_reach_at=float(past.winding.crank_angle[fastest]), release_reach=float(reach[-1]),
         disc_speed=None if design.moving is None else design.moving.disc_speed, rows=(),
     )  # fmt: skip
     steps = slack_steps(chain, study, float(figures.pull_at_hold), least_slack(machine, figures))

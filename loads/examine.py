@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field, replace
 from pathlib import Path
 
@@ -20,8 +20,10 @@ from loads.members import History, history, load_rows, members, site_histories
 from loads.proportions import SPIGOT, proportion
 from loads.records import Check, LoadRow, SiteHistory
 from loads.refusals import given_size_problems, mechanism_problems, proportioned_size_problems
-from loads.studies import Study
+from loads.release.study import ReleaseStudy, release_problems, release_study, with_release
+from loads.studies import Study, assumed_by
 from loads.studies.registry import run_studies
+from parts.catalogue import Catalogue
 from parts.clash import Findings, Sweep, sweep
 from parts.design import Assumed, Design, Floats
 from parts.outline import Part
@@ -32,6 +34,7 @@ from parts.sizes import Sizes
 from parts.stack import Stack
 
 SWEEP_STEP = np.radians(2.0)
+ROUNDS = 3  # in which sizes and release are made to agree
 
 
 @dataclass(frozen=True, slots=True)
@@ -82,34 +85,92 @@ def examine(path: Path) -> Examination:
     if problems:
         raise DesignRefused(path, problems)
 
-    plain = history(machine, figures)
-    sizes, stack, proportioned = proportion(design, plain, catalogue)
-    if found := proportioned_size_problems(design, sizes):
-        raise DesignRefused(path, tuple(replace(p, line=reading.locate(p.key)) for p in found))
-    machine, rubbing = with_friction(design, machine, sizes)
-    past = history(machine, figures)
-    parts = make_parts(design, sizes, stack)
-    sites = site_histories(past, stack, design.targets, sizes.disc.bolt_circle / 2.0, behaviour(design).sites)
-    findings = sweep(parts, design, sizes, stack, sweep_poses(machine, figures))
-    context = Context(
-        design=design, sizes=sizes, stack=stack, parts=parts, past=past,
-        members=members(past, stack, design.targets),
-        sites={(s.part, s.site): s for s in sites}, findings=findings,
-    )  # fmt: skip
-    studies = run_studies(context)
+    def refuse(problems: tuple[Problem, ...]) -> None:
+        if problems:
+            raise DesignRefused(path, tuple(replace(p, line=reading.locate(p.key)) for p in problems))
+
+    solved, release = _with_release(design, machine, figures, catalogue, refuse)
+    context, machine, sizes, stack = solved.context, solved.machine, solved.context.sizes, solved.context.stack
+    sites = tuple(context.sites.values())
+    studies = {"release": release, **run_studies(context)}
     checks = all_checks(context, tuple(row for study in studies.values() for row in study.checks))
-    chain = chain_study(design, machine, figures, past, sizes)
+    chain = chain_study(design, machine, figures, context.past, sizes)
     return Examination(
-        design=design, machine=machine, figures=figures, past=past, sizes=sizes, stack=stack, parts=parts, sites=sites,
-        loads=load_rows(past, sites), checks=checks, findings=findings, chain=chain,
-        assumed=(*_as_solved(design, machine, len(stack.sides) > 1), *rubbing, *proportioned),
+        design=design, machine=machine, figures=figures, past=context.past, sizes=sizes, stack=stack,
+        parts=context.parts, sites=sites, loads=load_rows(context.past, sites), checks=checks,
+        findings=context.findings, chain=chain,
+        assumed=(
+            *_as_solved(design, machine, len(stack.sides) > 1), *solved.rubbing, *solved.proportioned,
+            *assumed_by(studies.values()),
+        ),
         cautions=(
+            *(() if release.covered else release.cautions),  # first of all
             *cautions(design, figures, sizes, checks),
             *chain_cautions(design.far_end.noun, chain),
-            *(text for study in studies.values() for text in study.cautions),
+            *(text for study in studies.values() if study is not release or release.covered for text in study.cautions),
         ),
         studies=studies,
     )  # fmt: skip
+
+
+@dataclass(frozen=True, slots=True)
+class _Settled:
+    """A design with its sizes settled, and what was assumed on the way; the context has no studies in it yet."""
+
+    machine: Linkage
+    context: Context
+    rubbing: tuple[Assumed, ...]
+    proportioned: tuple[Assumed, ...]
+
+
+def _with_release(
+    design: Design,
+    machine: Linkage,
+    figures: Cycle,
+    catalogue: Catalogue,
+    refuse: Callable[[tuple[Problem, ...]], None],
+) -> tuple[_Settled, ReleaseStudy]:
+    """Sizes settled for winding and release, and the release of those sizes, its loads in the context."""
+    plain = history(machine, figures)
+    solved = _settle(design, machine, figures, plain, catalogue)
+    refuse(proportioned_size_problems(design, solved.context.sizes))
+    refuse(release_problems(solved.context))
+    release = release_study(solved.context)
+    for _ in range(ROUNDS):
+        past = with_release(solved.machine, solved.context.past, release)
+        if past.release is None:
+            return solved, release
+        # what the release does to the parts may ask for larger ones, and those change the release
+        loaded = replace(plain, release=past.release, snatches=past.snatches)
+        again = _settle(design, machine, figures, loaded, catalogue)
+        if again.context.sizes == solved.context.sizes:
+            break
+        refuse(release_problems(again.context))
+        solved, release = again, release_study(again.context)
+    past = with_release(solved.machine, solved.context.past, release)
+    return replace(solved, context=_with_loads(solved.context, past)), release
+
+
+def _settle(design: Design, machine: Linkage, figures: Cycle, plain: History, catalogue: Catalogue) -> _Settled:
+    """Sizes for the loads of ``plain``, then everything that follows from them, of the winding alone."""
+    sizes, stack, proportioned = proportion(design, plain, catalogue)
+    machine, rubbing = with_friction(design, machine, sizes)
+    past = history(machine, figures)
+    parts = make_parts(design, sizes, stack)
+    findings = sweep(parts, design, sizes, stack, sweep_poses(machine, figures))
+    context = Context(
+        design=design, sizes=sizes, stack=stack, parts=parts, past=past,
+        members=members(past, stack, design.targets), sites={}, findings=findings,
+    )  # fmt: skip
+    return _Settled(machine, _with_loads(context, past), rubbing, proportioned)
+
+
+def _with_loads(c: Context, past: History) -> Context:
+    """The context with the loads of a history at every site."""
+    sites = site_histories(past, c.stack, c.design.targets, c.sizes.disc.bolt_circle / 2.0, behaviour(c.design).sites)
+    return replace(
+        c, past=past, members=members(past, c.stack, c.design.targets), sites={(s.part, s.site): s for s in sites}
+    )
 
 
 def _as_solved(design: Design, machine: Linkage, shares: bool) -> tuple[Assumed, ...]:

@@ -7,7 +7,7 @@ the crank angles. A new kind of line is a subclass of ``FarLine`` and of ``Line`
 from __future__ import annotations
 
 from abc import ABC, abstractmethod
-from dataclasses import dataclass, fields
+from dataclasses import dataclass, fields, replace
 from functools import cached_property
 from typing import Any, Self
 
@@ -51,6 +51,11 @@ class Line(ABC):
         """Tension over the spring's force, without friction: dp/dθ over the arm."""
 
     @property
+    def closing(self) -> Floats | float:
+        """Cosine of the angle between the line and the way of what it pulls; 1 where that is led along the line."""
+        return 1.0
+
+    @property
     @abstractmethod
     def free_length(self) -> Floats:
         """mm from Q to where the line ends: at the sheave, or at the output's pin."""
@@ -73,6 +78,10 @@ class FarLine(ABC):
 
     def _each(self, change: Any) -> Self:
         return type(self)(*(change(getattr(self, f.name)) for f in fields(self)))
+
+    @abstractmethod
+    def mirrored(self) -> Self:
+        """The same as seen in a mirror along the chain line, as a machine that is run backwards has it."""
 
     @abstractmethod
     def line(self, crank_radius: Floats, qx: Floats, qy: Floats, taken: Floats | float, link: Floats) -> Line:
@@ -144,6 +153,9 @@ class SheaveRun(FarLine):
         squared = dx**2 + dy**2
         ux, uy = (dx * t - dy * side) / squared, (dy * t + dx * side) / squared
         return SheaveLine(qx, qy, ux, uy, t, gain, t0, side, crank_radius + (link - taken))
+
+    def mirrored(self) -> Self:
+        return replace(self, wrap_side=-self.wrap_side)
 
     @property
     def spring_direction(self) -> Floats:
@@ -217,6 +229,9 @@ class SlideRun(FarLine):
             x = np.where(root - along != 0.0, spare / (root - along), np.nan)
         return TiedLine(qx, qy, (wx + x * ex) / reach, (wy + x * ey) / reach, reach, ex, ey, 1.0, x)
 
+    def mirrored(self) -> Self:
+        return replace(self, draw=-self.draw)
+
     @property
     def spring_direction(self) -> Floats:
         return np.asarray(self.draw + np.pi)
@@ -266,6 +281,9 @@ class RockerRun(FarLine):
         """+1 where the rocker turns counter-clockwise when the tie pulls its pin towards O, −1 the other way."""
         return np.where(-self.pivot_y > 0.0, 1.0, -1.0)
 
+    def mirrored(self) -> Self:
+        return replace(self, pivot_y=-self.pivot_y, leave=-self.leave)
+
     @property
     def spring_direction(self) -> Floats:
         return self.leave
@@ -275,5 +293,4 @@ class RockerRun(FarLine):
 
     def rubbing(self, line: Line, tension: Floats, force: Floats) -> Floats:
         """Moment of both forces about the pivot: nothing without friction."""
-        assert isinstance(line, TiedLine)
         return np.asarray(self._turn * (tension * self.arm * line.closing - force * self.spring_arm))

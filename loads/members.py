@@ -9,43 +9,78 @@ Statics throughout: forces and moments of each body add up to nothing, which the
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
+from numpy.typing import NDArray
 
 from loads.cycle import Cycle, corner_angles, trace_angles
 from loads.linkage import Linkage, State, state
-from loads.records import CASES, FIRST_HALF, HOLD, SECOND_HALF, FarSite, LoadRow, SiteHistory
+from loads.records import (
+    CASES,
+    FIRST_HALF,
+    HOLD,
+    RELEASE,
+    SECOND_HALF,
+    SNATCH,
+    FarSite,
+    LoadRow,
+    SiteHistory,
+)
+from loads.release.rows import ReleaseState, joined
 from parts.design import Floats, Targets
 from parts.stack import Stack
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)  # without slots, so that what is asked for twice is worked out once
 class History:
     """One design's state over crank angle, with the rows that belong to each case.
 
-    The angles hold each step, each event, each refined peak and each corner of the spring, so that a worst case is the
-    worst, or within half a degree of it where nothing has a peak of its own.
+    The angles of the winding hold each step, each event, each refined peak and each corner of the spring, so that a
+    worst case is the worst, or within half a degree of it where nothing has a peak of its own. Where the release is
+    known its moments follow as more rows.
     """
 
     machine: Linkage
     figures: Cycle
-    state: State
+    winding: State
     hold_index: int
+    release: ReleaseState | None = None
+    snatches: NDArray[np.bool_] | None = None  # of the release's rows, those of the snatch
 
-    def rows(self, case: str) -> np.ndarray[tuple[int, ...], np.dtype[np.intp]]:
-        """Indices of the crank angles that belong to a case."""
-        theta, catch = self.state.crank_angle, float(self.figures.events.catch)
+    @cached_property
+    def state(self) -> State:
+        return self.winding if self.release is None else joined(self.winding, self.release)
+
+    @cached_property
+    def cases(self) -> tuple[str, ...]:
+        """Those that there are, in order."""
+        return CASES if self.release is None else (*CASES, RELEASE, SNATCH)
+
+    def over(self, winding: float, release: float = 1.0) -> Floats:
+        """A factor for each row: that of the winding, and that of the release."""
+        found = np.full(self.state.crank_angle.size, winding)
+        found[self.winding.crank_angle.size :] = release
+        return found
+
+    def rows(self, case: str) -> NDArray[np.intp]:
+        """Indices of the rows that belong to a case."""
+        theta, catch = self.winding.crank_angle, float(self.figures.events.catch)
         if case == FIRST_HALF:
             return np.flatnonzero(theta <= catch)
         if case == SECOND_HALF:
             return np.flatnonzero(theta > catch)
-        return np.array([self.hold_index])
+        if case == HOLD or self.snatches is None:
+            return np.array([self.hold_index])
+        return theta.size + np.flatnonzero(self.snatches == (case == SNATCH))
 
     def case_at(self, index: int) -> str:
-        """The case that a crank angle belongs to; the hold has a name of its own."""
+        """The case that a row belongs to; the hold has a name of its own."""
+        if self.snatches is not None and index >= self.winding.crank_angle.size:
+            return SNATCH if bool(self.snatches[index - self.winding.crank_angle.size]) else RELEASE
         if index == self.hold_index:
             return HOLD
-        return SECOND_HALF if bool(self.state.seated[index]) else FIRST_HALF
+        return SECOND_HALF if bool(self.winding.seated[index]) else FIRST_HALF
 
     def worst(self, demand: Floats, case: str) -> int:
         rows = self.rows(case)
@@ -92,6 +127,8 @@ class Members:
     chain_side: Floats
     stop_on_link: Floats  # N·n, one side
     pin_on_link: Floats  # one side
+    on_disc: Floats  # what pin and stop put on the disc, one side: the chain's pull, but for the link's inertia
+    inertia_on_link: Floats  # across the link at the stop's reach, one side: what swinging it takes; none while winding
     chain_couple: Floats  # moment of the chain's offset about the link's middle, one side
     spring_pull: Floats  # on the sheave, F along the exit direction
     friction_torque: Floats
@@ -101,22 +138,46 @@ class Members:
 
 def members(past: History, stack: Stack, targets: Targets) -> Members:
     """Forces with shock and share, from the frictionless state."""
-    s, shock = past.state, targets.shock_factor
+    s, shock = past.state, past.over(targets.shock_factor)
     share = stack.load_share
     chain = _vector(-s.shaft_x, -s.shaft_y) * shock
     pin = _vector(s.pin_x, s.pin_y) * shock * share
     side = chain * share
+    push = s.stop_force * shock * share
+    stop = _vector(-push * np.sin(s.link_direction), push * np.cos(s.link_direction))
     return Members(
         chain_on_pin=chain,
         chain_side=side,
-        stop_on_link=-side - pin,
+        stop_on_link=stop,
         pin_on_link=pin,
+        on_disc=-pin - stop,
+        inertia_on_link=_swinging(past, side, stop),
         chain_couple=_couple(stack.chain_offset, side),
         spring_pull=_vector(s.sheave_x, s.sheave_y) * shock + chain,
         friction_torque=s.friction_torque * shock,
         torque=s.torque * shock,
         torque_side=s.torque * shock * share,
     )
+
+
+def _swinging(past: History, side: Floats, stop: Floats) -> Floats:
+    """Force (3, n) at the stop's reach, across the link, that balances chain and stop about the crank pin.
+
+    So the link's inertia is taken where the stop would be; that of a real link lies about there and bends it less.
+    """
+    m, psi = past.machine, past.state.link_direction
+    nx, ny = -np.sin(psi), np.cos(psi)
+    across = side[0] * nx + side[1] * ny
+    seat = stop[0] * nx + stop[1] * ny
+    left = -across * float(m.link_length) / float(m.stop_reach) - seat
+    left = left * past.over(0.0)  # while winding there is none but of rounding
+    return _vector(left * nx, left * ny)
+
+
+def in_link_frame(past: History, force: Floats) -> Floats:
+    """Forces (3, n) of the chain frame in the link's."""
+    flip = np.array([[1.0], [float(past.machine.turn)], [1.0]])
+    return np.asarray(_turned(force, past.state.link_direction) * flip)
 
 
 def _rank(force: Floats) -> Floats:
@@ -157,10 +218,10 @@ def site_histories(
 
     pin_root = _couple(arm_disc, -f.pin_on_link) + f.chain_couple
     stop_root = _couple(arm_disc, -f.stop_on_link)
-    tilt = _couple(arm_back, f.chain_side) + f.chain_couple
+    tilt = _couple(arm_back, f.on_disc) + f.chain_couple
     twist = np.stack([np.zeros_like(f.torque), np.zeros_like(f.torque), f.torque])
     twist_side = np.stack([np.zeros_like(f.torque), np.zeros_like(f.torque), f.torque_side])
-    bolts = np.sqrt(_rank(f.chain_side) ** 2 + (_rank(tilt)[:] / bolt_radius) ** 2 + (f.torque_side / bolt_radius) ** 2)
+    bolts = np.sqrt(_rank(f.on_disc) ** 2 + (_rank(tilt)[:] / bolt_radius) ** 2 + (f.torque_side / bolt_radius) ** 2)
     sheave = f.spring_pull - f.chain_on_pin
     # friction of the sheave or the guide: what the two legs leave over is a couple on its pin
     rubbing = m.far.rubbing(s.line, _rank(f.chain_on_pin), _rank(f.spring_pull))
@@ -170,7 +231,7 @@ def site_histories(
     return (
         in_disc("crank_disc", "crank_pin_hole", -f.pin_on_link, pin_root),
         in_disc("crank_disc", "stop_seat", -f.stop_on_link, stop_root),
-        in_disc("crank_disc", "hub_face", -f.chain_side, twist_side - tilt, bolts),
+        in_disc("crank_disc", "hub_face", -f.on_disc, twist_side - tilt, bolts),
         in_link("swing_link", "crank_pin_eye", f.pin_on_link, -f.chain_couple),
         in_link("swing_link", "chain_pin_eye", f.chain_side, f.chain_couple),
         in_link("swing_link", "stop_flank", f.stop_on_link, none),
@@ -181,9 +242,9 @@ def site_histories(
         in_link("chain_pin", "journal", f.chain_on_pin, none),
         in_link("chain_pin", "link_seat", -f.chain_side, -f.chain_couple),
         *(in_machine(site.part, site.site, *of_far_end[site.force]) for site in far if site.part != "frame"),
-        in_machine("main_bearing", "hub_face", f.chain_side, tilt - twist_side, bolts),
+        in_machine("main_bearing", "hub_face", f.on_disc, tilt - twist_side, bolts),
         in_machine("spring_anchor", "anchor", -f.spring_pull, none),
-        in_machine("frame", "main_bearing", f.chain_on_pin, none),
+        in_machine("frame", "main_bearing", f.on_disc / stack.load_share, none),
         *(in_machine(site.part, site.site, *of_far_end[site.force]) for site in far if site.part == "frame"),
         in_machine("frame", "spring_anchor", -f.spring_pull, none),
         in_machine("frame", "drive", none, -whole, np.abs(f.torque + f.friction_torque)),
@@ -194,11 +255,11 @@ def load_rows(past: History, sites: tuple[SiteHistory, ...]) -> tuple[LoadRow, .
     """One row a site and case, at the crank angle where the site's demand is greatest."""
     rows = []
     for site in sites:
-        for case in CASES:
+        for case in past.cases:
             i = past.worst(site.demand, case)
             force = (float(site.force[0, i]), float(site.force[1, i]), float(site.force[2, i]))
             moment = (float(site.moment[0, i]), float(site.moment[1, i]), float(site.moment[2, i]))
             rows.append(
-                LoadRow(site.part, site.site, case, float(past.state.crank_angle[i]), site.frame, force, moment)
+                LoadRow(site.part, site.site, case, float(past.state.crank_angle[i]), site.frame, force, moment, i)
             )
     return tuple(rows)

@@ -12,6 +12,7 @@ from parts.design import Floats
 FIRST_HALF = "winding, first half"
 SECOND_HALF = "winding, second half"
 HOLD = "hold"
+RELEASE, SNATCH = "release", "snatch"  # the swing, and from the first slack or the straight link on
 AS_WRITTEN = 1e-5
 CASES = (FIRST_HALF, SECOND_HALF, HOLD)
 
@@ -49,6 +50,7 @@ class LoadRow:
     frame: str
     force: tuple[float, float, float]
     moment: tuple[float, float, float]
+    index: int = 0  # of the row of the history that it stands for
 
     @property
     def magnitude(self) -> float:

@@ -39,6 +39,8 @@ MEANT: dict[frozenset[str], float] = {
         ("crank_spacer", "crank_pin"): _INSIDE,  # a ring on its pin
         ("chain_spacer", "chain_pin"): _INSIDE,
         ("chain_pin", "tie"): _INSIDE,
+        # a loose part, in its hole only while nothing turns
+        **{("lock_pin", other): _INSIDE for other in ("crank_disc", "crank_pin", "stop", "crank_spacer")},
         ("stop", "swing_link"): 0.05,  # the flank on the stop
         **{(name, other): _INSIDE for name in KINDS for other in ("chain_end", "sheave")},  # in its slots, on its rim
     }.items()

@@ -10,7 +10,7 @@ from parts.hardware import cap_screw
 from parts.making import copies, plate_stock, turn_of, turned_round
 from parts.marks import CLEAR, Circle, numbered, text_on_disc
 from parts.outline import Counterbore, Hole, Mark, Part, Plate
-from parts.places import block_holes, crank_pin, hub_bolts, on_disc, stop_middle
+from parts.places import block_holes, crank_pin, hub_bolts, lock_holes, on_disc, stop_middle
 from parts.segments import circle
 from parts.sizes import Sizes
 from parts.stack import Stack
@@ -18,6 +18,7 @@ from parts.stop_layout import HEAD_BELOW
 
 KEY = "crank_disc"
 COLOR = (0.45, 0.52, 0.60)
+LOCK_FIT = "H8"
 
 
 def outline(design: Design, sizes: Sizes) -> Plate:
@@ -47,6 +48,7 @@ def outline(design: Design, sizes: Sizes) -> Plate:
             for i, at in enumerate(bolts, 1)
         ),
         *_stop_holes(design, sizes),
+        *_lock_holes(sizes),
     )
     plate = Plate(
         circle((0.0, 0.0), disc.outer_diameter, "rim"),
@@ -92,6 +94,14 @@ def _stop_holes(design: Design, sizes: Sizes) -> tuple[Hole, ...]:
         )
         for name, at in block_holes(stop).items()
     )
+
+
+def _lock_holes(sizes: Sizes) -> tuple[Hole, ...]:
+    lock = sizes.lock_pin
+    if lock is None:
+        return ()
+    note = "ream, running fit of the lock pin"
+    return tuple(Hole(name, at, lock.diameter, LOCK_FIT, note) for name, at in lock_holes(lock).items())
 
 
 def _stop_sinks(design: Design, sizes: Sizes) -> tuple[Counterbore, ...]:

@@ -41,6 +41,7 @@ class Mechanism:
     seat_angle: float
     stop_reach: float
     hold_margin: float
+    reverse: Literal["forbidden", "rated"] = "forbidden"  # running onto the stop's back: kept out, or rated for
 
 
 @dataclass(frozen=True, slots=True)
@@ -192,6 +193,13 @@ class SheavePinWish:
 
 
 @dataclass(frozen=True, slots=True)
+class LockPinWish:
+    diameter: float | None = None
+    radius: float | None = None  # from the disc axis to its holes
+    material: Material | None = None
+
+
+@dataclass(frozen=True, slots=True)
 class Friction:
     bearing: float
     crank_pin: float
@@ -228,6 +236,10 @@ class Moving:
     gravity: float | None  # mm/s² along the chain at the spring
     disc_speed: float | None  # rad/s
     stopped_elsewhere: bool = False  # something else stops the mass, so the chain need not
+    line_stiffness: float | None = None  # N/mm: chain (rope, …), sheave mount, shaft and frame in series
+    line_damping: float | None = None  # share of the critical
+    sheave_mass: float | None = None  # kg
+    bumper_damping: float | None = None  # share of the critical
 
 
 @dataclass(frozen=True, slots=True)
@@ -239,6 +251,53 @@ class Fatigue:
     surfaces: Mapping[str, str]
     fillet_radius: float  # at the shoulders of turned pins
     chain_dynamic_strength: float | None  # the maker's, of the whole chain
+
+
+@dataclass(frozen=True, slots=True)
+class Drive:
+    """Motor, gear, brake and encoder. ``None`` is what the file does not give; a motor has both of stall torque and free
+    speed, or neither."""
+
+    stall_torque: float | None  # N·mm at the motor's shaft, at the supply voltage
+    free_speed: float | None  # rad/s of the motor's shaft
+    torque_constant: float | None  # N·mm/A
+    supply_voltage: float | None  # V
+    reduction: float  # turns of the motor a turn of the disc
+    efficiency: float  # of the gear, the motor driving
+    backdriving_efficiency: float  # of the gear, the disc driving; 0: it locks itself
+    holding_torque: float | None  # N·mm of a brake, at the motor's shaft
+    inertia: float | None  # kg·mm², all that the drive turns, at the disc
+    encoder_counts: float | None  # a turn of what it sits on
+    encoder_on: Literal["disc", "motor"]
+    winding_time: float | None = None  # s in which a motor that is looked for has to wind
+
+
+@dataclass(frozen=True, slots=True)
+class Tolerances:
+    """By how much what is built may differ, ± about the drawing; ``None`` is left to the general tolerances or to practice.
+
+    ``chance`` is that of firing at the hold which may be left.
+    """
+
+    chance: float
+    samples: int
+    seed: int
+    distribution: Literal["normal", "uniform"]
+    crank_radius: float | None = None
+    link_length: float | None = None
+    stop_position: float | None = None  # of the stop's contact, across the link
+    link_width: float | None = None  # of the whole width
+    sheave_x: float | None = None
+    sheave_y: float | None = None
+    tie_length: float | None = None
+    output_x: float | None = None  # of the slide's point or the rocker's pivot
+    output_y: float | None = None
+    arm: float | None = None  # of the rocker
+    draw_direction: float | None = None  # of the slide, rad
+    chain_length: float | None = None
+    worn_elongation: float | None = None  # share of its length at which a worn chain is taken off
+    encoder_offset: float | None = None  # rad
+    backlash: float | None = None  # rad of the disc, from end to end
 
 
 @dataclass(frozen=True, slots=True)
@@ -268,3 +327,6 @@ class Design:
     sheave_bearing: BearingWish = BearingWish()
     sheave_pin: SheavePinWish = SheavePinWish()
     fatigue: Fatigue | None = None
+    lock_pin: LockPinWish | None = None
+    tolerances: Tolerances | None = None
+    drive: Drive | None = None

@@ -105,9 +105,13 @@ def _areas(outer: Floats, inner: tuple[Floats, ...]) -> Any:
 
 
 def _shape_gaps(a: Shape, outer: Floats, inner: tuple[Floats, ...]) -> Floats:
+    return area_gaps(a, _areas(outer, inner))
+
+
+def area_gaps(a: Shape, areas: Any) -> Floats:
+    """Signed distance of a shape to each of many areas in its frame: below zero by how deep they run into each other."""
     import shapely
 
-    areas = _areas(outer, inner)
     shapely.prepare(a.area)
     result = np.asarray(shapely.distance(a.area, areas))
     meet = np.flatnonzero(result <= 0.0)

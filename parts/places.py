@@ -10,7 +10,7 @@ from math import cos, sin, tau
 
 from parts.design import Design
 from parts.outline import Point
-from parts.sizes import DiscSizes, Sizes, StopSizes
+from parts.sizes import DiscSizes, LockPinSizes, Sizes, StopSizes
 from parts.stop_layout import block_hole_offsets, stop_center
 
 
@@ -39,6 +39,17 @@ def on_disc(design: Design, sizes: Sizes, point: Point) -> Point:
     (x, y), direction = stop_center(design.mechanism, sizes.link.width, sizes.stop)
     c, s = cos(direction), sin(direction)
     return (x + point[0] * c - point[1] * s, y + point[0] * s + point[1] * c)
+
+
+def lock_holes(lock: LockPinSizes) -> dict[str, Point]:
+    """The lock pin's holes in the disc: where it is at the start, and at the hold."""
+    named = {"lock_hole_start": lock.start_angle, "lock_hole_hold": lock.hold_angle}
+    return {name: (lock.radius * cos(a), lock.radius * sin(a)) for name, a in named.items()}
+
+
+def lock_pin(lock: LockPinSizes) -> Point:
+    """The lock pin itself, in the disc frame at the hold."""
+    return lock_holes(lock)["lock_hole_hold"]
 
 
 def hub_bolts(disc: DiscSizes) -> tuple[Point, ...]:

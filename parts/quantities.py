@@ -1,7 +1,7 @@
 """Quantities at the door: text such as ``"58 mm"`` into the unit used inside, and back into text that reads again.
 
 A strict pattern decides what is a quantity; the units library only ever sees a unit from the lists below, so it never
-gets the chance to guess. Inside: mm, N, N/mm, rad, MPa, kg, kg/m³, rad/s, mm/s², N·mm.
+gets the chance to guess. Inside: mm, N, N/mm, rad, MPa, kg, kg/m³, rad/s, mm/s², N·mm, kg·mm², s, V, ohm, N·mm/A.
 """
 
 from __future__ import annotations
@@ -81,9 +81,32 @@ KINDS: Mapping[str, Kind] = {
         "m/s2",
         "ft/s2",
     ),
+    "pace": Kind(
+        "a speed", "mm/s", "m/s", {"m/s": "m/s", "mm/s": "mm/s", "m/min": "m/min", "ft/s": "ft/s"}, "m/s", "ft/s"
+    ),
     "torque": Kind("a torque", "N*mm", "N·m", _TORQUE_UNITS, "N·m", "lbf·ft"),
     "energy": Kind(
         "an energy", "N*mm", "J", {"J": "N*m", "kJ": "kN*m", "ft·lbf": "lbf*ft", "in·lbf": "lbf*in"}, "J", "ft·lbf"
+    ),
+    "inertia": Kind(
+        "a moment of inertia",
+        "kg*mm**2",
+        "kg·m2",
+        {"kg·m2": "kg*m**2", "kg·m²": "kg*m**2", "kg·cm2": "kg*cm**2", "kg·cm²": "kg*cm**2", "g·cm2": "g*cm**2",
+         "g·cm²": "g*cm**2", "kg·mm2": "kg*mm**2", "kg·mm²": "kg*mm**2", "lb·in2": "lb*in**2", "lb·ft2": "lb*ft**2"},
+        "kg·m2",
+        "lb·in2",
+    ),
+    "time": Kind("a time", "s", "s", _same("s", "ms", "min"), "s", "s"),
+    "voltage": Kind("a voltage", "V", "V", _same("V", "mV", "kV"), "V", "V"),
+    "resistance": Kind("a resistance", "ohm", "ohm", {"ohm": "ohm", "Ω": "ohm", "mohm": "mohm", "mΩ": "mohm"}, "ohm", "ohm"),
+    "torque_constant": Kind(
+        "a torque constant",
+        "N*mm/A",
+        "N·m/A",
+        {"N·m/A": "N*m/A", "Nm/A": "N*m/A", "mN·m/A": "N*mm/A", "mNm/A": "N*mm/A", "lbf·in/A": "lbf*in/A"},
+        "N·m/A",
+        "lbf·in/A",
     ),
 }  # fmt: skip
 
@@ -95,7 +118,8 @@ _DEFINITIONS = (
     "rad = [angle]", "mrad = 0.001 rad", f"deg = {math.pi / 180!r} rad", f"turn = {math.tau!r} rad",
     "MPa = N / mm ** 2", "GPa = 1000 MPa", "kPa = 0.001 MPa", "Pa = 0.000001 MPa", "bar = 0.1 MPa",
     "psi = lbf / in ** 2", "ksi = 1000 psi",
-    "s = [time]", f"rpm = {math.tau / 60!r} rad / s",
+    "s = [time]", "ms = 0.001 s", "min = 60 s", f"rpm = {math.tau / 60!r} rad / s",
+    "A = [current]", "V = N * m / s / A", "mV = 0.001 V", "kV = 1000 V", "ohm = V / A", "mohm = 0.001 ohm",
 )  # fmt: skip
 
 # Other spellings of an accepted unit, of the same size; where one stands for two, the kind wanted tells them apart.
@@ -109,6 +133,8 @@ _MEANT: Mapping[str, tuple[str, ...]] = {
     "N/mm²": ("N/mm2",), "N/m2": ("Pa",), "lb/in2": ("psi",),
     "lbf/in2": ("psi",), "kg/m³": ("kg/m3",), "g/cm³": ("g/cm3",), "m/s²": ("m/s2",), "m/s/s": ("m/s2",),
     "1/min": ("rpm",), "U/min": ("rpm",), "rev/min": ("rpm",), "°/s": ("deg/s",),
+    "kgm2": ("kg·m2",), "kgm²": ("kg·m2",), "kg*m2": ("kg·m2",), "gcm2": ("g·cm2",), "sec": ("s",),
+    "volt": ("V",), "volts": ("V",), "ohms": ("ohm",), "N*m/A": ("N·m/A",),
 }  # fmt: skip
 
 _NUMBER = r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?"

@@ -9,7 +9,7 @@ from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import Any, TypeVar
 
-from parts import plausible, records
+from parts import plausible, plausible_studies, records, records_studies
 from parts.catalogue import Catalogue
 from parts.design import (
     BearingWish,
@@ -18,6 +18,7 @@ from parts.design import (
     DiscWish,
     FitsWish,
     LinkWish,
+    LockPinWish,
     Material,
     PinWish,
     ShaftWish,
@@ -41,6 +42,7 @@ from parts.schema import (
     FitsTable,
     FrictionTable,
     LinkTable,
+    LockPinTable,
     MaterialTable,
     MechanismTable,
     MovingTable,
@@ -53,6 +55,7 @@ from parts.schema import (
     unknown_key,
     validate,
 )
+from parts.schema_studies import DriveTable, TolerancesTable
 from parts.schema_values import Table
 from parts.spring_table import SpringFile, read_spring_csv, spring_table_problems
 from parts.toml_source import read_source
@@ -163,8 +166,21 @@ class _Draft:
             main_bearing=_bearing(self._table(BearingsTable, "bearings").main),
             sheave_bearing=_bearing(self._table(BearingsTable, "bearings").sheave),
             sheave_pin=sheave_pin,
+            lock_pin=(
+                LockPinWish(**_sizes(self._table(LockPinTable, "lock_pin")), material=materials["lock_pin"])
+                if "lock_pin" in self.raw
+                else None
+            ),
             fatigue=records.fatigue(self._table(FatigueTable, "fatigue"), self.defaults)
             if "fatigue" in self.raw
+            else None,
+            tolerances=(
+                records_studies.tolerances(self._table(TolerancesTable, "tolerances"), self.defaults)
+                if "tolerances" in self.raw
+                else None
+            ),
+            drive=records_studies.drive(self._table(DriveTable, "drive"), self.defaults)
+            if "drive" in self.raw
             else None,
         )
         places = [*TABLES, "materials"]
@@ -227,6 +243,12 @@ class _Draft:
             self.problems += plausible.moving_problems(self._table(MovingTable, "moving"), raw)
         if isinstance(raw := self.raw.get("fatigue"), dict):
             self.problems += plausible.missing_keys(("fatigue",), raw, ("shots",))
+        if isinstance(raw := self.raw.get("drive"), dict):
+            self.problems += plausible_studies.drive_problems(self._table(DriveTable, "drive"), raw)
+        if isinstance(raw := self.raw.get("tolerances"), dict):
+            self.problems += plausible_studies.tolerance_problems(
+                self._table(TolerancesTable, "tolerances"), raw, self.raw, self._table(MechanismTable, "mechanism")
+            )
 
     def _kernel_is_broken(self) -> bool:
         return any(

@@ -70,6 +70,7 @@ def mechanism(given: MechanismTable, defaults: Defaults) -> Mechanism:
     r, length = given.crank_radius or 0.0, given.link_length or 0.0
     stack: Literal["twin", "single"] = "twin"
     rotation: Literal["ccw", "cw"] = "ccw"
+    reverse: Literal["forbidden", "rated"] = "forbidden"
     return Mechanism(
         stack=defaults.take(
             "mechanism.stack", given.stack, stack, "text", "a link on each side of the chain, so no offset couple"
@@ -98,7 +99,11 @@ def mechanism(given: MechanismTable, defaults: Defaults) -> Mechanism:
             "angle",
             f"held short of the null and the release, {PRACTICE}",
         ),
-    )
+        reverse=defaults.take(
+            "mechanism.reverse", given.reverse, reverse, "text",
+            "an interlock keeps the machine from running backwards onto the back of its stop",
+        ),
+    )  # fmt: skip
 
 
 def sheave(given: SheaveTable, pitch_radius: float, far_end: FarEnd, defaults: Defaults) -> Sheave:
@@ -190,6 +195,10 @@ def moving(given: MovingTable, defaults: Defaults) -> Moving:
         gravity=given.gravity,
         disc_speed=given.disc_speed,
         stopped_elsewhere=given.stopped_elsewhere or False,
+        line_stiffness=given.line_stiffness,
+        line_damping=given.line_damping,
+        sheave_mass=given.sheave_mass,
+        bumper_damping=given.bumper_damping,
     )
 
 

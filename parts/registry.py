@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from parts import chain_pin, crank_disc, crank_pin, end_piece, spacers, stop, swing_link
+from parts import chain_pin, crank_disc, crank_pin, end_piece, lock_pin, spacers, stop, swing_link
 from parts.design import Design
 from parts.outline import Part
 from parts.sizes import Sizes
@@ -18,6 +18,7 @@ GENERATORS: tuple[Callable[[Design, Sizes, Stack], list[Part]], ...] = (
     chain_pin.make,
     end_piece.make,
     spacers.make,
+    lock_pin.make,
 )
 
 

@@ -14,6 +14,7 @@ from pydantic import Field, PlainValidator, ValidationError
 
 from parts.far_ends.registry import KINDS
 from parts.problems import Problem, Refused, key_of, nearest, written
+from parts.schema_studies import DriveTable, TolerancesTable
 from parts.schema_values import (
     Coefficient,
     Corner,
@@ -39,7 +40,7 @@ from parts.schema_values import (
 if TYPE_CHECKING:
     from pydantic_core import ErrorDetails
 
-NOT_YET = ("drive", "process", "tolerances")
+NOT_YET = ("process",)
 
 
 T = TypeVar("T", bound=Table)
@@ -61,6 +62,7 @@ class MechanismTable(Table):
     seat_angle: Annotated[float | None, quantity("angle", least=-30, most=30)] = None
     stop_reach: Length | None = None
     hold_margin: Annotated[float | None, quantity("angle", above=0, below=60)] = None
+    reverse: Literal["forbidden", "rated"] | None = None
 
 
 class SheaveTable(Table):
@@ -160,6 +162,12 @@ class BearingsTable(Table):
     sheave: BearingTable | None = None
 
 
+class LockPinTable(Table):
+    diameter: Length | None = None
+    radius: Length | None = None
+    material: Text | None = None
+
+
 class FrictionTable(Table):
     bearing: Coefficient | None = None
     crank_pin: Coefficient | None = None
@@ -191,8 +199,12 @@ class MovingTable(Table):
     bumper_stiffness: Annotated[float | None, quantity("stiffness", above=0, most=1e9)] = None
     bumper_travel: Length | None = None
     gravity: Annotated[float | None, quantity("acceleration", least=-100, most=100)] = None
-    disc_speed: Annotated[float | None, quantity("speed", least=0, most=100_000)] = None
+    disc_speed: Annotated[float | None, quantity("speed", above=0, most=100_000)] = None
     stopped_elsewhere: bool | None = None
+    line_stiffness: Annotated[float | None, quantity("stiffness", above=0, most=1e9)] = None
+    line_damping: Annotated[float | None, number(least=0, below=1)] = None
+    sheave_mass: Mass | None = None
+    bumper_damping: Annotated[float | None, number(least=0, most=2)] = None
 
 
 class FatigueTable(Table):
@@ -229,11 +241,14 @@ TABLES: Mapping[str, type[Table]] = {
     "fits": FitsTable,
     "shaft": ShaftTable,
     "bearings": BearingsTable,
+    "lock_pin": LockPinTable,
     "friction": FrictionTable,
     "targets": TargetsTable,
     "enclosure": EnclosureTable,
     "moving": MovingTable,
     "fatigue": FatigueTable,
+    "tolerances": TolerancesTable,
+    "drive": DriveTable,
 }
 
 

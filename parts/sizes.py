@@ -133,6 +133,17 @@ class Running:
 
 
 @dataclass(frozen=True, slots=True)
+class LockPinSizes:
+    """One pin and its two holes in the disc, at angles in the disc frame of a ccw machine (rad)."""
+
+    diameter: float
+    radius: float
+    start_angle: float
+    hold_angle: float
+    material: Material
+
+
+@dataclass(frozen=True, slots=True)
 class Sizes:
     plate_gap: float  # between disc and link, and play each side of the chain's plane
     disc: DiscSizes
@@ -143,3 +154,4 @@ class Sizes:
     chain_end: ChainEndSizes
     fits: FitSizes = FitSizes()
     running: Running | None = None
+    lock_pin: LockPinSizes | None = None

@@ -28,8 +28,20 @@ def fatigue_of(e: Examination) -> FatigueStudy:
     return found
 
 
-def text_of(name: str) -> str:
+STUDIES = ("enclosure", "tolerances", "drive")  # tables that bring a study of their own
+
+
+def whole_text_of(name: str) -> str:
+    """A starter as it is written out."""
     return next(s.text for s in starters() if s.name == name)
+
+
+def text_of(name: str) -> str:
+    """A starter without the tables of studies, its mass stopped by something else: winding alone."""
+    text = whole_text_of(name)
+    for table in (*STUDIES, "moving"):
+        text = re.sub(rf"(?ms)^\[{table}\]\n.*?(?=^\[|\Z)", "", text)
+    return text.rstrip() + "\n\n[moving]\nstopped_elsewhere = true\n"
 
 
 def put(text: str, table: str, key: str, value: str | None) -> str:

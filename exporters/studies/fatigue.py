@@ -68,7 +68,8 @@ def fatigue_line(e: Examination, study: FatigueStudy) -> str:
     life = life_text(weakest)
     text = (
         f"Fatigue, {whole(study.shots)} shots: least factor {figures(weakest.factor or 0.0, 3)} at {weakest.part}, "
-        f"{weakest.site}, life {life}{'' if life == FOR_EVER else ' shots'}, without the release's snatch."
+        f"{weakest.site}, life {life}{'' if life == FOR_EVER else ' shots'}"
+        + ("." if study.with_release else ", without the release's snatch.")
     )
     if any(row.factor is None and row.part == "chain" for row in study.rows):
         text += " The chain has no fatigue rating."
@@ -91,6 +92,7 @@ def fatigue_values(e: Examination, study: FatigueStudy) -> dict[str, Any]:
         "surfaces": ", ".join(f"{what} {how}" for what, how in study.surfaces.items()),
         "suggestion": suggestion(study).strip(),
         "stress": shown.unit("stress"),
+        "with_release": study.with_release,
         "rows": [_shown_row(row, shown) for row in sorted(study.rows, key=_by_factor)],
     }
 

@@ -5,12 +5,18 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping
 from typing import Any
 
-from exporters.studies import fatigue
+from exporters.studies import backing_off, drive, enclosure, fatigue, power_loss, release, trigger
 from exporters.studies.leaving import Leaving, Step
 from loads.examine import Examination
 
 LEAVING: Mapping[str, Leaving] = {
+    "power_loss": power_loss.LEAVING,
+    "release": release.LEAVING,
     "fatigue": fatigue.LEAVING,
+    "trigger": trigger.LEAVING,
+    "drive": drive.LEAVING,
+    "backing_off": backing_off.LEAVING,
+    "enclosure": enclosure.LEAVING,
 }
 
 

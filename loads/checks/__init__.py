@@ -6,7 +6,7 @@ from collections.abc import Callable
 
 import numpy as np
 
-from loads.checks import bearings, disc, eyes, far_end, fit, link, pins, press, room, shaft, stop
+from loads.checks import bearings, disc, eyes, far_end, fit, link, lock_pin, pins, press, room, shaft, stop
 from loads.checks.context import Context
 from loads.records import Check
 
@@ -20,6 +20,7 @@ FAMILIES: tuple[Callable[[Context], list[Check]], ...] = (
     disc.check,
     shaft.check,
     bearings.check,
+    lock_pin.check,
     room.check,
     fit.check,
 )

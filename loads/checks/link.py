@@ -11,6 +11,7 @@ from loads.checks.concentration import pin_loaded_eye
 from loads.checks.context import BEAM, Context, rule_note
 from loads.checks.link_sections import LinkShape, internal, net_sections, places, section_shear, section_stresses
 from loads.checks.stability import FREE_END, column_stress, grown, lateral_moment, overhang_factor
+from loads.members import in_link_frame
 from loads.records import Check
 from parts.design import Floats
 
@@ -147,7 +148,15 @@ def check(c: Context) -> list[Check]:
     link, targets = c.sizes.link, c.design.targets
     shape, f_y = link_shape(c), link.material.yield_strength(link.thickness)
     pull, stop = c.site("swing_link", "chain_pin_eye"), c.site("swing_link", "stop_flank")
-    rules = link_rules(shape, f_y, link.material.youngs_modulus, targets.yield_, pull.force, pull.moment, stop.force)
+    rules = link_rules(
+        shape,
+        f_y,
+        link.material.youngs_modulus,
+        targets.yield_,
+        pull.force,
+        pull.moment,
+        stop.force + in_link_frame(c.past, c.members.inertia_on_link),
+    )
     peaks = {
         "crank_pin_eye": _peak(shape.crank_hole, shape, link.thickness - link.counterbore_depth,
                                -c.site("swing_link", "crank_pin_eye").force[0]),

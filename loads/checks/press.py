@@ -62,7 +62,7 @@ def effective_interference(delta: float) -> float:
     return delta - lost
 
 
-def seat_grip(force: Floats, moment: Floats, length: float) -> Floats:
+def seat_grip(force: Floats, moment: Floats, length: Floats | float) -> Floats:
     """Sum (N) of what a pin presses against both sides of its bore under a pressure linear along it.
 
     ∫|q| dz with q = F/s + 12 M z/s³: F where M ≤ F s/6, else 3 M/s + F² s/(12 M). Statics.

@@ -99,11 +99,11 @@ def link_tilt_stiffness(link: LinkSizes, length: float) -> float:
     return max(bending, shear * w * t**3 / 3.0 * (1.0 - 0.63 * t / w)) / length
 
 
-def phase_arm(s: State, torque: Floats, tension: Floats, m: Mechanism) -> Floats:
+def phase_arm(s: State, tension: Floats, m: Mechanism) -> Floats:
     """How far (mm a radian, n) the link's end moves with its disc: the chain's arm while it swings, |OB| once seated."""
     x = m.crank_radius * np.cos(s.crank_angle) + m.link_length * np.cos(s.link_direction)
     y = m.crank_radius * np.sin(s.crank_angle) + m.link_length * np.sin(s.link_direction)
-    free = np.abs(torque) / np.maximum(tension, 1e-9)
+    free = np.abs(s.line.arm)
     return np.asarray(np.where(s.seated, np.hypot(x, y), np.where(tension > 0.0, free, m.crank_radius)))
 
 
@@ -154,7 +154,7 @@ def torque_of(c: Context) -> tuple[Floats, Floats]:
         z.link, m.link_length, z.chain_pin.middle_diameter, z.chain_pin.material, 2.0 * c.stack.link_middle,
         z.crank_pin.diameter, z.fits.crank_pin_link, z.link.thickness,
     )  # fmt: skip
-    arm = phase_arm(c.past.state, c.members.torque, whole, m)
+    arm = phase_arm(c.past.state, whole, m)
     extra = phase_force(pair.stiffness, arm, shaft.phase_tolerance, pair.play)
     return np.maximum(shared, np.abs(c.members.torque) / 2.0 + extra * arm), extra
 

@@ -160,7 +160,7 @@ def _surface(c: Context) -> float:
 def _blow(c: Context, push: Floats, speed: float) -> Check:
     """The link is brought to rest on the stop at the catch, on top of what then presses it on."""
     stop, link, end, pin = c.sizes.stop, c.sizes.link, c.sizes.chain_end, c.sizes.chain_pin
-    m, s, arm = c.design.mechanism, c.past.state, c.stack.pin_root_arm
+    m, s, arm = c.design.mechanism, c.past.winding, c.stack.pin_root_arm
     hung = end.material.density * end.width * end.height * (end.length + end.height)
     hung += pin.material.density * math.pi / 4.0 * pin.middle_diameter**2 * c.stack.chain_plane_width
     inertia = swing_inertia(

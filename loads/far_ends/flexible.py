@@ -99,7 +99,7 @@ def sheave(c: Context, least_diameter: float, how: str, whence: str) -> list[Che
     turning = c.design.moving.disc_speed if c.design.moving is not None else None
     speed = None
     if turning and wheel.pitch_radius > 0.0:
-        speed = turning * np.abs(c.past.state.line.arm) / wheel.pitch_radius
+        speed = turning * np.abs(c.past.state.line.arm) / wheel.pitch_radius * c.past.over(1.0, 0.0)  # while it winds
     return rows + bearing_checks(c, "sheave_bearing", "bore", bush, force, speed)
 
 

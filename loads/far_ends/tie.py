@@ -109,12 +109,12 @@ def checks(c: Context) -> list[Check]:
             )
         )  # fmt: skip
     rows += own_pin(c, "output_pin")
-    line = c.past.state.line
+    line = c.past.winding.line
     assert isinstance(line, TiedLine)
     i = int(np.argmin(line.closing))
     rows.append(
         Check(
-            "output", "guide", "transmission angle", c.past.case_at(i), float(c.past.state.crank_angle[i]), LEAST_CLOSING,
+            "output", "guide", "transmission angle", c.past.case_at(i), float(c.past.winding.crank_angle[i]), LEAST_CLOSING,
             max(float(line.closing[i]), 0.0), "1", 1.0,
             "cosine between the tie and the way of its pin, no less than that of 45°", COMMON,
         )
@@ -124,7 +124,7 @@ def checks(c: Context) -> list[Check]:
 
 def _apart(c: Context, line: TiedLine) -> list[Check]:
     """Disc and link beside the output: its fork is wider than the tie, so they stand apart seen along the axis."""
-    m, s, fork = c.design.mechanism, c.past.state, c.sizes.chain_end.height / 2.0
+    m, s, fork = c.design.mechanism, c.past.winding, c.sizes.chain_end.height / 2.0
     px, py = line.qx + line.length * line.ux, line.qy + line.length * line.uy
     ax, ay = m.crank_radius * np.cos(s.crank_angle), m.crank_radius * np.sin(s.crank_angle)
     lx, ly = np.cos(s.link_direction), np.sin(s.link_direction)

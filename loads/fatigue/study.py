@@ -1,7 +1,7 @@
 """Fatigue of every feature for the stated number of shots: lives, factors, checks. MPa, shots.
 
-One shot is a closed cycle of stress: from rest through the winding to the release, and back to rest. What swing and
-snatch do after the release is not in it, as the release study is not part of this version.
+One shot is a closed cycle of stress: from rest through the winding to the release, through swing and snatch where the
+release is covered, and back to rest.
 """
 
 from __future__ import annotations
@@ -32,7 +32,7 @@ from parts.design import Fatigue, Floats
 Indices = NDArray[np.intp]
 
 CHECK = "fatigue"
-RELEASE = "the snatch after the release is not in the stress history: the release study is not part of this version"
+RELEASE = "swing and snatch after the release are NOT in the stress history, as the release is not covered"
 
 
 @dataclass(frozen=True, slots=True)
@@ -66,12 +66,14 @@ class FatigueStudy:
     rows: tuple[FatigueRow, ...]
     checks: tuple[Check, ...]
     inspect_after: int | None  # a suggestion; None: nothing wears out
+    with_release: bool = False  # swing and snatch are in the stress history
 
     @property
     def cautions(self) -> tuple[str, ...]:
         """What is to be said beside the lives."""
         return (
-            f"Fatigue lives are estimates for parts as drawn, {100.0 * self.reliability:.6g} % of which hold; {RELEASE}.",
+            f"Fatigue lives are estimates for parts as drawn, {100.0 * self.reliability:.6g} % of which hold"
+            + ("." if self.with_release else f"; {RELEASE}."),
             "Fatigue: corrosion, wear, fretting in running joints, nicks and welds are not in the lives.",
         )
 
@@ -101,7 +103,8 @@ def fatigue_study(c: Context) -> FatigueStudy | None:
     share, least = inspection()
     after = max(least, int(share * min(min(lives), wish.shots))) if lives else None
     checks = tuple(check for _, check in found)
-    return FatigueStudy(wish.shots, wish.reliability, wish.surfaces, rows, checks, after)
+    with_release = c.past.release is not None
+    return FatigueStudy(wish.shots, wish.reliability, wish.surfaces, rows, checks, after, with_release)
 
 
 def line_of(site: Site, wish: Fatigue) -> SNLine:

@@ -7,10 +7,14 @@ check says what falls short.
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+
 from loads.members import History
 from loads.proportions.basis import SPIGOT, Pair
 from loads.proportions.drive import DriveSide
+from loads.proportions.endurance import Settled, raised_for_life
 from loads.proportions.links import LinkSide
+from loads.proportions.locking import LockSide
 from parts.catalogue import Catalogue
 from parts.design import Assumed, Design
 from parts.sizes import LinkSizes, Sizes, StopSizes
@@ -22,7 +26,7 @@ WIDE_OF_BORE = 1.6
 MOST_TRIES = 6  # plates that are tried for the stop's sake
 
 
-class _Proportioner(LinkSide, DriveSide):
+class _Proportioner(LinkSide, DriveSide, LockSide):
     """Settles one design's sizes, in the order in which one needs another."""
 
     def settle(self) -> tuple[Sizes, Stack, tuple[Assumed, ...]]:
@@ -36,7 +40,8 @@ class _Proportioner(LinkSide, DriveSide):
         stack = self.stack(width, link.thickness, disc.thickness)
         fits = self._fits(crank.diameter, chain_pin.diameter, stop, stack)
         running = self._running(disc, link, crank, chain_pin, fits, stack)
-        sizes = Sizes(self.gap, disc, link, stop, crank, chain_pin, end, fits, running)
+        lock = self._lock_pin(disc, pair.crank, link, stop)
+        sizes = Sizes(self.gap, disc, link, stop, crank, chain_pin, end, fits, running, lock)
         return sizes, stack, tuple(self.ledger.rows)
 
     def _link_and_stop(self, end_width: float) -> tuple[Pair, LinkSizes, float, StopSizes]:
@@ -68,5 +73,9 @@ class _Proportioner(LinkSide, DriveSide):
 
 
 def proportion(design: Design, past: History, catalogue: Catalogue) -> tuple[Sizes, Stack, tuple[Assumed, ...]]:
-    """All sizes of a design, its stack, and what was assumed on the way."""
-    return _Proportioner(design, past, catalogue).settle()
+    """All sizes of a design, its stack, and what was assumed on the way; large enough for the shots that it asks for."""
+
+    def settle(floors: Mapping[str, float]) -> Settled:
+        return _Proportioner(design, past, catalogue, floors).settle()
+
+    return raised_for_life(design, past, settle)

@@ -3,14 +3,17 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Mapping
 from dataclasses import dataclass
 
 import numpy as np
 
-from loads.checks import eyes, pins
+from loads.checks import eyes, pins, press
 from loads.members import History
+from loads.practice import press_fits
 from parts.catalogue import Catalogue
 from parts.design import Assumed, Design, Floats, LinkWish, Material, PinWish, StopWish
+from parts.fits import covers
 from parts.hardening import hardened
 from parts.hardware import preferred
 from parts.stack import Stack, make_stack
@@ -23,6 +26,7 @@ LEAST_BOLT = 0.2  # of the bore; common practice, no source
 LEAST_PIN = 20.0  # link length over least pin diameter; common practice, no source
 LOOK_AT = 5  # plates of which the link's width is worked out
 EDGE = 0.9  # of the crank pin: least material between its hole and the rim; common practice, no source
+RINGS = np.linspace(0.02, 0.97, 20)  # pin over ring, whatever edge distance the plate comes to have
 LEAST_WIDTH = 10.0  # link length over least width; common practice, no source
 
 
@@ -58,7 +62,7 @@ class Demands:
     torque: Floats
 
 
-def demands(past: History, share: float, shock: float) -> Demands:
+def demands(past: History, share: float, shock: Floats) -> Demands:
     s = past.state
     c, sn = np.cos(s.link_direction), np.sin(s.link_direction)
 
@@ -114,10 +118,16 @@ def next_up(sizes: Floats, wanted: float) -> float:
 
 
 class Basis:
-    """One design with the loads and sizes that its proportions come from."""
+    """One design with the loads and sizes that its proportions come from.
 
-    def __init__(self, design: Design, past: History, catalogue: Catalogue) -> None:
+    ``floors``: least sizes (mm) by key of the design file, of what it leaves open.
+    """
+
+    def __init__(
+        self, design: Design, past: History, catalogue: Catalogue, floors: Mapping[str, float] | None = None
+    ) -> None:
         self.design, self.past, self.catalogue = design, past, catalogue
+        self.floors = floors or {}
         self.ledger = Ledger()
         self.step = 25.4 / 16.0 if design.identity.units == "us" else 1.0
         take, z = self.ledger.material, catalogue
@@ -146,7 +156,7 @@ class Basis:
         self.least_width = 0.0  # of the link, for what stands beside it
         kind = self.stack(1.0, 1.0, 1.0)
         self.headed = kind.crank_pin_headed
-        self.loads = demands(past, kind.load_share, t.shock_factor)
+        self.loads = demands(past, kind.load_share, past.over(t.shock_factor))
 
     def _hardened(self, part: str, wish: LinkWish | PinWish | StopWish, grade: str, whole: bool = True) -> Material:
         """A part's material, as the design hardens it; of a link the flank alone is hardened."""
@@ -156,6 +166,15 @@ class Basis:
     def stack(self, end_width: float, link: float, disc: float) -> Stack:
         d = self.design
         return make_stack(d.mechanism.stack, d.targets.load_share, d.far_end, end_width, self.gap, link, disc)
+
+    def least(self, key: str) -> float:
+        """The floor under a size (mm); 0 where there is none."""
+        return self.floors.get(key, 0.0)
+
+    def from_floor(self, sizes: Floats, key: str) -> Floats:
+        """The sizes (mm) from the key's floor on; the largest of them where it is above them all."""
+        above = sizes[sizes >= self.least(key) - 1e-9]
+        return above if above.size else sizes[-1:]
 
     def within(self, sizes: Floats, material: Material) -> Floats:
         """The sizes (mm) that the material's table covers; the smallest of them where it covers none."""
@@ -195,3 +214,14 @@ class Basis:
         f_y = np.array([min(pin.yield_strength(float(x)), plate.yield_strength(at)) for x in d])
         capacity = np.min([rule.capacity for rule in eyes.bearing_rules(t, d, f_y, turns)], axis=0)
         return np.asarray(force * self.yields / np.maximum(capacity, 1e-9))
+
+    def _press_fit(self, d: float, outer: Material, inner: Material) -> str:
+        """The first press fit that stays elastic in a ring of any width, else the loosest."""
+        fits = press_fits()
+        if not covers(d):
+            return fits[0]
+        for fit in fits:
+            ring, pin = press.fit_stresses(fit, d, d / RINGS, outer, inner)
+            if np.max(ring) <= outer.yield_strength(d) and np.max(pin) <= inner.yield_strength(d):
+                return fit
+        return fits[-1]

@@ -45,7 +45,8 @@ class DiscSide(StopSide):
             )
         )
         there_are = self.within(self.plates, self.disc_material)
-        plates = np.array([wish.thickness]) if wish.thickness is not None else there_are[there_are >= seat]
+        open_plates = self.from_floor(there_are, "disc.thickness")
+        plates = np.array([wish.thickness]) if wish.thickness is not None else open_plates[open_plates >= seat]
         screws, k = self._hub_bolts(bore), 0
         best, least = None, math.inf
         for t in plates if plates.size else there_are[-1:]:
@@ -199,7 +200,7 @@ class DiscSide(StopSide):
         given = self.design.disc.bolt_hole
         if given is not None:
             return (cap_screw_for_hole(given),)
-        listed = cap_screws()
+        listed = tuple(s for s in cap_screws() if s.clearance_hole >= self.least("disc.bolt_hole") - 1e-9)
         return tuple(s for s in listed if s.diameter >= min(LEAST_BOLT * bore, 12.0)) or listed[-1:]
 
     def _bolt_layout(
@@ -248,7 +249,7 @@ class DiscSide(StopSide):
         else:
             along, across = stop.length / 2.0, stop.width / 2.0
             rim = max(rim, farthest(x, y, direction, along, across) + 3.0)
-        rim = max(rim, circle / 2.0 + sink / 2.0 + max(3.0, 0.3 * sink))
+        rim = max(rim, circle / 2.0 + sink / 2.0 + max(3.0, 0.3 * sink), self.least("disc.outer_diameter") / 2.0)
         return round_up(2.0 * rim, 5.0 * self.step)
 
 

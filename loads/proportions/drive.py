@@ -6,13 +6,12 @@ import math
 
 import numpy as np
 
-from loads.checks import pins, press, shaft
+from loads.checks import pins, shaft
 from loads.checks.bearings import bush_pressure
-from loads.practice import key_for, press_fits, value, values
+from loads.practice import key_for, value, values
 from loads.proportions.basis import BAR, SPIGOT, index, next_up, round_up
 from loads.proportions.discs import DiscSide
 from parts.design import Assumed, BearingWish, Floats, Material
-from parts.fits import covers
 from parts.sizes import (
     BearingSizes,
     ChainPinSizes,
@@ -26,8 +25,6 @@ from parts.sizes import (
     StopSizes,
 )
 from parts.stack import Stack
-
-RINGS = np.linspace(0.02, 0.97, 20)  # pin over ring, whatever edge distance the plate comes to have
 
 
 class DriveSide(DiscSide):
@@ -63,17 +60,6 @@ class DriveSide(DiscSide):
             self.ledger.rows.append(Assumed(f"fits.{key}", usual, "text", why))
         return given or usual
 
-    def _press_fit(self, d: float, outer: Material, inner: Material) -> str:
-        """The first press fit that stays elastic in a ring of any width, else the loosest."""
-        fits = press_fits()
-        if not covers(d):
-            return fits[0]
-        for fit in fits:
-            ring, pin = press.fit_stresses(fit, d, d / RINGS, outer, inner)
-            if np.max(ring) <= outer.yield_strength(d) and np.max(pin) <= inner.yield_strength(d):
-                return fit
-        return fits[-1]
-
     def _running(
         self, disc: DiscSizes, link: LinkSizes, crank: CrankPinSizes, chain: ChainPinSizes, fits: FitSizes, stack: Stack
     ) -> Running:
@@ -106,6 +92,7 @@ class DriveSide(DiscSide):
                 Assumed("shaft.drive", drive, "text", "one piece with the flange that the disc is bolted to")
             )
         d = self.within(self.pins[self.pins >= min(disc.bore / SPIGOT - 1e-6, self.pins[-1])], material)
+        d = self.from_floor(d, "shaft.diameter")
         if wish.diameter is not None:
             d = np.array([wish.diameter])
         uses = np.array([self._shaft_use(float(x), material, drive, torque, disc, stack) for x in d])
@@ -188,7 +175,7 @@ class DriveSide(DiscSide):
             fits.crank_pin_link, link.thickness,
         )  # fmt: skip
         both = shared / stack.load_share
-        arm = shaft.phase_arm(self.past.state, both, whole, m)
+        arm = shaft.phase_arm(self.past.state, whole, m)
         given = self.design.shaft.phase_tolerance
         if given is None:
             spare = np.maximum(stack.load_share * float(np.max(whole)) - whole / 2.0, 0.0)
@@ -224,7 +211,7 @@ class DriveSide(DiscSide):
     def _sheave_force(self) -> Floats:
         """Force (N, n) of both legs of the chain on the sheave."""
         s = self.past.state
-        return np.asarray(np.hypot(s.sheave_x, s.sheave_y)) * self.design.targets.shock_factor
+        return np.asarray(np.hypot(s.sheave_x, s.sheave_y)) * self.past.over(self.design.targets.shock_factor)
 
     def _sheave_pin(self) -> SheavePinSizes:
         wish, take = self.design.sheave_pin, self.ledger.take

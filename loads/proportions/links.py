@@ -7,12 +7,13 @@ from dataclasses import replace
 
 import numpy as np
 
-from loads.checks import eyes, pins
+from loads.checks import eyes, pins, press
 from loads.checks.link import link_rules
 from loads.checks.link_sections import LinkShape
 from loads.far_ends.behaviour import PlateUse
 from loads.far_ends.flexible import bridge_depth
 from loads.far_ends.registry import behaviour
+from loads.practice import value
 from loads.proportions.basis import (
     LEAST_LINK,
     LEAST_WIDTH,
@@ -28,6 +29,7 @@ from loads.proportions.basis import (
 from parts.contact_lengths import chain_pin_in_link, crank_pin_in_link
 from parts.design import Assumed, Floats
 from parts.far_ends.base import EndForm
+from parts.fits import covers, interference
 from parts.hardware import retaining_ring
 from parts.sizes import ChainEndSizes, ChainPinSizes, CrankPinSizes, LinkSizes
 
@@ -72,6 +74,7 @@ class LinkSide(Basis):
             least = max(3.0, wish.mechanism.link_length / LEAST_LINK, thickness)
             plates = self.within(self.plates, self.link_material)
             thicknesses = plates[plates >= least] if least <= plates[-1] else plates[-1:]
+            thicknesses = self.from_floor(thicknesses, "link.thickness")
         pairs = []
         for t in (float(x) for x in thicknesses):
             crank, crank_use = self._crank_diameter(t, end_width)
@@ -95,7 +98,8 @@ class LinkSide(Basis):
 
     def _crank_diameter(self, t: float, end_width: float) -> tuple[float, float]:
         given = self.design.crank_pin.diameter
-        d = np.array([given]) if given is not None else self.within(self.pins, self.crank_material)
+        there_are = self.from_floor(self.within(self.pins, self.crank_material), "crank_pin.diameter")
+        d = np.array([given]) if given is not None else there_are
         stack = self.stack(end_width, t, 10.0)
         couple = -stack.pin_root_arm * self.loads.pin + stack.chain_offset * self.loads.chain
         moment = float(np.max(np.linalg.norm(couple, axis=0)))
@@ -119,11 +123,11 @@ class LinkSide(Basis):
         """Journal in the link, middle under the chain end, and the larger use of the two."""
         given = self.design.chain_pin.diameter
         pins_there_are = self.within(self.pins, self.chain_pin_material)
-        d = np.array([given]) if given is not None else pins_there_are
+        d = np.array([given]) if given is not None else self.from_floor(pins_there_are, "chain_pin.diameter")
         m, whole = self.chain_pin_material, float(np.max(self.loads.whole))
         side = float(np.max(self.loads.tension))
         stack = self.stack(end_width, t, 10.0)
-        middle = pins_there_are
+        middle = self.from_floor(pins_there_are, "chain_pin.middle_diameter")
         turning = self.bearing_use(middle, end_width, whole, m, self.end_material, end_width, True)
         if stack.chain_pin_support == "double shear":
             use = self.pin_use(d, m, side, side * t / 2.0)
@@ -142,11 +146,32 @@ class LinkSide(Basis):
         touch = np.array([chain_pin_in_link(float(x), t) for x in d])
         pressed = self._pressed(self.loads.chain, stack.chain_offset, touch)
         use = np.maximum(use, self.bearing_use(d, touch, pressed, m, self.link_material, t, False))
-        i, k = index(use), index(middle_use)
+        k = index(middle_use)
+        if stack.chain_pin_support == "cantilever":
+            use = np.maximum(use, self._seat_turning_use(d, touch, stack.chain_offset, float(middle[k])))
+        i = index(use)
         journal, wanted = float(d[i]), float(middle[k])
         if stack.chain_pin_support == "double shear":
             wanted = max(wanted, journal + 2.0 * max(1.5, 0.1 * journal))
         return journal, next_up(self.pins, wanted), float(max(use[i], middle_use[k]))
+
+    def _seat_turning_use(self, d: Floats, touch: Floats, offset: float, middle: float) -> Floats:
+        """What a pin pressed into the link uses, over diameters, of what holds it against the chain end's friction.
+
+        At the largest pull, where it is most; the fit in the narrowest ring that a link of its width can be.
+        """
+        outer, inner, given = self.link_material, self.chain_pin_material, self.design.fits.chain_pin_link
+        force = float(np.max(self.loads.whole))
+        torque = force * self.design.friction.chain_pin * middle / 2.0
+        grip = np.asarray(press.seat_grip(np.asarray(force), np.asarray(offset * force), np.maximum(touch, 1e-9)))
+        for i, x in enumerate(map(float, d)):
+            if covers(x):
+                fit = given or self._press_fit(x, outer, inner)
+                least = press.effective_interference(interference(fit, x)[0])
+                ring = self.design.link.width or max(2.0 * x, self.least("link.width"))
+                pressure = press.fit_pressure(least, x, max(ring, 1.02 * x), outer, inner)
+                grip[i] = max(grip[i], float(press.holding_force(pressure, x, float(touch[i]), 1.0)))
+        return np.asarray(torque * value("press", "holding_target") / (value("press", "friction") * grip * d / 2.0))
 
     def _width(self, pair: Pair, end_width: float) -> tuple[float, float]:
         """Least width of the link (mm), and the share of a capacity that it uses there."""
@@ -155,6 +180,7 @@ class LinkSide(Basis):
             2.0 * pair.chain,
             self.design.mechanism.link_length / LEAST_WIDTH,
             self.least_width,
+            self.least("link.width"),
             1.5 * self._head(pair.crank) + 1.5 if self.headed else 0.0,
         )
         widths = np.arange(round_up(least, self.step), least + 400.0, self.step)
@@ -250,7 +276,7 @@ class LinkSide(Basis):
         force = float(np.max(pull))
         f_y, f_u = self.end_material.yield_strength(width), self.end_material.ultimate_strength(width)
         meat = width - 2.0 * sum(b - a for a, b in form.slots)
-        least = max(1.6 * pair.middle, 2.0 * own, form.least_height)
+        least = max(1.6 * pair.middle, 2.0 * own, form.least_height, self.least("chain_end.height"))
         h = np.arange(round_up(least, self.step), least + 300.0, self.step)
         use = np.zeros_like(h)
         hangs = self.design.fits.chain_end or RUNNING
@@ -285,7 +311,7 @@ class LinkSide(Basis):
         if span is None:
             return self.ledger.take(key, wish.pin_diameter, far.pin_diameter, f"the {far.noun}'s own pin")
         force = float(np.max(self.loads.whole))
-        d = self.within(self.pins, self.chain_pin_material)
+        d = self.from_floor(self.within(self.pins, self.chain_pin_material), "chain_end.pin_diameter")
         moment = float(pins.double_shear_moment(np.asarray(force), *span))
         use = self.double_shear_use(d, self.chain_pin_material, force / 2.0, moment)
         plate = self.end_material

@@ -36,6 +36,7 @@ class StopSide(Basis):
             "stop.height", wish.height, self.gap + link.thickness, "as high as the link's face towards the chain"
         )
         d = self.within(self.pins[self.pins >= min(6.0, self.pins[-1])], self.stop_material)
+        d = self.from_floor(d, "stop.diameter")
         if wish.diameter is not None:
             d = np.array([wish.diameter])
         weaker = np.array(
@@ -65,12 +66,12 @@ class StopSide(Basis):
             seat = StopSizes("post", post, 0.0, 0.0, height, 0.0, "", 0.0, 0.0, self.stop_material)
             fits = bool(np.min(use) <= 1.0) and post <= 1.25 * link.width and self.clears_bore(seat, link, bore)
             style = "post" if fits else "block"
-            self.ledger.rows.append(
-                Assumed(
-                    "stop.style", style, "text",
-                    "a post where one of at most 1.25 of the link's width bears the contact and clears the bore",
-                )
-            )  # fmt: skip
+            why = "a post where one of at most 1.25 of the link's width bears the contact and clears the bore"
+            # larger sizes for the sake of something else leave it the kind of stop that it was
+            post_was, block_was = self.least("stop.diameter") > 0.0, self.least("stop.dowel_diameter") > 0.0
+            if post_was or block_was:
+                style, why = "post" if post_was else "block", f"{why}, of the sizes that loads alone ask for"
+            self.ledger.rows.append(Assumed("stop.style", style, "text", why))
         if style == "post":
             diameter = self.ledger.take(
                 "stop.diameter", wish.diameter, post, "smallest at which contact, shear and bending reach their targets"
@@ -81,9 +82,11 @@ class StopSide(Basis):
     def _block(self, force: float, arm: float, height: float, link: LinkSizes, bore: float) -> StopSizes:
         wish, material = self.design.stop, self.block_material
         m, depth = self.design.mechanism, link.thickness
-        dowels, f_ub = np.array(dowel_diameters()), value("bolts", "ultimate")
+        dowels, f_ub = self.from_floor(np.array(dowel_diameters()), "stop.dowel_diameter"), value("bolts", "ultimate")
+        screws = [s for s in cap_screws() if s.clearance_hole >= self.least("stop.bolt_hole") - 1e-9]
         room = 2.0 * min(m.stop_reach, m.link_length - m.stop_reach)
         widths = list(self.within(np.arange(round_up(8.0, self.step), 200.0, self.step), material))
+        widths = list(self.from_floor(np.array(widths), "stop.width"))
         if wish.width is not None:
             widths = [wish.width]
         spare: tuple[bool, float, float, float, CapScrew] | None = None
@@ -95,7 +98,7 @@ class StopSide(Basis):
             bolt = next(
                 (
                     s
-                    for s in cap_screws()
+                    for s in screws
                     if s.stress_area * s.yield_strength >= tension
                     and preload(s) >= lift
                     and 0.9 * f_ub * s.stress_area >= lift * self.ultimate
@@ -115,6 +118,7 @@ class StopSide(Basis):
                 1.5 * force * math.sqrt(3.0) * self.yields / (f_y * width),
                 2.0 * width * lift * self.ultimate / (f_y * height**2),
                 for_holes,
+                self.least("stop.length"),
             )  # fmt: skip
             length = round_up(length, self.step)
             block = StopSizes(

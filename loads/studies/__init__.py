@@ -6,9 +6,11 @@ a file here, a line in ``loads.studies.registry``, and how it leaves in ``export
 
 from __future__ import annotations
 
-from typing import Protocol
+from collections.abc import Iterable
+from typing import Protocol, runtime_checkable
 
 from loads.records import Check
+from parts.design import Assumed
 
 
 class Study(Protocol):
@@ -19,3 +21,16 @@ class Study(Protocol):
 
     @property
     def cautions(self) -> tuple[str, ...]: ...
+
+
+@runtime_checkable
+class Assuming(Protocol):
+    """What a study has that settles values of its own which the design leaves out."""
+
+    @property
+    def assumed(self) -> tuple[Assumed, ...]: ...
+
+
+def assumed_by(studies: Iterable[Study]) -> tuple[Assumed, ...]:
+    """What studies have assumed on top of the design's own defaults."""
+    return tuple(row for study in studies if isinstance(study, Assuming) for row in study.assumed)

@@ -39,6 +39,9 @@ class FarEnd(ABC):
     over_sheave: ClassVar[bool] = True
     usual_factor: ClassVar[tuple[float, str]] = (5.0, PRACTICE)  # breaking strength over load, and why
 
+    # pull at which it would be stretched to double its length (E A), over its breaking strength
+    stretch: ClassVar[tuple[float, str]] = (60.0, PRACTICE)
+
     designation: str
     min_tensile_strength: float
     mass_per_metre: float | None

@@ -34,6 +34,8 @@ class Webbing(FarEnd):
     table: ClassVar[str] = NAME
     usual_factor: ClassVar[tuple[float, str]] = (7.0, "EN 1492-1, from memory: breaking force over working load")
 
+    stretch: ClassVar[tuple[float, str]] = (2.4, "6 % at the working load, a seventh of the strength; from memory")
+
     width: float
     thickness: float
     least_sheave_ratio: float  # diameter over thickness

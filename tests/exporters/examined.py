@@ -3,11 +3,11 @@
 from __future__ import annotations
 
 from functools import lru_cache
-from importlib.resources import files
 from pathlib import Path
 from tempfile import TemporaryDirectory
 
 from loads.examine import Examination, examine
+from tests.starters import text_of
 
 STARTERS = ("impact-rig", "seed-thrower", "soil-tamper")
 AWKWARD = 'A <b>bold</b> rig & "daughters\'" [red]'
@@ -15,8 +15,8 @@ AWKWARD = 'A <b>bold</b> rig & "daughters\'" [red]'
 
 @lru_cache(maxsize=16)
 def starter(name: str, *changes: tuple[str, str]) -> Examination:
-    """A starter design with pieces of its text exchanged. Each piece has to be there."""
-    text = (files("templates") / f"{name}.toml").read_text(encoding="utf-8")
+    """A starter design without its studies, with pieces of its text exchanged. Each piece has to be there."""
+    text = text_of(name)
     for old, new in changes:
         assert old in text, f"{old} is not in {name}"
         text = text.replace(old, new)

@@ -14,7 +14,7 @@ import pytest
 
 from exporters.command import main
 from exporters.starters import starters
-from tests.starters import changed, text_of
+from tests.starters import changed, text_of, whole_text_of
 
 RUN = "from exporters.entry import main; main()"
 
@@ -37,7 +37,7 @@ def test_start_lists_and_writes(tmp_path: Path, monkeypatch: pytest.MonkeyPatch,
         assert starter.name in listed
     assert run(monkeypatch, "start", "soil-tamper") == 0
     path = tmp_path / "soil-tamper.toml"
-    assert path.read_text(encoding="utf-8") == text_of("soil-tamper")
+    assert path.read_text(encoding="utf-8") == whole_text_of("soil-tamper")
     path.write_text("mine", encoding="utf-8")
     assert run(monkeypatch, "start", "soil-tamper") == 3
     assert path.read_text(encoding="utf-8") == "mine"
@@ -47,7 +47,7 @@ def test_start_lists_and_writes(tmp_path: Path, monkeypatch: pytest.MonkeyPatch,
 
 @pytest.mark.parametrize("name", [s.name for s in starters()])
 def test_every_line_of_a_starter_says_what_it_does(name: str) -> None:
-    for line in text_of(name).splitlines():
+    for line in whole_text_of(name).splitlines():
         if line.strip() and not line.startswith(("#", "[")) and line.strip() != "]":
             assert "#" in line, line
 
@@ -56,7 +56,7 @@ def test_check_says_the_verdict_first_and_exits_by_it(
     tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: Said
 ) -> None:
     path = tmp_path / "d.toml"
-    path.write_text(text_of("impact-rig"), encoding="utf-8")
+    path.write_text(whole_text_of("impact-rig"), encoding="utf-8")
     assert run(monkeypatch, "check", str(path)) == 0
     said = capsys.readouterr().out
     assert said.startswith("HOLDS")

@@ -65,7 +65,9 @@ def test_a_newcomer_gets_a_folder_for_each_starter(
     who = e.design.identity
     steps = {f"step/{who.number}-{p.name}-{who.revision}.step" for p in e.parts}
     assert steps | {f"step/{who.number}-assembly-{who.revision}.step"} == {p for p in listed if p.startswith("step/")}
-    assert {p for p in listed if p.startswith("dxf/")} <= {p.replace("step", "dxf") for p in steps}
+    swept = f"dxf/{who.number}-sweeps-{who.revision}.dxf"
+    assert {p for p in listed if p.startswith("dxf/")} - {swept} <= {p.replace("step", "dxf") for p in steps}
+    assert (swept in listed) == (e.design.enclosure is not None)
     assert {
         "check.json",
         "cycle.csv",

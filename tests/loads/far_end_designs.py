@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 _HEAD = """\
+[moving]
+stopped_elsewhere = true
 [design]
 title = "A machine"
 [mechanism]

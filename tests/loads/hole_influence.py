@@ -47,7 +47,7 @@ def _grid(x: Floats, y: Floats) -> tuple[Floats, Any]:
     return points, np.stack([a, a + y.size, a + y.size + 1, a + 1])
 
 
-def _series(angle: Floats) -> Floats:
+def series(angle: Floats) -> Floats:
     n = np.arange(1, 15)[:, None]
     return np.concatenate([np.ones((1, len(angle))), np.cos(n * angle), np.sin(n * angle)]).T
 
@@ -69,8 +69,8 @@ class Hole:
     def stress(self, load: Floats, points: Floats) -> Floats:
         """Hoop stress at points of the edge (rad), by a trigonometric series through the elements' own points."""
         found = self.plate.hoop(self.plate.solved(load, self.fixed), self.edge).ravel()
-        weights, *_ = np.linalg.lstsq(_series(self.angle.ravel()), found, rcond=None)
-        return np.asarray(_series(points) @ weights)
+        weights, *_ = np.linalg.lstsq(series(self.angle.ravel()), found, rcond=None)
+        return np.asarray(series(points) @ weights)
 
     def pressed(self, order: int, odd: bool, size: float) -> Floats:
         """Load of the pressure ``size`` cos(order θ), or sin."""

@@ -95,15 +95,12 @@ def test_rolling_bearings_left_open_say_what_to_buy(tmp_path: Path) -> None:
     assert 1.5 * worst <= rating.value < 1.5 * worst + 100
 
 
-MOVING = '\n[moving]\nstopped_elsewhere = true\ndisc_speed = "{} rpm"\n'
-
-
 def test_speed_brings_pv_and_the_blow(tmp_path: Path) -> None:
-    slow = examined(tmp_path, text_of("impact-rig") + MOVING.format(6))
+    slow = examined(tmp_path, changed("impact-rig", moving__disc_speed='"6 rpm"'))
     rows = {(c.part, c.check): c for c in slow.checks}
     assert slow.holds, [(c.part, c.check) for c in slow.falls_short]
     assert {("main_bearing", "bush pv"), ("sheave_bearing", "bush pv"), ("stop", "blow of the catch")} <= set(rows)
-    fast = examined(tmp_path, text_of("impact-rig") + MOVING.format(1500))
+    fast = examined(tmp_path, changed("impact-rig", moving__disc_speed='"1500 rpm"'))
     assert {("stop", "blow of the catch"), ("main_bearing", "bush pv")} <= {(c.part, c.check) for c in fast.falls_short}
     silent = examined(tmp_path, text_of("impact-rig"))
     assert not {"bush pv", "blow of the catch"} & {c.check for c in silent.checks}

@@ -90,7 +90,7 @@ def test_the_link_at_its_stop() -> None:
 
 def test_the_crank_pin_at_its_root() -> None:
     """P = −(T u + N n), N = T L sin α/d; σ = K_f 32 P a/(π d³) at fibres that turn with the disc; K_f 2.7·1.1^0.43."""
-    e, s = machine("impact-rig", SHOTS), shot()
+    e, s = machine("impact-rig", SHOTS, crank_pin__diameter='"16 mm"'), shot()
     push = s.seated * s.pull * L / REACH * np.sin(s.along - s.link)  # what the stop takes, across the link
     x = -s.pull * np.cos(s.along) - push * np.sin(s.link)
     y = -s.pull * np.sin(s.along) + push * np.cos(s.link)

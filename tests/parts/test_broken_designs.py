@@ -120,9 +120,7 @@ CHANGED = [
     ('yield = "900 MPa"', 'yield = "900 Mpa"', 'materials."Spring plate".yield', '"900 MPa"'),
     ('yield = "900 MPa"', 'yield = "1200 MPa"', 'materials."Spring plate".yield', "no more than ultimate"),
     ("[clearances]", "[clearance]", "clearance", "clearances (the nearest"),
-    ("[clearances]", "[drive]\nstall_torque = 3\n[clearances]", "drive", "does not evaluate [drive] yet"),
     ("[clearances]", "[process.disc]\nkerf = 1\n[clearances]", "process", "does not evaluate [process] yet"),
-    ("[clearances]", "[tolerances]\n[clearances]", "tolerances", "does not evaluate [tolerances] yet"),
     ("[clearances]", "[fatigue]\n[clearances]", "fatigue.shots", "missing"),
     ("[crank_pin]", "[[crank_pin]]", "crank_pin", "a table, [crank_pin]"),
 ]

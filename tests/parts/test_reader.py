@@ -46,6 +46,7 @@ def test_full(tmp_path: Path) -> None:
     assert design.moving.gravity == pytest.approx(9810)
     assert design.moving.disc_speed == pytest.approx(20 * math.tau / 60)
     assert [a.key for a in design.assumed] == [
+        "mechanism.reverse",
         "friction.crank_pin",
         "friction.chain_pin",
         'materials."Spring plate".poissons_ratio',
@@ -65,6 +66,7 @@ def test_least(tmp_path: Path) -> None:
         "mechanism.seat_angle": "3 deg",
         "mechanism.stop_reach": "73.4 mm",
         "mechanism.hold_margin": "4 deg",
+        "mechanism.reverse": "forbidden",
         "sheave.pitch_radius": "63.5 mm",
         "sheave.wrap": "left",
         "sheave.exit_angle": "half a wrap",
