@@ -16,6 +16,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from loads.checks.context import Context
+from loads.inertia import LOOSE
 from loads.linkage import state
 from loads.spring_law import spring_energy
 from parts.design import Drive
@@ -56,6 +57,8 @@ def turning(parts: tuple[Part, ...], crank_radius: float, seat_angle: float, tur
     """
     inertia = x = y = 0.0
     for part in parts:
+        if part.key in LOOSE:
+            continue
         body = mass_properties(part)
         own = body.inertia_z - body.mass * (body.center[0] ** 2 + body.center[1] ** 2)
         for place in part.placements:

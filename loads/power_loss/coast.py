@@ -8,19 +8,17 @@ then on. mm, N, N·mm, rad, kg, kg·mm².
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable
 from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
 
 from loads.cycle import Cycle, corner_angles
+from loads.inertia import Inertia
 from loads.linkage import Linkage, State, free_line, state
 from loads.roots import bracketed_root, first_down_crossing
 from loads.spring_law import spring_energy
 from parts.design import Floats
-from parts.outline import Part
-from parts.shape import mass_properties
 
 CELL = math.radians(2.0)
 _POINTS, _WEIGHTS = (np.asarray(a, dtype=np.float64) for a in np.polynomial.legendre.leggauss(5))
@@ -28,44 +26,6 @@ WORK = 1000.0  # kg·mm²/s² in a N·mm
 TURNS_BACK, FIRES, IN_REVERSE, UNKNOWN = "turns back", "fires", "fires in reverse", "beyond what can be told"
 
 LEAST_INERTIA = 1e-9  # kg·mm²
-
-
-@dataclass(frozen=True, slots=True)
-class Inertia:
-    """What turns: with the disc about O, and the link with what hangs on it."""
-
-    disc: float  # kg·mm² about O: discs, stops, crank pins
-    link_mass: float  # kg: links, chain pin
-    link_middle: float  # mm from A along the link to their centre of mass
-    link: float  # kg·mm² about A
-    drive: float | None = None  # kg·mm² at the disc, where the design gives it
-
-    def about_disc(self, crank_radius: float, link_angle: Floats, rate: Floats) -> Floats:
-        """What the disc's speed sees (kg·mm²), drive apart, while the link at an angle λ (rad) turns ``rate`` times as fast.
-
-        ½ J ω² is the energy of disc and link: J = J_d + m r² − 2 m r g rate cos λ + J_A rate², g the link's centre of
-        mass from A. Source: kinematics of a rigid body; the link is symmetric about its axis.
-        """
-        m, r = self.link_mass, crank_radius
-        swing = -2.0 * m * r * self.link_middle * rate * np.cos(link_angle)
-        return np.asarray(self.disc + m * r * r + swing + self.link * rate**2)
-
-
-def inertia_of(parts: Iterable[Part], drive: float | None = None) -> Inertia:
-    """Inertia of the made parts from their outlines and densities; chain and chain end do not turn with the disc."""
-    disc = mass = first = link = 0.0
-    for part in parts:
-        own = mass_properties(part)
-        for place in part.placements:
-            x, y, _ = place.at
-            c, s = math.cos(place.angle), math.sin(place.angle)
-            gx, gy = own.center[0] * c - own.center[1] * s, own.center[0] * s + own.center[1] * c
-            about = own.inertia_z + own.mass * (x * x + y * y + 2.0 * (x * gx + y * gy))
-            if place.mover == "disc":
-                disc += about
-            elif place.mover == "link":
-                mass, first, link = mass + own.mass, first + own.mass * (x + gx), link + about
-    return Inertia(disc, mass, first / mass if mass else 0.0, link, drive)
 
 
 @dataclass(frozen=True, slots=True)

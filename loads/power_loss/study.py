@@ -9,10 +9,11 @@ import numpy as np
 
 from loads.checks.context import Context
 from loads.cycle import Events
+from loads.inertia import Inertia, inertia_of
 from loads.linkage import Linkage, expanded_state, state
 from loads.power_loss.bands import RUNS_ON, STAYS, UNWINDS, Fate, Stretch
 from loads.power_loss.cautions import power_loss_cautions
-from loads.power_loss.coast import Coast, Inertia, Path, inertia_of, make_path
+from loads.power_loss.coast import Coast, Path, make_path
 from loads.power_loss.seat import (
     AS_DESIGNED,
     LEAST,

@@ -9,6 +9,7 @@ import numpy as np
 
 from loads.checks.context import Context
 from loads.checks.stop import root_stiffness
+from loads.inertia import inertia_of
 from loads.lines import FarLine, SheaveRun
 from loads.linkage import state
 from loads.release.lift_off import lets_go
@@ -46,21 +47,6 @@ def copies(c: Context, key: str) -> list[tuple[Part, int]]:
     return [(part, part.quantity) for part in c.parts if part.key == key]
 
 
-def about_the_disc(c: Context) -> float:
-    """Inertia (kg·mm²) about the disc axis of what turns with the disc: discs, stops, crank pins."""
-    total = 0.0
-    for key in ("crank_disc", "stop", "crank_pin", "crank_spacer"):
-        for part, many in copies(c, key):
-            p = mass_properties(part)
-            own = p.inertia_z - p.mass * math.hypot(p.center[0], p.center[1]) ** 2
-            for place in part.placements[:many]:
-                cos, sin = math.cos(place.angle), math.sin(place.angle)
-                x = place.at[0] + cos * p.center[0] - sin * p.center[1]
-                y = place.at[1] + sin * p.center[0] + cos * p.center[1]
-                total += own + p.mass * (x**2 + y**2)
-    return total
-
-
 @dataclass(frozen=True)
 class Swinging:
     """The link and what hangs on it, about the crank pin: kg, kg·mm, kg·mm²."""
@@ -71,17 +57,13 @@ class Swinging:
 
 
 def swinging(c: Context, line_mass: float) -> Swinging:
-    """Links, chain pin, spacers on it, the plate on the chain pin, and ``line_mass`` (kg) of the line at the pin."""
-    length = c.design.mechanism.link_length
-    mass = first = inertia = 0.0
-    for part, many in copies(c, "swing_link"):
-        p = mass_properties(part)
-        mass, first, inertia = mass + many * p.mass, first + many * p.mass * p.center[0], inertia + many * p.inertia_z
-    tip = line_mass
-    for key in ("chain_pin", "chain_spacer", c.design.far_end.part):
-        share = 0.5 if key == "tie" else 1.0  # of a tie the other half goes with the output
-        tip += sum(share * many * mass_properties(part).mass for part, many in copies(c, key))
-    return Swinging(mass + tip, first + tip * length, inertia + tip * length**2)
+    """Links with what sits on them, the plate on the chain pin, and ``line_mass`` (kg) of the line at the pin."""
+    length, link = c.design.mechanism.link_length, inertia_of(c.parts)
+    end = c.design.far_end.part
+    share = 0.5 if end == "tie" else 1.0  # of a tie the other half goes with the output
+    tip = line_mass + sum(share * many * mass_properties(part).mass for part, many in copies(c, end))
+    first = link.link_mass * link.link_middle
+    return Swinging(link.link_mass + tip, first + tip * length, link.link + tip * length**2)
 
 
 def line_length(c: Context) -> float:
@@ -135,7 +117,7 @@ def own_speed(c: Context) -> float | None:
     forward = -s.torque - s.friction_torque
     work = float(np.trapezoid(np.maximum(forward, 0.0), theta))
     drive = c.design.drive
-    inertia = about_the_disc(c) + (drive.inertia or 0.0 if drive is not None else 0.0)
+    inertia = inertia_of(c.parts).disc + (drive.inertia or 0.0 if drive is not None else 0.0)
     hung = swinging(c, 0.0)
     r = c.design.mechanism.crank_radius
     inertia += hung.inertia + hung.mass * r**2 - 2.0 * hung.first_moment * r * math.cos(c.design.mechanism.seat_angle)

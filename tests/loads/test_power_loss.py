@@ -15,9 +15,10 @@ from hypothesis import strategies as st
 
 from loads.checks.context import Context
 from loads.cycle import Cycle, cycle
+from loads.inertia import Inertia
 from loads.linkage import Linkage, State, seated_chain_pin_at, state
 from loads.power_loss.bands import RUNS_ON, STAYS, UNWINDS, Outcome, arms, idle_draw, outcomes
-from loads.power_loss.coast import FIRES, TURNS_BACK, WORK, Inertia, make_path
+from loads.power_loss.coast import FIRES, TURNS_BACK, WORK, make_path
 from loads.power_loss.seat import (
     GRAIN,
     SETTING,

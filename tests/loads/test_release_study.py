@@ -10,10 +10,11 @@ import pytest
 
 from loads.checks.context import Context
 from loads.examine import Examination
+from loads.inertia import inertia_of
 from loads.linkage import state
 from loads.members import members
 from loads.records import RELEASE, SNATCH
-from loads.release.bodies import about_the_disc, own_speed, swinging
+from loads.release.bodies import own_speed, swinging
 from loads.release.lift_off import lets_go
 from loads.release.study import ReleaseStudy
 from parts.problems import DesignRefused
@@ -202,6 +203,6 @@ def test_the_spring_gives_the_disc_a_speed_of_its_own(rig: Examination, tmp_path
     x, y = m.crank_radius - middle * np.cos(m.seat_angle), -middle * np.sin(m.seat_angle)
     link = hung.inertia - hung.mass * middle**2 + hung.mass * float(x**2 + y**2)
     drive = e.design.drive.inertia if e.design.drive is not None else None
-    turning = about_the_disc(c) + link + (drive or 0.0)
+    turning = inertia_of(c.parts).disc + link + (drive or 0.0)
     assert s.speed == pytest.approx(np.sqrt(2.0 * work / (turning * 1e-3)), rel=0.02)
     assert own_speed(c) == pytest.approx(s.speed, rel=1e-3)
