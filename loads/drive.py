@@ -135,7 +135,7 @@ def at_disc(c: Context, w: Winding) -> Disc:
 
     Backwards the sheave's efficiency and all friction turn round: T = F η where the spring unwinds, F/η where it is drawn.
     """
-    s, eta = c.past.state, float(c.past.machine.efficiency)
+    s, eta = c.past.winding, float(c.past.machine.efficiency)
     on = s.crank_angle <= float(c.past.figures.events.first_end)
     theta, torque, rubbing = s.crank_angle[on], s.torque[on], s.friction_torque[on]
     moving, starting = torque + rubbing, torque + practice()["breakaway"] * rubbing

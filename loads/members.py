@@ -128,7 +128,7 @@ class Members:
     stop_on_link: Floats  # N·n, one side
     pin_on_link: Floats  # one side
     on_disc: Floats  # what pin and stop put on the disc, one side: the chain's pull, but for the link's inertia
-    inertia_on_link: Floats  # across the link at the stop's reach, one side: what swinging it takes; none while winding
+    inertia_on_link: Floats  # at the stop's reach, one side: what swinging the link takes; none while winding
     chain_couple: Floats  # moment of the chain's offset about the link's middle, one side
     spring_pull: Floats  # on the sheave, F along the exit direction
     friction_torque: Floats
@@ -151,7 +151,7 @@ def members(past: History, stack: Stack, targets: Targets) -> Members:
         stop_on_link=stop,
         pin_on_link=pin,
         on_disc=-pin - stop,
-        inertia_on_link=_swinging(past, side, stop),
+        inertia_on_link=_swinging(past, side, stop, pin),
         chain_couple=_couple(stack.chain_offset, side),
         spring_pull=_vector(s.sheave_x, s.sheave_y) * shock + chain,
         friction_torque=s.friction_torque * shock,
@@ -160,8 +160,8 @@ def members(past: History, stack: Stack, targets: Targets) -> Members:
     )
 
 
-def _swinging(past: History, side: Floats, stop: Floats) -> Floats:
-    """Force (3, n) at the stop's reach, across the link, that balances chain and stop about the crank pin.
+def _swinging(past: History, side: Floats, stop: Floats, pin: Floats) -> Floats:
+    """Force (3, n) at the stop's reach that balances chain and stop about the crank pin, and all of them along the link.
 
     So the link's inertia is taken where the stop would be; that of a real link lies about there and bends it less.
     """
@@ -169,9 +169,11 @@ def _swinging(past: History, side: Floats, stop: Floats) -> Floats:
     nx, ny = -np.sin(psi), np.cos(psi)
     across = side[0] * nx + side[1] * ny
     seat = stop[0] * nx + stop[1] * ny
-    left = -across * float(m.link_length) / float(m.stop_reach) - seat
-    left = left * past.over(0.0)  # while winding there is none but of rounding
-    return _vector(left * nx, left * ny)
+    total = side + stop + pin
+    none = past.over(0.0)  # while winding there is none but of rounding
+    left = (-across * float(m.link_length) / float(m.stop_reach) - seat) * none
+    along = (total[1] * nx - total[0] * ny) * none
+    return _vector(left * nx + along * ny, left * ny - along * nx)
 
 
 def in_link_frame(past: History, force: Floats) -> Floats:

@@ -94,7 +94,7 @@ def internal(shape: LinkShape, x: Floats, pull: Floats, couple: Floats, stop: Fl
     shear = pull[1][None, :] + before * stop[1][None, :]
     bending = pull[1][None, :] * (shape.length - x[:, None]) + before * stop[1][None, :] * (shape.reach - x[:, None])
     ones = np.ones_like(before)
-    return Internal(ones * pull[0], shear, bending, ones * couple[1], ones * couple[0])
+    return Internal(ones * pull[0] + before * stop[0], shear, bending, ones * couple[1], ones * couple[0])
 
 
 def section_stresses(shape: LinkShape, s: Sections, f: Internal) -> Floats:

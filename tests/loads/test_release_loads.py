@@ -86,6 +86,12 @@ def test_the_link_is_moved_by_pin_chain_and_stop(pair: Pair, twin: bool) -> None
     moment = float(m.link_length) * chain.force[1, b] * float(m.turn)
     moment = moment + float(m.stop_reach) * (stop.force[1, b] * float(m.turn) + across)
     balanced(moment, size * float(m.link_length))
+    # and along the link all of them together
+    along = np.stack([np.cos(past.state.link_direction), np.sin(past.state.link_direction), 0.0 * f.torque])
+    total = (f.chain_side + f.stop_on_link + f.pin_on_link + inertia)[:, b]
+    scale = float(np.abs(f.pin_on_link[:, b]).max())
+    assert np.allclose((total * along[:, b]).sum(axis=0), 0.0, atol=1e-9 * scale)
+    assert not np.any(inertia[:, : past.winding.crank_angle.size])
 
 
 @FEW
