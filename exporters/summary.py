@@ -19,7 +19,7 @@ if TYPE_CHECKING:
 WIDTH = 80
 GOVERNING = 6
 ROOM = 48  # columns that a check's name takes
-_IN_BRIEF = re.compile(r"; [^.]*(?=\.)| \(ISO [^)]*\)")  # second thoughts and standards: in full in bill and JSON
+_IN_BRIEF = re.compile(r"; (?:[^.]|\.(?=\d))*(?=\.)| \(ISO [^)]*\)")  # second thoughts and standards: in full in bill and JSON
 
 
 def print_summary(e: Examination, console: Console) -> None:

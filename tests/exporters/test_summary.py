@@ -61,3 +61,8 @@ def test_a_title_is_no_markup() -> None:
 
 def test_colour_only_adds_colour() -> None:
     assert re.sub(r"\x1b\[[0-9;]*m", "", printed(short(), colour=True)) == printed(short())
+
+
+def test_a_caution_cut_short_loses_whole_second_thoughts() -> None:
+    assert in_brief("The seat angle is 3.00°; the least that unwinds is 3.15°.") == "The seat angle is 3.00°."
+    assert in_brief("It stays; a margin of 6.6° would do. Keep clear.") == "It stays. Keep clear."
