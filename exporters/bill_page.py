@@ -16,6 +16,7 @@ from exporters.parts_list import items
 from exporters.shown import TITLES, Shown, angle, factor_text, figures
 from exporters.site_places import made, worst_rows
 from exporters.studies.registry import study_sections
+from exporters.summary import worst_of_each
 from loads.examine import Examination
 from loads.records import Check, LoadRow
 from parts.design import Assumed
@@ -71,12 +72,12 @@ def page(e: Examination, masses: Mapping[str, float] | None = None) -> Values:
 
 def under_load(e: Examination) -> list[Check]:
     """Checks that a load has a part in, the least margin first."""
-    return [row for row in e.checks if row.crank_angle is not None and row.safety_factor is not None]
+    return worst_of_each([row for row in e.checks if row.crank_angle is not None and row.safety_factor is not None])
 
 
 def of_shape(e: Examination) -> list[Check]:
     """Checks of fit and room, the least margin first."""
-    return [row for row in e.checks if row.crank_angle is None and row.safety_factor is not None]
+    return [row for row in e.checks if row.crank_angle is None and row.safety_factor is not None and not row.case]
 
 
 def section_keys(e: Examination) -> list[str]:

@@ -54,9 +54,11 @@ def drive_study(e: Examination) -> DriveStudy | None:
 
 def positions(e: Examination) -> list[Position]:
     """Every angle that a controller has to know, in order."""
-    at, f, known = e.figures.events, e.figures, power_loss(e)
+    at, f, known, noun = e.figures.events, e.figures, power_loss(e), e.design.far_end.noun
     rows = [
-        Position("zero", 0.0, "start dead centre: crank pin and chain in line with the disc axis, spring least drawn"),
+        Position(
+            "zero", 0.0, f"start dead centre: crank pin and {noun} in line with the disc axis, spring least drawn"
+        ),
         Position("catch", float(at.catch), "the stop takes the link"),
         Position("middle", float(f.middle_least_at), "least torque between the two peaks"),
         Position("hold", float(at.hold), "where the machine waits"),
@@ -64,12 +66,23 @@ def positions(e: Examination) -> list[Position]:
         Position("release", float(at.release), "the link lifts off its stop: the spring is let go"),
     ]
     if known is not None and known.back_contact is not None:
-        rows.append(Position("back of the stop", known.back_contact, "met when run backwards, the chain taut"))
+        rows.append(Position("back of the stop", known.back_contact, f"met when run backwards, the {noun} taut"))
     if known is not None and known.designed.outcome.fires_from is not None:
         rows.append(
             Position("fires by itself", known.designed.outcome.fires_from, "the spring beats friction from here on")
         )
     return sorted(rows, key=lambda row: row.angle)
+
+
+def holder(e: Examination) -> str:
+    """What holds the disc at a standstill: the brake, where the design gives one or no drive at all; else the drive."""
+    drive = e.design.drive
+    return "brake closed" if drive is None or drive.holding_torque is not None else "drive holding"
+
+
+def stop_words(e: Examination) -> str:
+    """The first of all safe actions."""
+    return "stop the drive and close the brake" if holder(e) == "brake closed" else "stop the drive, which has to hold"
 
 
 def counts_per_turn(e: Examination) -> float | None:
@@ -91,17 +104,22 @@ def zones(e: Examination) -> list[Zone]:
     found = []
     if known is not None and known.back_contact is not None:
         found.append(
-            Zone(
-                known.back_contact, 0.0, "mirrored machine beyond", (FORWARD,), "stop the drive, close the brake",
-                "running backwards winds a mirrored machine that fires in reverse: never go below zero by more than the "
-                "play; if it is there, come back forwards slowly",
-            )
-        )  # fmt: skip
+            Zone(known.back_contact, 0.0, "mirrored machine beyond", (FORWARD,), stop_words(e), _below_zero(e))
+        )
     hold, first_end = float(at.hold), float(at.first_end)
     for band in known.bands if known is not None else ():
         for start, end in _cut(band.start, band.end, (hold, first_end)):
             found.append(_zone(e, band, start, end, hold, first_end))
     return found
+
+
+def _below_zero(e: Examination) -> str:
+    if e.design.mechanism.reverse == "rated":
+        return "running backwards winds a mirrored machine that fires in reverse; the parts are rated for it, people are not"
+    return (
+        "running backwards winds a mirrored machine that fires in reverse: never go below zero by more than the play; if it "
+        "is there, come back forwards slowly"
+    )
 
 
 def _cut(start: float, end: float, marks: tuple[float, ...]) -> list[tuple[float, float]]:
@@ -110,31 +128,28 @@ def _cut(start: float, end: float, marks: tuple[float, ...]) -> list[tuple[float
 
 
 def _zone(e: Examination, band: Band, start: float, end: float, hold: float, first_end: float) -> Zone:
-    drive = drive_study(e)
+    drive, stop = drive_study(e), stop_words(e)
     back = (BACK,) if drive is None or drive.driven is None or drive.driven.unloads else ()
+    stand = f"{STAND}, {holder(e)}"
     if start >= first_end - 1e-9:
         allowed: tuple[str, ...] = (FORWARD,)
-        loss = "treat as fired: keep everybody out until the mass is at rest and the chain slack"
+        loss = "treat as fired: keep everybody out until everything is at rest and the spring let down"
         why = "past the null or the release: it fires, or will at a touch"
     elif start >= hold - 1e-9:
         allowed = (FORWARD, *back)
-        loss = "close the brake and put the lock pin in if there is one; do not try to reach the hold without a signal"
+        loss = f"{stop}; do not try to reach the hold without a signal"
         why = "between hold and firing: go forwards only to fire"
     elif band.fate == "unwinds":
-        allowed = (FORWARD, *back, f"{STAND} with the brake closed")
-        loss = (
-            "stop the drive and close the brake; without a brake it runs back by itself: keep clear of disc and chain"
-        )
+        allowed = (FORWARD, *back, stand)
+        loss = f"{stop}; if nothing holds it, it runs back by itself: keep clear"
         why = "without drive and brake it unwinds"
     elif band.fate == "stays":
-        allowed = (FORWARD, *back, f"{STAND} with the brake closed")
-        loss = (
-            "stop the drive and close the brake; the spring stays drawn: unload by hand-over procedure, never by touch"
-        )
+        allowed = (FORWARD, *back, stand)
+        loss = f"{stop}; the spring stays drawn: unload by the procedure, never by touch"
         why = "friction alone holds it: a knock can set it going either way"
     else:
         allowed = (FORWARD,)
-        loss = "stop the drive and close the brake; without a brake it runs on forwards by itself"
+        loss = f"{stop}; if nothing holds it, it runs on forwards by itself"
         why = "without drive it goes on winding or fires: never stop here"
     return Zone(start, end, band.fate, allowed, loss, why)
 

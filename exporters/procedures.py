@@ -8,7 +8,7 @@ from typing import Any
 import numpy as np
 
 from exporters.bill import environment
-from exporters.controller import controller_document, counts, positions, zones
+from exporters.controller import controller_document, counts, holder, positions, zones
 from exporters.shown import Shown, angle, shortfall
 from loads.examine import Examination
 from loads.linkage import state
@@ -22,7 +22,8 @@ def first_wind(e: Examination) -> list[dict[str, str]]:
     at, shown = e.figures.events, Shown(e.design.identity.units)
     catch, hold = math.degrees(float(at.catch)), math.degrees(float(at.hold))
     noun = e.design.far_end.noun
-    looks = {0.0: f"the {noun} just taut or slack as designed; nothing drawn; link in line with the {noun}"}
+    loose = "just taut, or slack as designed" if e.design.far_end.over_sheave else "in its pins"
+    looks = {0.0: f"the {noun} {loose}; nothing drawn; link in line with the {noun}"}
     stops = [*(s for s in STEPS if s < catch - BEFORE), catch - BEFORE, catch, catch + BEFORE]
     second = math.degrees(float(e.figures.second_peak_at))
     stops += [(catch + second) / 2.0, second, (second + hold) / 2.0, hold - 2.0 * BEFORE, hold - BEFORE, hold]
@@ -31,10 +32,10 @@ def first_wind(e: Examination) -> list[dict[str, str]]:
         catch: "the stop touches the flank over its whole length: stop and look before going on",
         catch + BEFORE: "link and disc go round as one; nothing rubs in the chain's plane",
         second: "second torque peak: listen, and watch the frame",
-        hold: "brake closed; drive off; put the lock pin in if there is one",
+        hold: holder(e) + ("; put the lock pin in: its hole is here" if e.sizes.lock_pin is not None else ""),
     }
     rows = []
-    for degrees in sorted({round(s, 3) for s in stops if 0.0 <= s <= hold + 1e-9}):
+    for degrees in sorted({s for s in stops if 0.0 <= s <= hold + 1e-9}):
         s = state(e.machine, np.array([math.radians(degrees)]), at.catch)
         torque = float(s.torque[0] + s.friction_torque[0])
         look = next((text for x, text in looks.items() if abs(x - degrees) < 1e-3), "nothing touches that should not")
@@ -57,11 +58,11 @@ def unloading(e: Examination) -> list[dict[str, str]]:
     """For each band how the spring is let down from there."""
     rows = []
     for z in zones(e):
-        how = "drive backwards slowly to zero, brake ready, eyes on the angle; then lock the drive out"
+        how = "drive backwards slowly to zero, ready to stop, eyes on the angle; then lock the drive out"
         if z.fate == "runs on" and z.end <= float(e.figures.events.hold) + 1e-9:
             how = "never stand here: go on forwards to the next band that stays or unwinds, then backwards to zero"
         elif z.start >= float(e.figures.events.first_end) - 1e-9:
-            how = "everybody out, payload off; let it fire into its bumper under guard, then take stock"
+            how = "everybody out; let it fire under guard as it was designed to, payload on, then take stock"
         elif z.end <= 0.0:
             how = "drive forwards slowly to zero"
         rows.append(
@@ -89,6 +90,6 @@ def procedures_html(e: Examination) -> str:
             for p in positions(e)
         ],
         "encoder": document["encoder"], "energy": shown.quantity(float(e.figures.stored_energy), "energy"),
-        "lock": e.sizes.lock_pin is not None,
+        "lock": e.sizes.lock_pin is not None, "noun": e.design.far_end.noun, "holder": holder(e),
     }  # fmt: skip
     return environment().get_template("procedures.html").render(values)

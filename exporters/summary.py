@@ -19,7 +19,8 @@ if TYPE_CHECKING:
 WIDTH = 80
 GOVERNING = 6
 ROOM = 48  # columns that a check's name takes
-_IN_BRIEF = re.compile(r"; (?:[^.]|\.(?=\d))*(?=\.)| \(ISO [^)]*\)")  # second thoughts and standards: in full in bill and JSON
+# second thoughts and standards: in full in bill and JSON
+_IN_BRIEF = re.compile(r"; (?:[^.]|\.(?=\d))*(?=\.)| \(ISO [^)]*\)")
 
 
 def print_summary(e: Examination, console: Console) -> None:
@@ -72,7 +73,15 @@ def governing(e: Examination, most: int = GOVERNING) -> list[Check]:
     """What falls short, worst first; then, while there is room, what a load brings nearest to its target."""
     short = list(e.falls_short)
     loaded = [c for c in e.checks if c.holds and c.crank_angle is not None and c.safety_factor is not None]
-    return (short + loaded)[:most]
+    return worst_of_each(short + loaded)[:most]
+
+
+def worst_of_each(rows: list[Check]) -> list[Check]:
+    """Of rows that differ in their case alone the worst: they come with the least margin first."""
+    once: dict[tuple[str, str, str], Check] = {}
+    for row in rows:
+        once.setdefault((row.part, row.site, row.check), row)
+    return list(once.values())
 
 
 def check_lines(row: Check) -> list[str]:

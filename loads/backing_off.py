@@ -113,7 +113,7 @@ class BackingOff:
 
 
 def _deg(angle: float) -> str:
-    return f"{math.degrees(angle):.1f}°"
+    return f"{math.degrees(angle):.1f}°".replace("-", "\N{MINUS SIGN}")
 
 
 def in_brief(length: float, units: Units) -> str:

@@ -105,6 +105,8 @@ def enclosure_study(c: Context) -> EnclosureStudy | None:
 
 
 def _clearance(sweep: str, at: Approach) -> Clearance:
+    if not math.isfinite(at.clearance):
+        raise ValueError(f"no clearance of {at.part} to {at.target}")  # it must never hold for want of a number
     return Clearance(sweep, at.target, at.part, at.clearance, at.excess, at.crank_angle, at.x, at.y)
 
 

@@ -132,7 +132,8 @@ def _depth(a: Shape, areas: Any) -> Floats:
     if len(corners):
         edges = shapely.boundary(areas)
         from_a = shapely.distance(edge, shapely.points(corners))
-        from_b = shapely.distance(edges[owner], shapely.points(corners))
+        # a point has no edge: how deep it is goes by the shape alone
+        from_b = np.nan_to_num(shapely.distance(edges[owner], shapely.points(corners)), nan=0.0)
         np.maximum.at(depth, owner, np.maximum(from_a, from_b))
     return np.asarray(depth)
 

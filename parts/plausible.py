@@ -143,6 +143,9 @@ def enclosure_problems(enclosure: EnclosureTable, raw: Mapping[str, object]) -> 
         yield Problem("enclosure", None, "an empty table", "outline, or above, below, behind, ahead; obstacles", "")
     if enclosure.outline is not None and (fault := polygon_fault(enclosure.outline)):
         yield Problem("enclosure.outline", None, fault, _POLYGON)
+    elif enclosure.outline is not None and not covers(enclosure.outline, (0.0, 0.0)):
+        accepted = "an outline with the disc axis, [0, 0], inside it"
+        yield Problem("enclosure.outline", None, "an outline beside the disc axis", accepted)
     for place, corners in enumerate(enclosure.obstacles or []):
         key = key_of(("enclosure", "obstacles", place))
         if fault := polygon_fault(corners):

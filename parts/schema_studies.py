@@ -47,6 +47,6 @@ class DriveTable(Table):
     holding_torque: Annotated[float | None, quantity("torque", least=0, most=1e6)] = None
     inertia: Annotated[float | None, quantity("inertia", least=0, most=1e6)] = None
     rotor_inertia: Annotated[float | None, quantity("inertia", least=0, most=1e6)] = None
-    encoder_counts: Annotated[float | None, number(least=1, most=1e9)] = None
+    encoder_counts: Annotated[int | None, Field(ge=1, le=1_000_000_000)] = None
     encoder_on: Literal["disc", "motor"] | None = None
     winding_time: Annotated[float | None, quantity("time", least=0.01, most=86_400)] = None

@@ -326,7 +326,8 @@ def _point(core: Any, radius: float, target: Target) -> tuple[float, float]:
     else:
         corners = np.asarray(shapely.get_coordinates(shapely.intersection(core, target.area)))
         at = shapely.points(corners)
-        depth = np.maximum(*(shapely.distance(shapely.boundary(a), at) for a in (target.area, core)))
+        edges = (shapely.distance(shapely.boundary(a), at) for a in (target.area, core))
+        depth = np.maximum(*(np.nan_to_num(edge, nan=0.0) for edge in edges))  # a point has no edge
         on = corners[int(np.argmax(depth))]
     return float(on[0]), float(on[1])
 

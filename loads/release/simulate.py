@@ -23,6 +23,7 @@ MOST_TURN = math.radians(90.0)  # by which the disc may have gone on
 SAMPLES = 8  # moments a step that are kept, so that a peak between two steps of the integration is not missed
 WEAK = 0.25  # of the pull at the start: no later pull can be this strong once the motion has settled without a snatch
 WEAK_TORQUE = 0.5  # the same of the torque, of the pull at the start times the crank radius
+NOTHING = 2e-3  # of the stored energy: with that left it is at rest
 MOST_EVALUATIONS = 150_000
 LOST_COUNT = 1e-3  # of the stored energy, that the account may be out by
 
@@ -212,8 +213,11 @@ class _Run:
         """Whether nothing stronger can come: all the energy that is left would stretch the line less far than it has been
         in the snatch, or not far at all. ``calm`` tells it of the pull; the torque of a later pull on a longer arm, as the
         disc goes on, is waited for as long as there is time."""
-        k = self.k
-        reach = (0.0 if self.caught else self.rest_pull) + math.sqrt(2.0 * k.stiffness * self._motion(y))
+        k, left = self.k, self._motion(y)
+        if left < NOTHING * self.held:
+            self.calm = True
+            return True
+        reach = (0.0 if self.caught else self.rest_pull) + math.sqrt(2.0 * k.stiffness * left)
         self.calm = self.calm or (self.turned and reach < max(self.most_pull, self.weak))
         arm = k.crank_radius
         return self.calm and reach * arm < max(self.most_torque, WEAK_TORQUE * abs(self.kept[0].line) * arm)

@@ -86,12 +86,23 @@ class ReleaseStudy:
 
 
 def release_problems(c: Context) -> tuple[Problem, ...]:
-    """A release that cannot be started: the disc stands still, and nothing says how fast it turns."""
+    """A release that cannot be: a payload or a bumper beyond the draw, a disc that stands still with nothing to turn it."""
     moving = c.design.moving
-    if moving is None or moving.mass <= 0.0 or moving.disc_speed or own_speed(c) is not None:
+    if moving is None or moving.mass <= 0.0:
         return ()
-    text = "the release with a still disc is an unstable balance; the spring gives it no speed of its own here"
-    return (Problem("moving.disc_speed", None, "nothing", "the speed at which the drive turns the disc", text),)
+    drawn = float(c.past.winding.draw[-1])
+    found = [
+        Problem(key, None, f"{value:.6g} mm", f"less than the draw at the release, {drawn:.6g} mm", text)
+        for key, value, text in (
+            ("moving.payload_leaves_at", moving.payload_leaves_at, "the payload would leave before it is let go"),
+            ("moving.bumper_travel", moving.bumper_travel, "the bumper would act before anything moves"),
+        )
+        if value is not None and value >= drawn
+    ]
+    if not moving.disc_speed and own_speed(c) is None:
+        text = "the release with a still disc is an unstable balance; the spring gives it no speed of its own here"
+        found.append(Problem("moving.disc_speed", None, "nothing", "the speed at which the drive turns the disc", text))
+    return tuple(found)
 
 
 def release_study(c: Context) -> ReleaseStudy:
@@ -113,7 +124,7 @@ def release_study(c: Context) -> ReleaseStudy:
     k = scene(c, moving, speed, back_contact(c.parts, c.design, c.sizes).link_angle, ledger)
     course = simulate(k)
     if not course.settled or course.energy_error > LOST_COUNT:
-        return _not_covered(_unsettled(course), moving.stopped_elsewhere)
+        return _not_covered(_unsettled(course, own), moving.stopped_elsewhere)
     used = max(0.0, k.bumper_travel - float(course.draw.min())) if k.bumper > 0.0 else 0.0
     study = ReleaseStudy(
         True, "", moving.stopped_elsewhere, speed, own is not None, k, course, tuple(ledger.rows), bumper_used=used,
@@ -122,12 +133,19 @@ def release_study(c: Context) -> ReleaseStudy:
     return replace(study, checks=_checks(study, moving), cautions=_cautions(study, moving))
 
 
-def _unsettled(course: Course) -> str:
+def _unsettled(course: Course, own: float | None) -> str:
+    """Why there are no numbers; ``own`` is the disc's speed (rad/s) where the spring alone gives it."""
     if course.energy_error > LOST_COUNT:
         return f"the simulation lost count of {course.energy_error:.2%} of the energy"
-    return (
+    said = (
         f"the motion did not settle within {float(course.time[-1]):.2f} s: {course.left_over:.0%} of the energy is left"
     )
+    if own is not None:
+        return (
+            f"{said}, and the disc, which the spring alone turns with {own * 30.0 / math.pi:.0f} rpm, has gone on too far; "
+            "give the drive's disc_speed"
+        )
+    return f"{said}; a bumper, or more bumper_damping or line_damping, brings it to rest"
 
 
 def _not_covered(why: str, elsewhere: bool) -> ReleaseStudy:

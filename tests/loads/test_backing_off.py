@@ -230,8 +230,8 @@ def test_forbidden_it_cautions_and_checks_nothing(name: str) -> None:
     assert not s.rated
     assert s.checks == ()
     text = next(text for text in e.cautions if "back of its stop" in text)
-    assert f"{math.degrees(s.back_contact or 0.0):.1f}°" in text
-    assert f"{math.degrees(s.fires or 0.0):.1f}°" in text
+    for at in (s.back_contact, s.fires):
+        assert f"\N{MINUS SIGN}{abs(math.degrees(at or 0.0)):.1f}°" in text
     assert "interlock" in text
     assert not any(row.case == "reversed" for row in e.checks)
     assert [a.key for a in e.assumed].count("mechanism.reverse") == ("reverse" not in changed(name))

@@ -21,10 +21,11 @@ from loads.examine import Examination
 from loads.linkage import state
 from loads.motions import BACKING_OFF, RELEASE, WINDING
 from parts.design import Enclosure
+from parts.problems import DesignRefused
 from parts.sweeps import ARCS, OUT, Cover
 from tests.loads.backwards import chain_pin, context_of, corners_of, pull, shapes, straight, tangent
 from tests.loads.far_end_designs import DESIGNS
-from tests.starters import changed, examined, put, put_all
+from tests.starters import changed, examined, put, put_all, text_of
 
 STARTERS = ("impact-rig", "seed-thrower", "soil-tamper")
 WIDE = {"enclosure__above": "900", "enclosure__below": "900", "enclosure__behind": "900", "enclosure__ahead": "900"}
@@ -432,3 +433,26 @@ def test_it_takes_less_than_a_second() -> None:
             enclosure_study(c)
             times.append(time.perf_counter() - begin)
         assert min(times) < 1.0
+
+
+@pytest.mark.parametrize(
+    ("lines", "hit"),
+    [
+        ("outline = [[-200, -300], [400, -300], [400, 300], [-200, 300]]\n", "outline"),
+        ("obstacles = [[[450, 20], [470, 20], [470, 40], [450, 40]]]\n", "obstacle 1"),
+        ("outline = [[-10, -10], [10, -10], [10, 10], [-10, 10]]\n", "outline"),
+    ],
+)
+def test_a_round_thing_inside_a_wall_is_run_into(lines: str, hit: str, tmp_path: Path) -> None:
+    """The sheave's centre lies in the obstacle, or beyond the outline: its core is a point, which has no edge."""
+    e = examined(tmp_path, text_of("impact-rig") + "\n[enclosure]\n" + lines)
+    rows = [c for c in e.falls_short if (c.check, c.site) == ("clear of the enclosure", hit)]
+    assert rows
+    assert all(c.capacity == 0.0 and c.demand > 5.0 for c in rows)
+
+
+def test_an_outline_beside_the_machine_is_refused(tmp_path: Path) -> None:
+    outline = "[enclosure]\noutline = [[800, 800], [900, 800], [900, 900]]\n"
+    with pytest.raises(DesignRefused) as refusal:
+        examined(tmp_path, text_of("impact-rig") + "\n" + outline)
+    assert "beside the disc axis" in str(refusal.value)

@@ -19,7 +19,7 @@ from loads.release.lift_off import lets_go
 from loads.release.study import ReleaseStudy
 from parts.problems import DesignRefused
 from parts.stop_back import back_contact
-from tests.starters import examined, put_all, settled, whole_text_of
+from tests.starters import examined, put, put_all, settled, whole_text_of
 
 RIG = "impact-rig"
 NO_BUMPER: dict[str, str | None] = {
@@ -206,3 +206,15 @@ def test_the_spring_gives_the_disc_a_speed_of_its_own(rig: Examination, tmp_path
     turning = inertia_of(c.parts).disc + link + (drive or 0.0)
     assert s.speed == pytest.approx(np.sqrt(2.0 * work / (turning * 1e-3)), rel=0.02)
     assert own_speed(c) == pytest.approx(s.speed, rel=1e-3)
+
+
+@pytest.mark.parametrize(
+    ("key", "words"), [("payload_leaves_at", "before it is let go"), ("bumper_travel", "before any")]
+)
+def test_what_lies_beyond_the_draw_is_refused(key: str, words: str, tmp_path: Path) -> None:
+    text = put(whole_text_of("impact-rig"), "moving", key, '"400 mm"')
+    with pytest.raises(DesignRefused) as refusal:
+        examined(tmp_path, text)
+    assert f"moving.{key}" in str(refusal.value)
+    assert words in str(refusal.value)
+    assert "less than the draw at the release, 172." in str(refusal.value)

@@ -140,7 +140,7 @@ MOTOR = 'stall_torque = 4\nfree_speed = "3000 rpm"\n'
         ("inertia = 1\nrotor_inertia = 1", "drive.rotor_inertia", "not both"),
         (MOTOR + 'encoder_on = "disc"', "drive.encoder_counts", "since encoder_on"),
         (MOTOR + 'encoder_counts = 100\nencoder_on = "disk"', "drive.encoder_on", '"disc"'),
-        (MOTOR + "encoder_counts = 0", "drive.encoder_counts", "from 1"),
+        (MOTOR + "encoder_counts = 0", "drive.encoder_counts", "1 or more"),
         (MOTOR + 'supply_voltage = "24 W"', "drive.supply_voltage", "a voltage"),
         (MOTOR + "winding_time = 0", "drive.winding_time", "from 0.01"),
         (MOTOR + "stal_torque = 3", "drive.stal_torque", "stall_torque (the nearest"),
