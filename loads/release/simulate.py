@@ -24,7 +24,8 @@ SAMPLES = 8  # moments a step that are kept, so that a peak between two steps of
 WEAK = 0.25  # of the pull at the start: no later pull can be this strong once the motion has settled without a snatch
 WEAK_TORQUE = 0.5  # the same of the torque, of the pull at the start times the crank radius
 NOTHING = 2e-3  # of the stored energy: with that left it is at rest
-MOST_EVALUATIONS = 150_000
+PATIENCE = 3.0  # times as long as the pull took to calm down is waited for a greater torque
+MOST_EVALUATIONS = 70_000
 LOST_COUNT = 1e-3  # of the stored energy, that the account may be out by
 
 
@@ -101,7 +102,7 @@ class _Run:
         self.over = False
         self.turned = False  # the line has gone slack, or the link straight: what comes now is the snatch
         self.most_pull = self.most_torque = self.weak = 0.0
-        self.calm = False
+        self.calm, self.calm_at = False, 0.0
         self.rest, self.rest_pull = 0.0, 0.0
 
     payload_speed: float | None
@@ -131,7 +132,7 @@ class _Run:
                     t, y = self._back_to(event, solver, t)
                 self._keep_up_to(t, y, solver)
                 self.caught = self.caught and y.draw_rate == 0.0  # else the line has pulled it off
-                self.over = event is None and self._rests(y)
+                self.over = event is None and self._rests(t, y)
             if event is not None:
                 y = self._take(event, t, y)
             elif solver.status == "finished":
@@ -192,11 +193,16 @@ class _Run:
     def _keep_up_to(self, t: float, y: Motion, solver: object) -> None:
         """Moments within the last step, then its end."""
         between: Callable[[float], Floats] = solver.dense_output()  # type: ignore[attr-defined]
-        since = self.times[-1]
-        for i in range(1, SAMPLES if t > since else 1):
+        since, quiet = self.times[-1], self._slack(self.kept[-1])
+        # while the line is slack and the stop not touched there is no peak to be missed
+        quiet = quiet and self._slack(forces(self.k, t, y, self.payload, self.caught))
+        for i in range(1, SAMPLES if t > since and not quiet else 1):
             at = since + (t - since) * i / SAMPLES
             self._keep(at, Motion(*(float(v) for v in between(at))))
         self._keep(t, y)
+
+    def _slack(self, f: Forces) -> bool:
+        return f.line == 0.0 and f.stop == 0.0
 
     def _motion(self, y: Motion) -> float:
         """Energy of what moves against the disc and of what is stretched or pressed, beyond where it all rests."""
@@ -209,17 +215,20 @@ class _Run:
         left += (k.mass + self.payload) * y.draw_rate**2 / 2.0 + held_at(k, y.draw, self.payload)
         return max(0.0, left - self.rest)
 
-    def _rests(self, y: Motion) -> bool:
+    def _rests(self, t: float, y: Motion) -> bool:
         """Whether nothing stronger can come: all the energy that is left would stretch the line less far than it has been
         in the snatch, or not far at all. ``calm`` tells it of the pull; the torque of a later pull on a longer arm, as the
-        disc goes on, is waited for as long as there is time."""
+        disc goes on, is waited for three times as long."""
         k, left = self.k, self._motion(y)
         if left < NOTHING * self.held:
             self.calm = True
             return True
         reach = (0.0 if self.caught else self.rest_pull) + math.sqrt(2.0 * k.stiffness * left)
-        self.calm = self.calm or (self.turned and reach < max(self.most_pull, self.weak))
+        if not self.calm and self.turned and reach < max(self.most_pull, self.weak):
+            self.calm, self.calm_at = True, t
         arm = k.crank_radius
+        if self.calm and t > PATIENCE * self.calm_at:
+            return True
         return self.calm and reach * arm < max(self.most_torque, WEAK_TORQUE * abs(self.kept[0].line) * arm)
 
     def _look(self) -> None:

@@ -347,7 +347,7 @@ def test_no_stronger_pull_comes_once_it_has_settled(bumper: float, link_mass: fl
     course = simulate(k)
     assert course.settled
     with pytest.MonkeyPatch.context() as patch:
-        patch.setattr(simulate_._Run, "_rests", lambda self, y: False)
+        patch.setattr(simulate_._Run, "_rests", lambda self, t, y: False)
         patch.setattr(simulate_, "LONGEST", 3.0 * float(course.time[-1]))
         longer = simulate(k)
     assert longer.time[-1] > 2.9 * course.time[-1]
