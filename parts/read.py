@@ -28,6 +28,7 @@ from parts.far_ends.base import FarEnd
 from parts.far_ends.reading import Found, Source
 from parts.far_ends.registry import KINDS
 from parts.problems import DesignRefused, Problem, in_order, key_of, nearest, written
+from parts.quantities import problem_with_inches
 from parts.schema import (
     NOT_YET,
     TABLES,
@@ -90,6 +91,8 @@ def read_design(path: Path, catalogue: Catalogue) -> Reading:
     design = draft.design()
     curve = draft.spring_file
     problems = draft.problems if curve is None else [curve.placed(problem) for problem in draft.problems]
+    if draft.units == "us":
+        problems = [problem_with_inches(problem) for problem in problems]
     located = (
         problem if problem.file or not problem.key else replace(problem, line=source.line(problem.key))
         for problem in problems
@@ -195,6 +198,11 @@ class _Draft:
     def _raw_table(self, name: str) -> Mapping[str, object]:
         found = self.raw.get(name)
         return found if isinstance(found, dict) else {}
+
+    @property
+    def units(self) -> str:
+        """What the file asks to be shown, whatever else is wrong with it."""
+        return "us" if self._raw_table("design").get("units") == "us" else "metric"
 
     def _is_newer(self) -> bool:
         """A file of a newer format is refused by its number alone: the rest of it may well be right in that format."""

@@ -356,3 +356,12 @@ def test_a_refusal_for_the_eye_is_a_block_a_problem() -> None:
         assert "58 mm" in whole
     (short,) = DesignRefused("rig.toml", [Problem("a", 3, '"x"', "y")]).wrapped(100).splitlines()
     assert short == 'rig.toml:3: a: found "x"; accepted: y'
+
+
+def test_lengths_of_a_us_design_are_told_in_inches_too(tmp_path: Path) -> None:
+    text = LEAST.replace("[mechanism]", '[design]\nunits = "us"\n[mechanism]').replace('"86 mm"', '"1 in"')
+    said = "; ".join(problem.sentence for problem in read(tmp_path, text).problems)
+    assert "25.4 mm (1 in)" in said
+    metric = "; ".join(problem.sentence for problem in read(tmp_path, LEAST.replace('"86 mm"', '"25.4 mm"')).problems)
+    assert "25.4 mm" in metric
+    assert "(1 in)" not in metric
