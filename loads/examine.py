@@ -20,7 +20,7 @@ from loads.members import History, history, load_rows, members, site_histories
 from loads.proportions import SPIGOT, proportion
 from loads.records import Check, LoadRow, SiteHistory
 from loads.refusals import given_size_problems, mechanism_problems, proportioned_size_problems
-from loads.release.study import ReleaseStudy, release_problems, release_study, with_release
+from loads.release.study import ReleaseStudy, release_problems, release_study, with_dry_shot, with_release
 from loads.studies import Study, assumed_by
 from loads.studies.registry import run_studies
 from parts.catalogue import Catalogue
@@ -148,6 +148,7 @@ def _with_release(
         refuse(release_problems(again.context))
         solved, release = again, release_study(again.context)
     past = with_release(solved.machine, solved.context.past, release)
+    release = with_dry_shot(release, design.identity.units)
     return replace(solved, context=_with_loads(solved.context, past)), release
 
 

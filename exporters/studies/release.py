@@ -39,6 +39,7 @@ def release_row(e: Examination, s: ReleaseStudy) -> Row:
         "snatch_N": tidy(s.snatch),
         "snatch_torque_Nm": tidy(s.snatch_torque / 1000.0),
         "energy_error": float(f"{course.energy_error:.2g}"),
+        "dry_snatch_N": None if s.dry_snatch is None else tidy(s.dry_snatch),
         "efficiency": None if s.efficiency is None else tidy(s.efficiency, significant=4),
         "disc_speed_rpm": tidy((s.speed or 0.0) * 30.0 / math.pi),
         "disc_speed_from_spring": s.speed_from_spring,
@@ -132,6 +133,11 @@ def release_values(e: Examination, s: ReleaseStudy) -> dict[str, Any]:
     facts += [
         ("largest tension in the swing", shown.quantity(s.swing_tension, "force")),
         ("snatch", shown.quantity(s.snatch, "force")),
+        *(
+            [("snatch of a shot without payload, in no load", shown.quantity(s.dry_snatch, "force"))]
+            if s.dry_snatch
+            else []
+        ),
         ("torque on the disc in the snatch", shown.quantity(s.snatch_torque, "torque")),
         ("link's blow on the stop", shown.quantity(s.blow, "force")),
     ]

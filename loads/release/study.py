@@ -20,6 +20,7 @@ from loads.release.scene import Scene
 from loads.release.simulate import LOST_COUNT, Course, simulate
 from parts.design import Assumed, Moving
 from parts.problems import Problem
+from parts.quantities import KINDS, Units, factor
 from parts.stop_back import back_contact
 
 MODEL = "rigid bodies, line as spring and damper; Dormand-Prince integration"
@@ -41,6 +42,7 @@ class ReleaseStudy:
     assumed: tuple[Assumed, ...] = ()
     checks: tuple[Check, ...] = ()
     cautions: tuple[str, ...] = ()
+    dry_snatch: float | None = None  # N, of a shot without its payload; None where there is none, or it does not settle
     bumper_used: float = 0.0  # mm of its travel, beyond it where it bottoms
 
     @property
@@ -131,6 +133,29 @@ def release_study(c: Context) -> ReleaseStudy:
         _reach=c.design.mechanism.stop_reach,
     )  # fmt: skip
     return replace(study, checks=_checks(study, moving), cautions=_cautions(study, moving))
+
+
+def with_dry_shot(study: ReleaseStudy, units: Units) -> ReleaseStudy:
+    """What a shot without its payload would do to the line; it is said, but is in no load."""
+    k = study.scene
+    if k is None or k.payload <= 0.0:
+        return study
+    course = simulate(replace(k, payload=0.0))
+    dry = replace(study, course=course).snatch if course.settled else None
+    if dry is None:
+        text = "A shot without the payload was not covered: never fire dry."
+    else:
+        text = (
+            f"A shot without the payload snatches with {_force(dry, units)}, against {_force(study.snatch, units)} with it, "
+            "and is in none of the loads: never fire dry."
+        )
+    return replace(study, dry_snatch=dry, cautions=(*study.cautions, text))
+
+
+def _force(value: float, units: Units) -> str:
+    unit = KINDS["force"].metric if units == "metric" else KINDS["force"].us
+    shown = value / factor("force", unit)
+    return f"{float(f'{shown:.4g}'):.10g} {unit}"  # four figures, and no exponent
 
 
 def _unsettled(course: Course, own: float | None) -> str:

@@ -218,3 +218,19 @@ def test_what_lies_beyond_the_draw_is_refused(key: str, words: str, tmp_path: Pa
     assert f"moving.{key}" in str(refusal.value)
     assert words in str(refusal.value)
     assert "less than the draw at the release, 172." in str(refusal.value)
+
+
+def test_a_dry_shot_is_told_of_but_is_in_no_load(tmp_path: Path) -> None:
+    """Its snatch is that of the same design with next to no payload; the loads are those of the shot with it."""
+    e = examined(tmp_path, whole_text_of("seed-thrower"))
+    study = e.studies["release"]
+    assert isinstance(study, ReleaseStudy)
+    assert study.dry_snatch is not None
+    assert any("never fire dry" in text and f"{study.dry_snatch:.4g} N" in text for text in e.cautions)
+    tension = np.linalg.norm(
+        np.stack([row.force for row in e.loads if (row.part, row.case) == ("chain", SNATCH)]), axis=1
+    )
+    assert float(tension.max()) == pytest.approx(study.snatch, rel=1e-3)
+    assert abs(study.dry_snatch / study.snatch - 1.0) > 0.02
+    none = examined(tmp_path, whole_text_of("soil-tamper"))
+    assert not any("dry" in text for text in none.cautions)
