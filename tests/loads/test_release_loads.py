@@ -167,7 +167,8 @@ def test_the_history_takes_the_release_without_the_shock_factor(pair: Pair, twin
     for name in ("chain_on_pin", "pin_on_link", "stop_on_link", "torque", "spring_pull"):
         a, c = getattr(one, name), getattr(other, name)
         assert np.array_equal(a[..., b], c[..., b])
-        assert c[..., : b.start] == pytest.approx(1.5 * a[..., : b.start])
+        # what cancels leaves rounding, by which parts of a vector that are nothing differ
+        assert c[..., : b.start] == pytest.approx(1.5 * a[..., : b.start], abs=1e-9 * float(np.abs(c).max()))
     rows = load_rows(past, tuple(at.values()))
     chain = {r.case: r.magnitude for r in rows if r.part == "chain"}
     swing = course.time < turn_of(course)
@@ -175,4 +176,4 @@ def test_the_history_takes_the_release_without_the_shock_factor(pair: Pair, twin
     assert chain[SNATCH] == pytest.approx(np.abs(course.forces["tension"][~swing]).max(), abs=1e-9)
     # λ, from A→O to A→B: on the stop at the start, to the width of what presses it in
     assert past.state.link_angle[b][0] == pytest.approx(float(m.seat_angle), abs=1e-6)
-    assert past.state.crank_angle[b][0] >= float(past.figures.events.release)
+    assert past.state.crank_angle[b][0] >= float(past.figures.events.release) - 1e-9
