@@ -7,7 +7,8 @@ import math
 import numpy as np
 
 from loads.checks.lock_pin import lever, locked_torque
-from loads.proportions.basis import BAR, Basis, first
+from loads.proportions.basis import BAR, first
+from loads.proportions.stops import StopSide
 from parts.design import Floats
 from parts.places import hub_bolts
 from parts.sizes import DiscSizes, LinkSizes, LockPinSizes, StopSizes
@@ -16,11 +17,8 @@ LEAST_LOCK = 6.0  # mm; common practice, no source
 WEB = 0.25  # of the larger hole; as the check of webs has it
 
 
-class LockSide(Basis):
-    """Where the lock pin fits, and how thick it has to be there."""
-
-    def stop_holes(self, link: LinkSizes, stop: StopSizes) -> list[tuple[float, float, float]]:
-        raise NotImplementedError
+class LockSide(StopSide):
+    """Where the lock pin fits, and how thick it has to be there: the stop's holes are in the same disc."""
 
     def _lock_pin(self, disc: DiscSizes, crank: float, link: LinkSizes, stop: StopSizes) -> LockPinSizes | None:
         wish = self.design.lock_pin
@@ -74,9 +72,8 @@ class LockSide(Basis):
         for hx, hy, hd in holes:
             room = np.minimum(room, np.hypot(x - hx, y - hy) - (d + hd) / 2.0 - max(2.0, WEB * max(d, hd)))
         turned = round(math.degrees(hold))
-        one = np.minimum(
-            room, np.roll(room, turned)
-        )  # of the start hole with the hold hole that the same bush asks for
+        # of the start hole with the hold hole that the same bush asks for
+        one = np.minimum(room, np.roll(room, turned))
         one = np.minimum(one, 2.0 * radius * abs(math.sin(hold / 2.0)) - d - web)
         i = int(np.argmax(one))
         if one[i] >= 0.0:
