@@ -1,4 +1,4 @@
-"""Power loss: bands, coasting, seat angles and shims against closed forms, brute force and integrated motion."""
+"""Bands of a loss of power against closed forms and brute force, and the study of whole designs."""
 
 from __future__ import annotations
 
@@ -14,61 +14,20 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from loads.checks.context import Context
-from loads.cycle import Cycle, cycle
-from loads.inertia import Inertia
-from loads.linkage import Linkage, State, seated_chain_pin_at, state
-from loads.power_loss.bands import RUNS_ON, STAYS, UNWINDS, Outcome, arms, idle_draw, outcomes
-from loads.power_loss.coast import FIRES, TURNS_BACK, WORK, make_path
+from loads.cycle import cycle
+from loads.linkage import Linkage, seated_chain_pin_at, state
+from loads.power_loss.bands import RUNS_ON, STAYS, UNWINDS, arms, idle_draw, outcomes
 from loads.power_loss.seat import (
-    GRAIN,
-    SETTING,
     least_seat_angles,
     middle_clearance,
-    recommended,
-    trade,
     with_seat,
 )
-from loads.power_loss.shims import seat_with_shim, shim_for, shims
-from loads.power_loss.study import LOADED, UNWOUND, Band, PowerLoss, drive_torques, make_bands
-from loads.spring_law import SpringLaw, spring_energy
-from parts.design import Mechanism
-from parts.sizes import StopSizes
-from parts.stop_layout import stop_center
+from loads.power_loss.study import LOADED, UNWOUND, PowerLoss, drive_torques
+from loads.spring_law import SpringLaw
 from tests.loads.far_end_designs import DESIGNS
 from tests.loads.machines import FAR, TABLE, linear, machine, machines
+from tests.loads.power_losses import DEG, bands_of, far, fates, outcome_of, rubbing, study_of
 from tests.starters import NAMES, changed, examined, text_of
-
-DEG = math.pi / 180.0
-ROD = Inertia(disc=30_000.0, link_mass=0.0, link_middle=0.0, link=0.0)
-
-
-def rubbing(m: Linkage, bearing: float, crank_pin: float, chain_pin: float) -> Linkage:
-    return replace(
-        m, friction_bearing=np.asarray(bearing), friction_crank_pin=np.asarray(crank_pin),
-        friction_chain_pin=np.asarray(chain_pin),
-    )  # fmt: skip
-
-
-def far(beta: float, *friction: float) -> Linkage:
-    """r = 60, L = 90, s = 30, nearly parallel chain."""
-    return rubbing(machine(60, 90, 80, beta, FAR, 0, 1, linear(0, 100)), *(friction or (0.0, 0.0, 0.0)))
-
-
-def outcome_of(m: Linkage) -> Outcome:
-    found = outcomes(with_seat(m, np.array([float(m.seat_angle)])))[1][0]
-    assert found is not None
-    return found
-
-
-def fates(m: Linkage) -> list[str]:
-    return [s.fate for s in outcome_of(m).stretches]
-
-
-def study_of(folder: Path, text: str) -> PowerLoss:
-    found = examined(folder, text).studies["power_loss"]
-    assert isinstance(found, PowerLoss)
-    return found
-
 
 # ---------------------------------------------------------------------------------------------- bands, closed forms
 
@@ -103,17 +62,11 @@ def test_the_condition_of_the_middle(friction: tuple[float, float, float]) -> No
 
 def test_the_first_band_and_the_energies() -> None:
     """At the start the arm is r sin θ; it stays while the bearing and the crank pin take that."""
-    bands = _bands(far(3.0, 1.5, 0.9, 0.6))
+    bands = bands_of(far(3.0, 1.5, 0.9, 0.6))
     assert bands[0].end == pytest.approx(math.asin(2.4 / 60.0), abs=1e-6)
     assert bands[0].energy_end == pytest.approx(50.0 * (60.0 * (1.0 - math.cos(bands[0].end))) ** 2, rel=1e-4)
     assert bands[1].energy_start == bands[0].energy_end
     assert bands[1].creep_ends == UNWOUND
-
-
-def _bands(m: Linkage) -> tuple[Band, ...]:
-    f = cycle(m)
-    row = next(r for r in trade(m, {"as designed": float(m.seat_angle)}) if r.marks)
-    return make_bands(m, f.events, make_path(m, f, ROD, 2.0 * math.pi - 1.0, row.outcome.release), row)
 
 
 def test_a_late_link_comes_to_rest_past_the_middle() -> None:
@@ -122,10 +75,10 @@ def test_a_late_link_comes_to_rest_past_the_middle() -> None:
     middle = outcome_of(m).middle
     assert middle[0].start == pytest.approx(math.pi, abs=1e-6)
     assert middle[0].end == pytest.approx(math.pi + 3.0 * DEG * 90.0 / 30.0, abs=0.002)
-    last = _bands(m)[-1]
+    last = bands_of(m)[-1]
     assert last.creep_ends == LOADED
     assert last.creeps_to == pytest.approx(middle[0].end)
-    on = _bands(m)[1]
+    on = bands_of(m)[1]
     assert on.creep_ends == LOADED
     assert on.creeps_to == pytest.approx(middle[0].end)
     assert outcome_of(m).self_firing is None
@@ -250,229 +203,6 @@ def test_drive_torques() -> None:
         assert back[i] == pytest.approx(max(0.0, float((s.friction_torque - s.torque).max())), rel=1e-3, abs=1e-3)
         assert (back[i] < 1e-6) == (row.fate == UNWINDS)
         assert (forward[i] < 1e-6) == (row.fate == RUNS_ON)
-
-
-# ---------------------------------------------------------------------------------------------- coasting
-
-
-def _integrated(m: Linkage, f: Cycle, start: float, way: float, contact: float, back: float) -> tuple[float, float]:
-    """Where a machine let go first stands still (rad) and its fastest (rad/s): equation of motion, Runge-Kutta."""
-    m = replace(m, efficiency=np.asarray(1.0))
-    behind = replace(m, seat_angle=np.asarray(back))
-
-    def pull(theta: float, omega: float) -> float:
-        one = np.array([theta])
-        s: State = state(behind, one, np.asarray(-9e9)) if theta < contact else state(m, one, f.events.catch)
-        rub = float(s.friction_torque[0])
-        return (-float(s.torque[0]) - math.copysign(rub, omega)) * WORK / ROD.disc
-
-    # steps in proportion to how fast the spring's energy makes it
-    step = 2e-5 * math.sqrt(1e6 / float(spring_energy(m.spring, np.asarray(f.draw_at_hold))))
-    theta, omega, fastest = start, way * 1e-9, 0.0
-    for _ in range(40_000):
-        last = theta, omega
-        k1 = pull(theta, omega)
-        k2 = pull(theta + omega * step / 2, omega + k1 * step / 2)
-        k3 = pull(theta + (omega + k1 * step / 2) * step / 2, omega + k2 * step / 2)
-        k4 = pull(theta + (omega + k2 * step / 2) * step, omega + k3 * step)
-        theta += step * (omega + step * (k1 + k2 + k3) / 6)
-        omega += step * (k1 + 2 * k2 + 2 * k3 + k4) / 6
-        fastest = max(fastest, abs(omega))
-        if omega * way <= 0.0:
-            return last[0] - last[1] ** 2 / (2.0 * pull(*last)), fastest
-    raise AssertionError("never stood still")
-
-
-@pytest.mark.parametrize(("name", "start"), [("near", 2.0), ("near", 5.6), ("up", 5.5)])
-def test_coasting_back_is_the_integrated_motion(name: str, start: float) -> None:
-    m = rubbing(TABLE[name], 1.5, 0.9, 0.6) if name == "near" else rubbing(TABLE[name], 0.7, 0.3, 0.3)
-    f, back = cycle(m), 2.0 * math.pi + float(m.seat_angle) - 0.9
-    path = make_path(m, f, ROD, back, float(f.events.release))
-    coast = path.coast(start, forwards=False)
-    end, fastest = _integrated(m, f, start, -1.0, path.back_contact, back)
-    assert coast.how == TURNS_BACK
-    assert coast.end == pytest.approx(end, abs=2e-4)
-    assert coast.speed == pytest.approx(fastest, rel=1e-3)
-    assert coast.kinetic_at_start is not None
-    assert end < (path.back_contact if start > 5.0 else 0.0)
-
-
-def test_coasting_on_from_the_middle_is_the_integrated_motion() -> None:
-    m = rubbing(replace(TABLE["near"], seat_angle=np.asarray(-6.0 * DEG)), 0.2, 0.1, 0.1)
-    f = cycle(m)
-    path = make_path(m, f, ROD, 5.0, float(f.events.release))
-    start = next(s.start for s in outcome_of(m).stretches if s.fate == RUNS_ON) + 0.01
-    coast = path.coast(start, forwards=True)
-    end, fastest = _integrated(m, f, start, 1.0, -9.0, 5.0)
-    assert coast.end == pytest.approx(end, abs=2e-4)
-    assert coast.speed == pytest.approx(fastest, rel=1e-3)
-    assert coast.kinetic_at_start is None
-
-
-def test_without_friction_it_comes_back_up_as_far_as_it_was_drawn() -> None:
-    m = TABLE["far+3"]
-    f, back = cycle(m), 2.0 * math.pi + 3.0 * DEG - 0.9
-    path = make_path(m, f, ROD, back, float(f.events.release))
-    coast = path.coast(5.9, forwards=False)
-    assert coast.end is not None
-    there = state(replace(path.machine, seat_angle=np.asarray(back)), np.array([coast.end]), np.asarray(-9e9))
-    assert there.pull[0] == pytest.approx(float(path.state(np.array([5.9])).pull[0]), abs=1e-6)
-    energy = float(spring_energy(m.spring, path.state(np.array([5.9])).draw)[0])
-    assert coast.kinetic_at_start == pytest.approx(energy, rel=1e-9)
-    assert coast.speed == pytest.approx(math.sqrt(2.0 * WORK * energy / ROD.disc), rel=1e-9)
-    # the link meets the back of its stop where a chain that is far away says so
-    assert path.back_contact == pytest.approx(-(math.pi + 3.0 * DEG - 0.9), abs=1e-5)
-
-
-def test_from_the_end_it_coasts_over_the_hill_in_the_middle() -> None:
-    """β < 0: creeping it rests in the middle, let go it does not even notice it."""
-    m = far(-3.0, 0.5, 0.3, 0.3)
-    last = next(b for b in reversed(_bands(m)) if b.fate == UNWINDS)
-    assert last.creep_ends == LOADED
-    assert last.hill is not None
-    assert last.hill.arriving > 100.0 * last.hill.takes > 0.0
-    assert last.coast is not None
-    assert last.coast.end is not None
-    assert last.coast.end < 0.0
-    # far+3 with a wide middle: the hill is the energy on its two sides and the friction between
-    assert last.hill.arriving < last.energy_end
-
-
-def test_a_machine_at_the_end_fires() -> None:
-    m = rubbing(TABLE["near"], 0.2, 0.1, 0.1)
-    f = cycle(m)
-    end = outcome_of(m)
-    assert end.fires_from is not None
-    coast = make_path(m, f, ROD, 5.0, end.release).coast(end.fires_from, forwards=True)
-    assert (coast.how, coast.end) == (FIRES, None)
-    assert coast.speed_at == pytest.approx(end.release)
-    assert coast.speed > 0.0
-
-
-def test_inertia_of_a_link_of_point_masses() -> None:
-    r, lam, rate = 58.0, 2.2, -0.4
-    rod = [(0.3, 10.0), (0.2, 50.0), (0.5, 90.0)]  # kg, mm from A
-    m = sum(w for w, _ in rod)
-    inertia = Inertia(1000.0, m, sum(w * x for w, x in rod) / m, sum(w * x * x for w, x in rod))
-    h = 1e-6
-
-    def at(x: float, theta: float) -> complex:
-        direction = math.pi + lam + rate * theta  # A→B in the machine, λ the angle to A→O at θ = 0
-        return r * complex(math.cos(theta), math.sin(theta)) + x * complex(math.cos(direction), math.sin(direction))
-
-    want = 1000.0 + sum(w * abs((at(x, h) - at(x, -h)) / (2 * h)) ** 2 for w, x in rod)
-    assert float(inertia.about_disc(r, np.asarray(lam), np.asarray(rate))) == pytest.approx(want, rel=1e-6)
-
-
-def test_inertia_of_the_made_parts(tmp_path: Path) -> None:
-    """Two discs of steel are most of it; the drive's is beside it, and slows the coasting."""
-    plain = study_of(tmp_path, text_of("impact-rig"))
-    e = examined(tmp_path, text_of("impact-rig"))
-    disc = e.sizes.disc
-    solid = 2 * 7850e-9 * math.pi / 32.0 * disc.outer_diameter**4 * disc.thickness
-    assert 0.8 * solid < plain.inertia.disc < 1.2 * solid
-    assert plain.seated_inertia > plain.inertia.disc
-    with_drive = replace(plain.inertia, drive=3.0 * plain.inertia.disc)
-    path = make_path(e.machine, e.figures, with_drive, 5.0, float(e.figures.events.release))
-    coast = path.coast(5.0, forwards=False)
-    assert coast.speed_with_drive is not None
-    assert coast.speed_with_drive == pytest.approx(coast.speed / 2.0, rel=0.03)
-
-
-# ---------------------------------------------------------------------------------------------- seat angles, shims
-
-
-def test_the_recommended_seat_angle() -> None:
-    m = far(3.0, 1.5, 0.9, 0.6)
-    least, scattered = least_seat_angles(m)
-    assert least is not None
-    assert scattered is not None
-    assert scattered == pytest.approx(math.asin(1.5 * 2.4 / 60.0), abs=1e-6)
-    choice, why = recommended(m, least, scattered)
-    assert choice is not None
-    assert 0.0 <= choice - scattered < GRAIN
-    assert choice / GRAIN == pytest.approx(round(choice / GRAIN))
-    assert "1.5 times the friction" in why
-    assert "rule of our own" in why
-    smooth = least_seat_angles(far(3.0))
-    assert smooth == pytest.approx([0.0, 0.0], abs=1e-9)
-    assert recommended(far(3.0), *smooth)[0] == pytest.approx(SETTING)
-
-
-def test_a_seat_angle_that_gives_the_disc_too_much_is_not_recommended() -> None:
-    """s of 9 mm only: past the null the pull falls fast. Half the friction would recommend what it needs."""
-    m = rubbing(machine(60, 69, 64, 3, FAR, 0, 1, linear(0, 100)), 4.0, 1.0, 1.0)
-    least, scattered = least_seat_angles(m)
-    choice, why = recommended(m, least, scattered)
-    assert choice is None or (least is not None and scattered is not None and least <= choice < scattered)
-    assert "2%" in why
-    assert recommended(m, None, None)[0] is None
-
-
-def test_too_much_friction_has_no_least_seat_angle() -> None:
-    m = far(3.0, 25.0, 0.9, 0.6)
-    assert least_seat_angles(m) == [None, None]
-    assert "no seat angle" in recommended(m, None, None)[1]
-
-
-def test_the_trade_over_seat_angle() -> None:
-    m = far(3.0, 1.5, 0.9, 0.6)
-    least = least_seat_angles(m)[0]
-    rows = trade(m, {"as designed": 3.0 * DEG, "least": least})
-    assert [round(r.seat / DEG, 2) for r in rows] == [-3, -2, -1, 0, 1, 2, 2.29, 3, 4, 5]
-    assert [r.marks for r in rows if r.marks] == [("least",), ("as designed",)]
-    for row in rows:
-        alone = outcome_of(replace(m, seat_angle=np.asarray(row.seat)))
-        assert [s.end for s in alone.stretches] == pytest.approx([s.end for s in row.outcome.stretches], abs=1e-9)
-        assert (row.middle is None) == (row.seat >= (least or 0.0) - 1e-9)
-        assert (row.clearance < -1e-9) == (row.middle is not None)
-    firing = [r.outcome.self_firing for r in rows]
-    widths = [0.0 if f is None else f[1] - f[0] for f in firing]
-    assert widths == sorted(widths)
-    wide = trade(m, {"as designed": 9.5 * DEG})
-    assert wide[-1].seat == pytest.approx(10.0 * DEG)
-    assert wide[0].seat == pytest.approx(-3.0 * DEG)
-
-
-POST = StopSizes("post", 25.0, 0.0, 0.0, 14.0, 0.0, "M8", 0.0, 0.0, None)  # type: ignore[arg-type]
-BLOCK = StopSizes("block", 0.0, 30.0, 24.0, 14.0, 6.0, "M8", 9.0, 6.8, None)  # type: ignore[arg-type]
-M = Mechanism("twin", "ccw", 58.0, 86.0, 3.0 * DEG, 71.0, 4.0 * DEG)
-WIDTH = 40.0
-
-
-def _off_axis(point: tuple[float, float], direction: float) -> float:
-    """Distance (mm) of a point of the disc frame from the link's axis, positive where the stop stands at the seat."""
-    x, y = point[0] - M.crank_radius, point[1]
-    return math.sin(direction) * x - math.cos(direction) * y
-
-
-@pytest.mark.parametrize("thickness", [-1.0, 0.0, 0.4, 2.5])
-def test_a_shim_on_a_post(thickness: float) -> None:
-    seat = seat_with_shim(M, WIDTH, POST, thickness)
-    assert seat is not None
-    axis = stop_center(M, WIDTH, POST)[0]
-    assert _off_axis(axis, math.pi + seat) == pytest.approx(WIDTH / 2 + POST.diameter / 2 + thickness, abs=1e-9)
-    assert shim_for(M, WIDTH, POST, seat) == pytest.approx(thickness, abs=1e-9)
-    assert (seat > M.seat_angle + 1e-9) == (thickness > 0.0)
-
-
-@pytest.mark.parametrize("thickness", [-1.0, 0.0, 0.4, 2.5])
-def test_a_shim_on_a_block(thickness: float) -> None:
-    seat = seat_with_shim(M, WIDTH, BLOCK, thickness)
-    assert seat is not None
-    (x, y), direction = stop_center(M, WIDTH, BLOCK)
-    up = BLOCK.width / 2 + thickness  # from the block's middle, square to its face, towards the link
-    spot = (x - up * math.sin(direction), y + up * math.cos(direction))
-    assert _off_axis(spot, math.pi + seat) == pytest.approx(WIDTH / 2, abs=1e-9)
-    assert shim_for(M, WIDTH, BLOCK, seat) == pytest.approx(thickness, abs=1e-9)
-
-
-def test_the_table_of_shims() -> None:
-    rows = shims(M, WIDTH, POST, (0.0, 0.5, 1.0, 9.0), {"least": 2.5 * DEG, "recommended": 4.0 * DEG})
-    assert [r.mark for r in rows] == ["least", "", "", "", "recommended"]
-    assert rows[0].thickness < 0.0 == rows[1].thickness
-    assert [r.seat for r in rows] == sorted(r.seat for r in rows)
-    assert seat_with_shim(M, WIDTH, POST, 50.0) is None
 
 
 # ---------------------------------------------------------------------------------------------- whole designs
