@@ -8,8 +8,10 @@ from pathlib import Path
 
 from exporters.starters import starters
 from loads.chain_study import ChainStudy
+from loads.checks.context import Context
 from loads.examine import Examination, examine
 from loads.fatigue.study import FatigueStudy
+from loads.members import members
 from parts.design import Assumed
 
 NAMES = tuple(s.name for s in starters())
@@ -26,6 +28,15 @@ def fatigue_of(e: Examination) -> FatigueStudy:
     found = e.studies["fatigue"]
     assert isinstance(found, FatigueStudy)
     return found
+
+
+def context_of(e: Examination) -> Context:
+    """What the checks and studies of an examined design were given."""
+    return Context(
+        design=e.design, sizes=e.sizes, stack=e.stack, parts=e.parts, past=e.past,
+        members=members(e.past, e.stack, e.design.targets), sites={(s.part, s.site): s for s in e.sites},
+        findings=e.findings,
+    )  # fmt: skip
 
 
 STUDIES = ("enclosure", "tolerances", "drive")  # tables that bring a study of their own

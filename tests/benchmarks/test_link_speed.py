@@ -6,18 +6,12 @@ import time
 from pathlib import Path
 
 from loads.checks import link
-from loads.checks.context import Context
-from loads.members import members
-from tests.starters import examined, text_of
+from tests.starters import context_of, examined, text_of
 
 
 def test_the_links_checks(tmp_path: Path) -> None:
     e = examined(tmp_path, text_of("impact-rig"))
-    c = Context(
-        design=e.design, sizes=e.sizes, stack=e.stack, parts=e.parts, past=e.past,
-        members=members(e.past, e.stack, e.design.targets), sites={(s.part, s.site): s for s in e.sites},
-        findings=e.findings,
-    )  # fmt: skip
+    c = context_of(e)
     took = []
     for _ in range(50):
         start = time.perf_counter()

@@ -9,8 +9,7 @@ from pathlib import Path
 
 from loads.drive import drive_study
 from loads.examine import examine
-from tests.loads.test_fatigue_study import context
-from tests.starters import text_of
+from tests.starters import context_of, text_of
 
 STUDY = """
 import resource, sys, time
@@ -46,7 +45,7 @@ def test_a_hundred_thousand_machines(tmp_path: Path) -> None:
 def test_the_demands_on_a_motor_cost_little(tmp_path: Path) -> None:
     design = tmp_path / "rig.toml"
     design.write_text(text_of("impact-rig"), encoding="utf-8")
-    c = context(examine(design))
+    c = context_of(examine(design))
     drive_study(c)
     start = time.perf_counter()
     drive_study(c)

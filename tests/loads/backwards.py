@@ -8,21 +8,11 @@ from typing import Any
 import numpy as np
 import shapely
 
-from loads.checks.context import Context
 from loads.examine import Examination
-from loads.members import members
 from parts.assembly import placed, pose
 from parts.design import Floats
 from parts.outline import Plate
 from parts.shape import polygon
-
-
-def context_of(e: Examination) -> Context:
-    return Context(
-        design=e.design, sizes=e.sizes, stack=e.stack, parts=e.parts, past=e.past,
-        members=members(e.past, e.stack, e.design.targets), sites={(s.part, s.site): s for s in e.sites},
-        findings=e.findings,
-    )  # fmt: skip
 
 
 def tangent(e: Examination, q: tuple[float, float]) -> tuple[float, float]:

@@ -16,7 +16,6 @@ from loads.chain_study import (
     BY_THREAD,
     BY_WEAR,
     angle_per_link,
-    chain_study,
     whole,
 )
 from loads.cycle import cycle
@@ -156,15 +155,3 @@ def test_angle_per_link_and_whole_pitches() -> None:
     assert angle_per_link(20.1, 10.0) is None
     assert whole(30.0, 10.0) == 3
     assert whole(30.001, 10.0) == 4
-
-
-def test_the_study_keeps_its_place_in_the_time_of_a_check(tmp_path: Path) -> None:
-    from time import perf_counter
-
-    e = examined(tmp_path, text_of("impact-rig"))
-    best = math.inf
-    for _ in range(5):
-        start = perf_counter()
-        chain_study(e.design, e.machine, e.figures, e.past, e.sizes)
-        best = min(best, perf_counter() - start)
-    assert best < 0.1  # about 8 ms on an idle machine

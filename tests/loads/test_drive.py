@@ -18,8 +18,7 @@ from loads.linkage import state
 from parts.design import Drive, Floats
 from tests.loads.far_end_designs import DESIGNS
 from tests.loads.machines import TABLE
-from tests.loads.test_fatigue_study import context
-from tests.starters import NAMES, examined, text_of
+from tests.starters import NAMES, context_of, examined, text_of
 
 MOTOR = 'stall_torque = "3 N·m"\nfree_speed = "3000 rpm"\nsupply_voltage = 24\nreduction = 600\nefficiency = 0.8\n'
 
@@ -169,7 +168,7 @@ def test_the_motor_that_is_asked_for_winds_in_that_time(name: str, time: float) 
     want = study(e).demands
     assert want is not None
     assert want.time == time
-    c = context(e)
+    c = context_of(e)
     same = driven(
         winding(c), study(e).disc, motor(reduction=1.0, efficiency=1.0, torque_constant=None), want.stall, want.free
     )

@@ -33,8 +33,8 @@ from loads.fatigue.strength import notch_factor, torsion_neuber_length, torsion_
 from loads.fatigue.study import FatigueRow
 from parts.design import Floats
 from parts.hardware import cap_screw
-from tests.loads.test_fatigue_study import context, fibres, machine, row
-from tests.starters import fatigue_of
+from tests.loads.test_fatigue_study import fibres, machine, row
+from tests.starters import context_of, fatigue_of
 
 KSI = 6.894757
 
@@ -149,7 +149,7 @@ def test_every_press_fit_has_its_factor() -> None:
         assert "DIN 743-2" in check.source
         assert "not read in print" in check.source
     e = machine("soil-tamper")
-    push = np.linalg.norm(context(e).site("stop", "contact").force, axis=0).max()
+    push = np.linalg.norm(context_of(e).site("stop", "contact").force, axis=0).max()
     d = e.sizes.stop.diameter
     nominal = 32.0 * push * e.stack.pin_root_arm / (math.pi * d**3)
     top = np.abs(fibres(e, "stop", "root").stress).max()
@@ -167,7 +167,7 @@ def test_a_keyseat() -> None:
     assert (keyseat().k_t, keyseat().k_ts, keyseat().r_over_d) == (2.14, 3.0, 0.02)
     e = machine("impact-rig", shaft__drive='"key"')
     assert e.sizes.running is not None
-    shaft, c = e.sizes.running.shaft, context(e)
+    shaft, c = e.sizes.running.shaft, context_of(e)
     site = fibres(e, "main_shaft", "key")
     s_ut = shaft.material.ultimate_strength(shaft.diameter)
     k_f = press_fit().k_f(s_ut)  # the hub's edge is harsher than the seat: 1 + 1.14 q < 2.14
@@ -204,7 +204,7 @@ def test_the_torque_turns_round_past_the_null() -> None:
 def test_hub_bolts_by_hand() -> None:
     """Impact rig, M8: C of the disc's tilting moment, there and back as the disc turns, on 36.6 mm²."""
     e = machine("impact-rig")
-    c, disc, screw = context(e), e.sizes.disc, cap_screw(e.sizes.disc.bolt_thread)
+    c, disc, screw = context_of(e), e.sizes.disc, cap_screw(e.sizes.disc.bolt_thread)
     found = row(e, "crank_disc", "hub_face")
     h = disc.thickness - disc.counterbore_depth
     grip = h + screw.diameter / 2.0
@@ -229,7 +229,7 @@ def test_hub_bolts_by_hand() -> None:
 
 
 def bolt_angles(e: Examination) -> Floats:
-    plate = context(e).plate("crank_disc")
+    plate = context_of(e).plate("crank_disc")
     at = [h.center for h in plate.holes if h.name.startswith("hub_bolt_hole")]
     return np.array([math.atan2(y, x) for x, y in at])
 
@@ -237,7 +237,7 @@ def bolt_angles(e: Examination) -> Floats:
 def test_hub_bolts_shear_where_friction_gives_way() -> None:
     """Impact rig: 0.12 of the preload is less than a bolt's shear, so it is looked at, by the vector's range."""
     e = machine("impact-rig")
-    c, disc, screw = context(e), e.sizes.disc, cap_screw(e.sizes.disc.bolt_thread)
+    c, disc, screw = context_of(e), e.sizes.disc, cap_screw(e.sizes.disc.bolt_thread)
     hub, angles, radius = c.site("crank_disc", "hub_face"), bolt_angles(e), e.sizes.disc.bolt_circle / 2.0
     span = 0.0
     for angle in angles:  # each bolt's shear as a vector, worked out once more
@@ -254,7 +254,7 @@ def test_hub_bolts_shear_where_friction_gives_way() -> None:
 def test_bolts_and_dowels_of_a_block_by_hand() -> None:
     """Impact rig: push P at its greatest; τ = P/(2 π d²/4) pulsating, life 2·10⁶ (100/τ)⁵."""
     e = machine("impact-rig")
-    push = float(np.linalg.norm(context(e).site("stop", "contact").force, axis=0).max())
+    push = float(np.linalg.norm(context_of(e).site("stop", "contact").force, axis=0).max())
     stop = e.sizes.stop
     dowels = row(e, "stop", "dowels")
     tau = push / (2.0 * math.pi / 4.0 * stop.dowel_diameter**2)
@@ -275,7 +275,7 @@ def test_bolts_and_dowels_of_a_block_by_hand() -> None:
 
 def test_a_post_has_no_bolts() -> None:
     """A stop that is a post has neither bolts nor dowels to look at."""
-    assert {f.site for f in fasteners(context(machine("soil-tamper")))} == {"hub_face"}
-    assert {f.site for f in fasteners(context(machine("impact-rig")))} == {
+    assert {f.site for f in fasteners(context_of(machine("soil-tamper")))} == {"hub_face"}
+    assert {f.site for f in fasteners(context_of(machine("impact-rig")))} == {
         "hub_face", "hub_bolt_hole", "bolts", "dowels",
     }  # fmt: skip

@@ -6,14 +6,12 @@ import itertools
 import math
 from dataclasses import replace
 from pathlib import Path
-from time import process_time
 
 import numpy as np
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from loads.checks.context import Context
 from loads.cycle import cycle
 from loads.linkage import Linkage, seated_chain_pin_at, state
 from loads.power_loss.bands import RUNS_ON, STAYS, UNWINDS, arms, idle_draw, outcomes
@@ -260,25 +258,3 @@ def test_a_hold_within_the_band_of_the_null_is_said(tmp_path: Path) -> None:
     enough = study_of(tmp_path, changed("soil-tamper", mechanism__hold_margin=f'"{wanted:.1f} deg"'))
     assert enough.fate_at_hold == UNWINDS
     assert not any("at its hold" in t for t in enough.cautions)
-
-
-def test_it_is_cheap(tmp_path: Path) -> None:
-    from loads.power_loss import study as module
-
-    kept: list[float] = []
-    run = module.power_loss_study
-
-    def timed(c: Context) -> PowerLoss | None:
-        for _ in range(3):
-            begin = process_time()
-            found = run(c)
-            kept.append(process_time() - begin)
-        return found
-
-    from loads.studies import registry
-
-    before = dict(registry.STUDIES)
-    with pytest.MonkeyPatch.context() as patch:
-        patch.setattr(registry, "STUDIES", {**before, "power_loss": timed})
-        examined(tmp_path, text_of("impact-rig"))
-    assert min(kept) < 0.1

@@ -8,18 +8,16 @@ from pathlib import Path
 import numpy as np
 import pytest
 
-from loads.checks.context import Context
 from loads.examine import Examination
 from loads.inertia import inertia_of
 from loads.linkage import state
-from loads.members import members
 from loads.records import RELEASE, SNATCH
 from loads.release.bodies import own_speed, swinging
 from loads.release.lift_off import lets_go
 from loads.release.study import ReleaseStudy
 from parts.problems import DesignRefused
 from parts.stop_back import back_contact
-from tests.starters import examined, put, put_all, settled, whole_text_of
+from tests.starters import context_of, examined, put, put_all, settled, whole_text_of
 
 RIG = "impact-rig"
 NO_BUMPER: dict[str, str | None] = {
@@ -194,10 +192,7 @@ def test_the_spring_gives_the_disc_a_speed_of_its_own(rig: Examination, tmp_path
     work = float(np.trapezoid(np.maximum(net, 0.0), theta))
     assert work > 0.0
     # every point's mass by its distance from the axis: the seated link's as that of its middle and about it
-    c = Context(
-        design=e.design, sizes=e.sizes, stack=e.stack, parts=e.parts, past=e.past,
-        members=members(e.past, e.stack, e.design.targets), sites={}, findings=e.findings,
-    )  # fmt: skip
+    c = context_of(e)
     hung = swinging(c, 0.0)
     middle = hung.first_moment / hung.mass
     x, y = m.crank_radius - middle * np.cos(m.seat_angle), -middle * np.sin(m.seat_angle)

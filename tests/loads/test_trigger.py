@@ -23,8 +23,7 @@ from loads.trigger import ALL, LEAST_CHANCE, Tail, TriggerStudy, drawn
 from parts.design import Drive, Floats
 from tests.loads.far_end_designs import DESIGNS
 from tests.loads.machines import machines as any_machine
-from tests.loads.test_fatigue_study import context
-from tests.starters import examined, text_of
+from tests.starters import context_of, examined, text_of
 
 R, L, D, BETA = 60.0, 90.0, 80.0, math.radians(3.0)
 FAR = """
@@ -339,7 +338,7 @@ def test_a_worn_chain_draws_less_and_fires_no_sooner() -> None:
 def test_plays_are_those_of_the_fit() -> None:
     e = machine(text_of("impact-rig"))
     # H8/f7 at 16 mm: hole 0…27, shaft −34…−16 µm, so 16 to 61 µm of play
-    found = {cause.key: cause for cause in causes(context(e), e.chain)}
+    found = {cause.key: cause for cause in causes(context_of(e), e.chain)}
     assert (found["play_along"].low, found["play_along"].high) == pytest.approx((0.008, 0.0305))
     assert (found["play_across"].low, found["play_across"].high) == pytest.approx((-0.0305, 0.0305))
 
