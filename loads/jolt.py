@@ -16,22 +16,12 @@ from dataclasses import dataclass
 import numpy as np
 
 from loads.checks.context import Context
-from loads.inertia import LOOSE
+from loads.inertia import inertia_of
 from loads.linkage import state
 from loads.spring_law import spring_energy
 from parts.design import Drive
-from parts.outline import Part
-from parts.shape import mass_properties
 
 PER_SECOND = 1000.0  # N·mm over kg·mm² in rad/s², and N·mm over kg·mm in mm/s²
-
-
-@dataclass(frozen=True, slots=True)
-class Turning:
-    """What turns about the disc axis with the link on its stop."""
-
-    inertia: float  # kg·mm²
-    unbalance: float  # kg·mm
 
 
 @dataclass(frozen=True, slots=True)
@@ -48,35 +38,6 @@ class Jolt:
     dead_shake: float | None  # mm/s², None for a disc without unbalance
     dead_speed: float  # rad/s of one blow
     barrier: float  # N·mm that the spring takes up from the hold to the first of null and release
-
-
-def turning(parts: tuple[Part, ...], crank_radius: float, seat_angle: float, turn: float) -> Turning:
-    """Inertia and unbalance of what is on the disc and on the seated link; the chain end hangs in the chain.
-
-    mm, rad; ``turn`` is +1 ccw, −1 cw. Source: parallel axes.
-    """
-    inertia = x = y = 0.0
-    for part in parts:
-        if part.key in LOOSE:
-            continue
-        body = mass_properties(part)
-        own = body.inertia_z - body.mass * (body.center[0] ** 2 + body.center[1] ** 2)
-        for place in part.placements:
-            if place.mover not in ("disc", "link"):
-                continue
-            at = _turned(body.center[:2], place.angle)
-            cx, cy = place.at[0] + at[0], place.at[1] + at[1]
-            if place.mover == "link":
-                bx, by = _turned((cx, cy), math.pi + turn * seat_angle)
-                cx, cy = crank_radius + bx, by
-            inertia += own + body.mass * (cx**2 + cy**2)
-            x, y = x + body.mass * cx, y + body.mass * cy
-    return Turning(inertia, math.hypot(x, y))
-
-
-def _turned(at: tuple[float, float], angle: float) -> tuple[float, float]:
-    c, s = math.cos(angle), math.sin(angle)
-    return at[0] * c - at[1] * s, at[0] * s + at[1] * c
 
 
 def holding_torque(drive: Drive | None) -> float | None:
@@ -97,19 +58,19 @@ def holding_torque(drive: Drive | None) -> float | None:
 def jolts(c: Context) -> Jolt:
     """What the hold of one design stands."""
     m, at, machine = c.design.mechanism, c.past.figures.events, c.past.machine
-    own = turning(c.parts, m.crank_radius, m.seat_angle, float(machine.turn))
     drive = c.design.drive
-    known = drive is not None and drive.inertia is not None
-    inertia = own.inertia + (drive.inertia if drive is not None and drive.inertia is not None else 0.0)
+    own = inertia_of(c.parts, drive)
+    unbalance = own.unbalance(m.crank_radius, m.seat_angle, float(machine.turn))
+    inertia = own.seated(m.crank_radius, m.seat_angle) + (own.drive or 0.0)
     ends = state(machine, np.array([float(at.hold), float(at.first_end)]), at.catch)
     back = float(ends.torque[0]) * float(machine.efficiency)
     taken = spring_energy(machine.spring, ends.draw)
     barrier = max(0.0, float(taken[1] - taken[0]))
     holding = holding_torque(drive)
     return Jolt(
-        inertia=inertia, unbalance=own.unbalance, drive_known=known, back=back, holding=holding,
+        inertia=inertia, unbalance=unbalance, drive_known=own.drive is not None, back=back, holding=holding,
         dead_acceleration=PER_SECOND * back / inertia,
         held_acceleration=None if holding is None else PER_SECOND * (back + holding) / inertia,
-        dead_shake=PER_SECOND * back / own.unbalance if own.unbalance > 0.0 else None,
+        dead_shake=PER_SECOND * back / unbalance if unbalance > 0.0 else None,
         dead_speed=math.sqrt(2.0 * PER_SECOND * barrier / inertia), barrier=barrier,
     )  # fmt: skip

@@ -110,14 +110,14 @@ def power_loss_study(c: Context) -> PowerLoss | None:
     own = next((row for row in rows if AS_DESIGNED in row.marks), None)
     if own is None:
         return None
-    inertia = inertia_of(c.parts, None if design.drive is None else design.drive.inertia)
+    inertia = inertia_of(c.parts, design.drive)
     back = back_contact(c.parts, design, c.sizes).link_angle
     path = make_path(machine, figures, inertia, back, own.outcome.release)
     sheets = METRIC if design.identity.units == "metric" else INCH
     study = PowerLoss(
         bands=make_bands(machine, figures.events, path, own), least=least, recommended=choice, reason=reason, rows=rows,
         shims=shims(m, c.sizes.link.width, c.sizes.stop, sheets, {LEAST: least, RECOMMENDED: choice}), inertia=inertia,
-        seated_inertia=float(inertia.about_disc(m.crank_radius, np.asarray(m.seat_angle), np.asarray(1.0))),
+        seated_inertia=inertia.seated(m.crank_radius, m.seat_angle),
         back_contact=path.back_contact if math.isfinite(path.back_contact) else None, hold=float(figures.events.hold),
         seat=m.seat_angle,
     )  # fmt: skip

@@ -9,7 +9,7 @@ import numpy as np
 
 from loads.checks.context import Context
 from loads.checks.stop import root_stiffness
-from loads.inertia import inertia_of
+from loads.inertia import Inertia, inertia_of
 from loads.lines import FarLine, SheaveRun
 from loads.linkage import state
 from loads.release.lift_off import lets_go
@@ -47,23 +47,12 @@ def copies(c: Context, key: str) -> list[tuple[Part, int]]:
     return [(part, part.quantity) for part in c.parts if part.key == key]
 
 
-@dataclass(frozen=True)
-class Swinging:
-    """The link and what hangs on it, about the crank pin: kg, kg·mm, kg·mm²."""
-
-    mass: float
-    first_moment: float
-    inertia: float
-
-
-def swinging(c: Context, line_mass: float) -> Swinging:
-    """Links with what sits on them, the plate on the chain pin, and ``line_mass`` (kg) of the line at the pin."""
-    length, link = c.design.mechanism.link_length, inertia_of(c.parts)
+def swinging(c: Context, line_mass: float) -> Inertia:
+    """What turns, with the plate on the chain pin and ``line_mass`` (kg) of the line at the link's tip."""
     end = c.design.far_end.part
     share = 0.5 if end == "tie" else 1.0  # of a tie the other half goes with the output
     tip = line_mass + sum(share * many * mass_properties(part).mass for part, many in copies(c, end))
-    first = link.link_mass * link.link_middle
-    return Swinging(link.link_mass + tip, first + tip * length, link.link + tip * length**2)
+    return inertia_of(c.parts, c.design.drive).with_tip(tip, c.design.mechanism.link_length)
 
 
 def line_length(c: Context) -> float:
@@ -116,11 +105,8 @@ def own_speed(c: Context) -> float | None:
     s = state(m, theta, at.catch)
     forward = -s.torque - s.friction_torque
     work = float(np.trapezoid(np.maximum(forward, 0.0), theta))
-    drive = c.design.drive
-    inertia = inertia_of(c.parts).disc + (drive.inertia or 0.0 if drive is not None else 0.0)
-    hung = swinging(c, 0.0)
-    r = c.design.mechanism.crank_radius
-    inertia += hung.inertia + hung.mass * r**2 - 2.0 * hung.first_moment * r * math.cos(c.design.mechanism.seat_angle)
+    own, design = swinging(c, 0.0), c.design.mechanism
+    inertia = own.seated(design.crank_radius, design.seat_angle) + (own.drive or 0.0)
     return math.sqrt(2.0 * work / (inertia * TONNE)) if work > 0.0 and inertia > 0.0 else None
 
 
@@ -151,12 +137,12 @@ def scene(c: Context, moving: Moving, speed: float, back: float, ledger: Ledger)
         cushion = ledger.take("moving.bumper_damping", moving.bumper_damping, BUMPER_DAMPING, "number", why)
     force, work = spring_end(m.spring)
     seat = stop_stiffness(c)
-    inertia = hung.inertia * TONNE
+    inertia = hung.link * TONNE
     return Scene(
         far=_plain(m.far), crank_radius=float(m.crank_radius), link_length=float(m.link_length), slack=float(m.slack),
         theta=float(c.past.figures.events.release), speed=speed, front=float(m.seat_angle), back=back,
         reach=float(m.stop_reach),
-        inertia=inertia, first_moment=hung.first_moment * TONNE, link_mass=hung.mass * TONNE,
+        inertia=inertia, first_moment=hung.link_mass * hung.link_middle * TONNE, link_mass=hung.link_mass * TONNE,
         mass=mass * TONNE, weighing=weighing * TONNE, payload=moving.payload_mass * TONNE, leaves_at=leaves,
         spring=force, spring_work=work,
         gravity=moving.gravity or 0.0, stiffness=stiffness, damping=2.0 * damping * math.sqrt(stiffness * whole),

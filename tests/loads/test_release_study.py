@@ -194,9 +194,9 @@ def test_the_spring_gives_the_disc_a_speed_of_its_own(rig: Examination, tmp_path
     # every point's mass by its distance from the axis: the seated link's as that of its middle and about it
     c = context_of(e)
     hung = swinging(c, 0.0)
-    middle = hung.first_moment / hung.mass
+    middle = hung.link_middle
     x, y = m.crank_radius - middle * np.cos(m.seat_angle), -middle * np.sin(m.seat_angle)
-    link = hung.inertia - hung.mass * middle**2 + hung.mass * float(x**2 + y**2)
+    link = hung.link - hung.link_mass * middle**2 + hung.link_mass * float(x**2 + y**2)
     drive = e.design.drive.inertia if e.design.drive is not None else None
     turning = inertia_of(c.parts).disc + link + (drive or 0.0)
     assert s.speed == pytest.approx(np.sqrt(2.0 * work / (turning * 1e-3)), rel=0.02)

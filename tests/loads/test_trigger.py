@@ -15,12 +15,11 @@ from hypothesis import given, settings
 
 from loads.cycle import events
 from loads.examine import Examination
-from loads.jolt import holding_torque, turning
 from loads.linkage import Linkage, state
 from loads.spread import Nominal, first_events, outcome
 from loads.tolerances import Cause, causes
 from loads.trigger import ALL, LEAST_CHANCE, Tail, TriggerStudy, drawn
-from parts.design import Drive, Floats
+from parts.design import Floats
 from tests.loads.far_end_designs import DESIGNS
 from tests.loads.machines import machines as any_machine
 from tests.starters import context_of, examined, text_of
@@ -360,52 +359,3 @@ def test_every_far_end(name: str) -> None:
 
 def test_no_study_without_its_table(tmp_path: Path) -> None:
     assert "trigger" not in examined(tmp_path, text_of("impact-rig")).studies
-
-
-# ------------------------------------------------------------------------------------------------------------ jolt
-
-
-def test_jolt_of_a_weight_on_a_far_sheave_by_hand() -> None:
-    """A constant pull F at the hold: arm h = −y_B of the seated pin, α = F h/J, W = F times the pull that is left."""
-    text = FAR.replace('rate = "20 N/mm"', 'rate = 0\npreload = "500 N"')
-    e = machine(text, "", '[drive]\ninertia = "0.05 kg·m2"\nholding_torque = "2 N·m"\nreduction = 30\nefficiency = 0.8')
-    jolt = study(e).jolt
-    hold = float(e.figures.events.hold)
-    bx, by = R - L * math.cos(BETA), -L * math.sin(BETA)
-    arm = bx * math.sin(hold) + by * math.cos(hold)
-    assert jolt.back == pytest.approx(500.0 * abs(arm), rel=1e-3)
-    assert jolt.inertia == pytest.approx(50_000.0 + turning(e.parts, R, BETA, 1.0).inertia)
-    assert jolt.dead_acceleration == pytest.approx(1000.0 * jolt.back / jolt.inertia)
-    # the pull left to the null: |OB| (1 − cos) of the angle that is left, which is the hold margin
-    reach = math.hypot(bx, by)
-    assert jolt.barrier == pytest.approx(500.0 * reach * (1.0 - math.cos(math.radians(4.0))), rel=1e-3)
-    assert 0.5 * jolt.inertia * jolt.dead_speed**2 == pytest.approx(1000.0 * jolt.barrier)
-    # 2 N·m × 30 at a disc that has to drive the gear backwards, at 0.75
-    assert jolt.holding == pytest.approx(2000.0 * 30 / 0.75)
-    assert jolt.held_acceleration == pytest.approx(1000.0 * (jolt.back + 80_000.0) / jolt.inertia)
-
-
-def test_what_holds() -> None:
-    drive = Drive(3000.0, 300.0, None, None, 10.0, 0.4, 0.0, None, None, None, "disc")
-    assert holding_torque(None) is None
-    assert holding_torque(replace(drive, stall_torque=None)) is None
-    assert holding_torque(drive) == math.inf  # locks itself
-    assert holding_torque(replace(drive, backdriving_efficiency=0.5)) == pytest.approx(60_000.0)
-    assert holding_torque(replace(drive, backdriving_efficiency=0.5, holding_torque=0.0)) == 0.0
-
-
-def test_inertia_of_disc_and_link_by_parallel_axes() -> None:
-    """The two heaviest parts by hand; pins, stop and spacers are little more."""
-    e = machine(text_of("seed-thrower"))
-    m = e.design.mechanism
-    found = turning(e.parts, m.crank_radius, m.seat_angle, float(e.machine.turn))
-    link = next(part for part in e.parts if part.key == "swing_link")
-    disc = next(part for part in e.parts if part.key == "crank_disc")
-    from parts.shape import mass_properties
-
-    body, plate = mass_properties(link), mass_properties(disc)
-    middle = body.center[0]
-    # cosine rule: the seated link's middle from the disc axis
-    away = m.crank_radius**2 + middle**2 - 2 * m.crank_radius * middle * math.cos(m.seat_angle)
-    both = plate.inertia_z + body.inertia_z - body.mass * middle**2 + body.mass * away
-    assert both < found.inertia < 1.3 * both
