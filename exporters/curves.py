@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterable, Sequence
 
 from exporters import svg
 from exporters.shown import Shown, angle
@@ -50,11 +50,8 @@ def cycle_picture(e: Examination) -> str:
         f"{e.design.far_end.noun} tension, {shown.unit('force')}",
         most,
     )
-    for mark in range(0, int(math.degrees(end)) + 1, 60):
-        x = x_of(math.radians(mark))
-        body.append(svg.line((x, bottom), (x, bottom + 4.0), "axis"))
-        body.append(svg.label(svg.Label(x, bottom + 13.0, (f"{mark}°",), "middle"), "small"))
-    body.append(svg.label(svg.Label(LEFT + WIDE / 2, bottom + 29.0, ("crank angle",), "middle"), "small"))
+    marks = range(0, int(math.degrees(end)) + 1, 60)
+    body += axis([(x_of(math.radians(mark)), f"{mark}°") for mark in marks], LEFT + WIDE / 2, bottom, "crank angle")
     text = (
         f"The torque rises to {shown.quantity(float(f.first_peak), 'torque')} at {angle(float(f.first_peak_at))}°, falls to "
         f"{shown.quantity(float(f.middle_least), 'torque')} at {angle(float(f.middle_least_at))}°, rises to "
@@ -103,6 +100,15 @@ def panel(
     for a, value in marks:
         body.append(svg.circle((x_of(a), y_of(value)), 3.4, "load-head"))
     return body
+
+
+def axis(ticks: Iterable[tuple[float, str]], middle: float, bottom: float, name: str) -> list[str]:
+    """What lies under the curves: ticks at x with their text, and what is drawn over."""
+    body = []
+    for x, text in ticks:
+        body.append(svg.line((x, bottom), (x, bottom + 4.0), "axis"))
+        body.append(svg.label(svg.Label(x, bottom + 13.0, (text,), "middle"), "small"))
+    return [*body, svg.label(svg.Label(middle, bottom + 29.0, (name,), "middle"), "small")]
 
 
 def tick_text(value: float) -> str:

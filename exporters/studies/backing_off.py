@@ -9,7 +9,7 @@ import numpy as np
 
 from exporters import svg
 from exporters.check_json import Row, degrees, tidy
-from exporters.curves import HIGH, LEFT, TOP, WIDE, panel
+from exporters.curves import HIGH, LEFT, TOP, WIDE, axis, panel, tick_text
 from exporters.shown import Shown, angle
 from exporters.studies.leaving import Leaving
 from loads.backing_off import BackingOff, reversed_curve
@@ -107,8 +107,8 @@ def backing_off_values(e: Examination, study: BackingOff) -> dict[str, Any]:
     return {
         "met": study.back_contact is not None,
         "at": deg(study.back_contact),
-        "picture": None if study.back_contact is None else _markup(_picture(e, study.back_contact)),
-        "curve": _markup(_curve(study, shown)) if study.runs else None,
+        "picture": None if study.back_contact is None else svg.markup(_picture(e, study.back_contact)),
+        "curve": svg.markup(_curve(study, shown)) if study.runs else None,
         "fires": deg(study.fires) if study.runs else None,
         "rows": rows,
         "rated": study.rated,
@@ -159,25 +159,11 @@ def _curve(study: BackingOff, shown: Shown) -> str:
         body.append(svg.line((x, y - 6.0), (x, bottom), "event"))
         body.append(svg.label(svg.Label(x - 4.0, y, (f"{name} {angle(at)}°",), "end"), "small"))
     body += panel(theta, values, x_of, TOP, f"pull, {shown.unit('length')}", ())
-    for mark in range(0, int(-math.degrees(end)) + 1, 60):
-        x = x_of(-math.radians(mark))
-        body.append(svg.line((x, bottom), (x, bottom + 4.0), "axis"))
-        body.append(
-            svg.label(svg.Label(x, bottom + 13.0, (f"\N{MINUS SIGN}{mark}°" if mark else "0°",), "middle"), "small")
-        )
-    body.append(
-        svg.label(svg.Label(LEFT + WIDE / 2, bottom + 29.0, ("crank angle, turned backwards",), "middle"), "small")
-    )
+    ticks = [(x_of(math.radians(mark)), f"{tick_text(mark)}°") for mark in range(0, int(math.degrees(end)) - 1, -60)]
+    body += axis(ticks, LEFT + WIDE / 2, bottom, "crank angle, turned backwards")
     text = f"Run backwards from the start dead centre the pull rises to {shown.quantity(study.pull or 0.0, 'length')}."
     box = [(0.0, 0.0), (LEFT + WIDE + 6.0, bottom + 36.0)]
     return svg.picture("reversed-pull", "Pull of the machine run backwards", text, body, box)
-
-
-def _markup(text: str) -> Any:
-    """Pictures are markup of our own with everything in them escaped."""
-    from markupsafe import Markup
-
-    return Markup(text)
 
 
 LEAVING = Leaving("Backing off", backing_off_row, backing_off_values, backing_off_line)

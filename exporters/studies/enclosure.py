@@ -58,7 +58,7 @@ def enclosure_values(e: Examination, study: EnclosureStudy) -> dict[str, Any]:
     shown = Shown(e.design.identity.units)
     return {
         "unit": shown.unit("length"),
-        "picture": _markup(_picture(e, study, shown)),
+        "picture": svg.markup(_picture(e, study, shown)),
         "short": any(row.clearance < 0.0 for row in study.rows),
         "sag": None if study.sag is None else shown.quantity(study.sag, "length", 3),
         "drawing": f"dxf/{_name(e)}",
@@ -161,13 +161,6 @@ def enclosure_files(e: Examination, study: EnclosureStudy) -> Iterator[Step]:
         )  # fmt: skip
 
     yield "swept shapes", write
-
-
-def _markup(text: str) -> Any:
-    """Pictures are markup of our own with everything in them escaped."""
-    from markupsafe import Markup
-
-    return Markup(text)
 
 
 LEAVING = Leaving("Enclosure", enclosure_rows, enclosure_values, enclosure_line, enclosure_files)

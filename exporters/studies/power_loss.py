@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from typing import Any
 
+from exporters import svg
 from exporters.check_json import Row, degrees, tidy
 from exporters.shown import Shown, angle, figures
 from exporters.studies.leaving import Leaving
@@ -118,16 +119,14 @@ def power_loss_line(e: Examination, study: PowerLoss) -> str:
 
 def power_loss_values(e: Examination, study: PowerLoss) -> dict[str, Any]:
     """What the page's section says."""
-    from markupsafe import Markup  # the page alone needs it
-
     from exporters.studies.power_loss_pictures import fate_ring, trade_picture
 
     shown, own = Shown(e.design.identity.units), study.designed
     return {
         "noun": e.design.far_end.noun,
         "units": {kind: shown.unit(kind) for kind in ("length", "energy", "torque", "inertia")},
-        "ring": Markup(fate_ring(e, study)),
-        "trade": Markup(trade_picture(study)),
+        "ring": svg.markup(fate_ring(e, study)),
+        "trade": svg.markup(trade_picture(study)),
         "bands": [_shown_band(band, shown) for band in study.bands],
         "least": seat_text(study.least), "recommended": seat_text(study.recommended), "reason": study.reason,
         "seat": seat_text(study.seat), "has_least": study.least is not None,

@@ -9,7 +9,7 @@ import math
 from collections.abc import Callable, Sequence
 
 from exporters import svg
-from exporters.curves import nice_ticks
+from exporters.curves import axis, nice_ticks, tick_text
 from exporters.shown import angle
 from loads.examine import Examination
 from loads.power_loss.bands import RUNS_ON, STAYS, UNWINDS
@@ -121,11 +121,7 @@ def trade_picture(study: PowerLoss) -> str:
         x, y = put(left, tick)
         body.append(svg.line((x, y), put(right, tick), "zero" if tick == 0.0 else "grid"))
         body.append(svg.label(svg.Label(x - 5.0, y, (f"{tick:g}",), "end"), "small"))
-    for tick in across:
-        x, y = put(tick, 0.0)
-        body.append(svg.line((x, y), (x, y + 4.0), "axis"))
-        body.append(svg.label(svg.Label(x, y + 13.0, (f"{tick:g}".replace("-", "\N{MINUS SIGN}"),), "middle"), "small"))
-    body.append(svg.label(svg.Label(LEFT + WIDE / 2, TOP + HIGH + 29.0, ("seat angle, °",), "middle"), "small"))
+    body += axis([(put(x, 0.0)[0], tick_text(x)) for x in across], LEFT + WIDE / 2, TOP + HIGH, "seat angle, °")
     body += _marked(rows, put)
     body.append(svg.polyline([put(x, y) for x, y in zip(seats, middle, strict=True)], "curve"))
     body.append(svg.polyline([put(x, y) for x, y in zip(seats, firing, strict=True)], "chain"))

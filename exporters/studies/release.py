@@ -9,7 +9,7 @@ import numpy as np
 
 from exporters import svg
 from exporters.check_json import Row, degrees, tidy
-from exporters.curves import BETWEEN, HIGH, LEFT, TOP, WIDE, nice_ticks, panel
+from exporters.curves import BETWEEN, HIGH, LEFT, TOP, WIDE, axis, nice_ticks, panel
 from exporters.shown import Shown, factor_text, figures
 from exporters.studies.leaving import Leaving
 from loads.examine import Examination
@@ -181,14 +181,8 @@ def course_picture(e: Examination, course: Course) -> str:
     top = ((float(1000.0 * course.time[peak]), shown.value(float(course.forces["tension"][peak]), "force")),)
     body += panel(time, tension, x_of, TOP, f"{noun} tension, {shown.unit('force')}", top)
     body += panel(time, draw, x_of, TOP + HIGH + BETWEEN, f"draw, {shown.unit('length')}", ())
-    for mark in nice_ticks(0.0, end, 6):
-        if mark <= end * 1.001:
-            x = x_of(mark)
-            body.append(svg.line((x, bottom), (x, bottom + 4.0), "axis"))
-            body.append(svg.label(svg.Label(x, bottom + 13.0, (f"{mark:g}",), "middle"), "small"))
-    body.append(
-        svg.label(svg.Label(LEFT + WIDE / 2, bottom + 29.0, ("ms after the link lifts off",), "middle"), "small")
-    )
+    ticks = [(x_of(mark), f"{mark:g}") for mark in nice_ticks(0.0, end, 6) if mark <= end * 1.001]
+    body += axis(ticks, LEFT + WIDE / 2, bottom, "ms after the link lifts off")
     text = (
         f"The {noun} pulls with {shown.quantity(float(course.forces['tension'][0]), 'force')} at the lift-off and at most "
         f"with {shown.quantity(float(course.forces['tension'][peak]), 'force')}, {1000.0 * course.time[peak]:.1f} ms later. "

@@ -7,7 +7,7 @@ from typing import Any
 
 from exporters import svg
 from exporters.check_json import NO_ROUNDING, Row, degrees, tidy
-from exporters.curves import nice_ticks
+from exporters.curves import nice_ticks, tick_text
 from exporters.shown import Shown, angle, figures
 from exporters.studies.leaving import Leaving
 from loads.examine import Examination
@@ -103,8 +103,6 @@ def trigger_line(e: Examination, study: TriggerStudy) -> str:
 
 def trigger_values(e: Examination, study: TriggerStudy) -> dict[str, Any]:
     """What the page's section says."""
-    from markupsafe import Markup
-
     shown = Shown(e.design.identity.units)
     length, energy = shown.unit("length"), shown.unit("energy")
 
@@ -136,7 +134,7 @@ def trigger_values(e: Examination, study: TriggerStudy) -> dict[str, Any]:
         "method": METHOD,
         "least": f"{LEAST_CHANCE:g}",
         "worn": None if study.worn_draw is None else shown.quantity(study.worn_length, "length"),
-        "picture": Markup(margin_picture(study)),
+        "picture": svg.markup(margin_picture(study)),
         "rows": rows,
         "causes": [_shown_cause(one, shown) for one in study.effects],
         "jolt": _shown_jolt(study.jolt, shown),
@@ -195,9 +193,7 @@ def margin_picture(study: TriggerStudy) -> str:
     for tick in ticks:
         x = across(tick)
         body.append(svg.line((x, TOP), (x, bottom + 4.0), "grid"))
-        body.append(
-            svg.label(svg.Label(x, bottom + 13.0, (f"{tick:g}°".replace("-", "\N{MINUS SIGN}"),), "middle"), "small")
-        )
+        body.append(svg.label(svg.Label(x, bottom + 13.0, (f"{tick_text(tick)}°",), "middle"), "small"))
     for left, right, share in zip(edges[:-1], edges[1:], study.shares, strict=True):
         top = bottom - HIGH * float(share) / most
         corners = [(across(left), bottom), (across(left), top), (across(right), top), (across(right), bottom)]

@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass, field
 
 import numpy as np
 
 from loads.checks.context import Context
 from loads.checks.stop import root_stiffness
 from loads.inertia import Inertia, inertia_of
+from loads.ledger import Ledger
 from loads.lines import FarLine, SheaveRun
 from loads.linkage import state
 from loads.release.lift_off import lets_go
@@ -18,7 +18,6 @@ from loads.release.spring_end import spring_end
 from parts.design import Assumed, Moving
 from parts.far_ends.base import PRACTICE
 from parts.far_ends.tie import Tie
-from parts.outline import Part
 from parts.shape import mass_properties
 
 TONNE = 1e-3  # a kilogram
@@ -29,29 +28,16 @@ SHEAVE_FILL = 0.5  # of a solid steel disc as wide as the sheave's hub; common p
 STEEL = 7.85e-6  # kg/mm³
 
 
-@dataclass
-class Ledger:
-    """What was assumed on the way to a scene."""
-
-    rows: list[Assumed] = field(default_factory=list)
-
-    def take(self, key: str, given: float | None, value: float, quantity: str, why: str) -> float:
-        if given is not None:
-            return given
-        self.rows.append(Assumed(key, value, quantity, why))
-        return value
-
-
-def copies(c: Context, key: str) -> list[tuple[Part, int]]:
-    """Every made part of a key with how many there are of it."""
-    return [(part, part.quantity) for part in c.parts if part.key == key]
+def made_mass(c: Context, key: str) -> float:
+    """Mass (kg) of all made parts of a key."""
+    return sum(part.quantity * mass_properties(part).mass for part in c.parts if part.key == key)
 
 
 def swinging(c: Context, line_mass: float) -> Inertia:
     """What turns, with the plate on the chain pin and ``line_mass`` (kg) of the line at the link's tip."""
     end = c.design.far_end.part
     share = 0.5 if end == "tie" else 1.0  # of a tie the other half goes with the output
-    tip = line_mass + sum(share * many * mass_properties(part).mass for part, many in copies(c, end))
+    tip = line_mass + share * made_mass(c, end)
     return inertia_of(c.parts, c.design.drive).with_tip(tip, c.design.mechanism.link_length)
 
 
@@ -76,7 +62,7 @@ def line_stiffness(c: Context, ledger: Ledger, given: float | None) -> float:
         ratio, source = far.stretch
         value = ratio * far.min_tensile_strength / length
         why = f"{ratio:g} times the {far.noun}'s strength over {length:.0f} mm, its mount taken as rigid; {source}"
-    return ledger.take("moving.line_stiffness", given, value, "stiffness", why)
+    return ledger.take("moving.line_stiffness", given, value, why, "stiffness")
 
 
 def sheave_mass(c: Context, ledger: Ledger, given: float | None) -> float:
@@ -86,7 +72,7 @@ def sheave_mass(c: Context, ledger: Ledger, given: float | None) -> float:
         return 0.0
     solid = math.pi * float(run.pitch_radius) ** 2 * pin.hub * STEEL * SHEAVE_FILL
     why = f"{SHEAVE_FILL:g} of a solid steel disc of its pitch radius; {PRACTICE}"
-    return ledger.take("moving.sheave_mass", given, solid, "mass", why) / 2.0
+    return ledger.take("moving.sheave_mass", given, solid, why, "mass") / 2.0
 
 
 def own_speed(c: Context) -> float | None:
@@ -118,11 +104,11 @@ def scene(c: Context, moving: Moving, speed: float, back: float, ledger: Ledger)
     hung = swinging(c, per_mm * length / 4.0)
     weighing = moving.mass + per_mm * length * 0.75
     if isinstance(far, Tie):
-        weighing += 0.5 * sum(many * mass_properties(part).mass for part, many in copies(c, "tie"))
+        weighing += 0.5 * made_mass(c, "tie")
     mass = weighing + sheave_mass(c, ledger, moving.sheave_mass)
     stiffness = line_stiffness(c, ledger, moving.line_stiffness)
     why = f"of the critical; {PRACTICE}"
-    damping = ledger.take("moving.line_damping", moving.line_damping, DAMPING, "number", why)
+    damping = ledger.take("moving.line_damping", moving.line_damping, DAMPING, why, "number")
     whole = (mass + moving.payload_mass) * TONNE
     bumper, travel = moving.bumper_stiffness or 0.0, moving.bumper_travel or 0.0
     leaves = moving.payload_leaves_at
@@ -134,7 +120,7 @@ def scene(c: Context, moving: Moving, speed: float, back: float, ledger: Ledger)
     cushion = BUMPER_DAMPING
     if bumper > 0.0:
         why = f"of the critical, a rubber bumper; {PRACTICE}"
-        cushion = ledger.take("moving.bumper_damping", moving.bumper_damping, BUMPER_DAMPING, "number", why)
+        cushion = ledger.take("moving.bumper_damping", moving.bumper_damping, BUMPER_DAMPING, why, "number")
     force, work = spring_end(m.spring)
     seat = stop_stiffness(c)
     inertia = hung.link * TONNE

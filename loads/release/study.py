@@ -11,10 +11,11 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from loads.checks.context import COMMON, Context
+from loads.ledger import Ledger
 from loads.linkage import Linkage
 from loads.members import History
 from loads.records import Check
-from loads.release.bodies import Ledger, own_speed, scene
+from loads.release.bodies import own_speed, scene
 from loads.release.rows import moments_of, release_state
 from loads.release.scene import Scene
 from loads.release.simulate import LOST_COUNT, Course, simulate

@@ -66,9 +66,9 @@ class FarEnd(ABC):
         """Across, in the plane of the disc, where it is highest."""
 
     @property
-    @abstractmethod
     def pin_diameter(self) -> float:
         """Of the pin that joins it to the plate on the chain pin; 0 where the proportions settle it."""
+        return 0.0
 
     @property
     def thickness_on_sheave(self) -> float:

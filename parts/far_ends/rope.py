@@ -66,10 +66,6 @@ class Rope(FarEnd):
         return self.least_sheave_ratio * self.diameter / 2.0, why
 
     @property
-    def pin_diameter(self) -> float:
-        return 0.0
-
-    @property
     def pin_note(self) -> str:
         return f"that the {self.end.name} hangs on"
 

@@ -92,10 +92,6 @@ class Tie(FarEnd):
         return 0.0
 
     @property
-    def pin_diameter(self) -> float:
-        return 0.0
-
-    @property
     def pin_note(self) -> str:
         return "of the output"
 

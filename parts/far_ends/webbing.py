@@ -58,10 +58,6 @@ class Webbing(FarEnd):
         return self.least_sheave_ratio * self.thickness / 2.0, why
 
     @property
-    def pin_diameter(self) -> float:
-        return 0.0
-
-    @property
     def pin_note(self) -> str:
         return "that the sewn eye goes round, smooth"
 
