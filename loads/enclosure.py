@@ -29,23 +29,9 @@ ABOUT = 3.0  # times as far as anything reaches: where the world ends that lies 
 WALLS = (("above", 1, 1), ("below", 1, -1), ("ahead", 0, 1), ("behind", 0, -1))  # key, axis, side
 
 
-@dataclass(frozen=True, slots=True)
-class Clearance:
-    """How near a sweep comes to one wall or obstacle."""
-
-    sweep: str
-    to: str
-    part: str
-    clearance: float
-    excess: float  # the true clearance may be that much larger
-    crank_angle: float
-    x: float
-    y: float
-
-
 @dataclass(frozen=True)  # without slots, for the outlines that are worked out once
 class EnclosureStudy:
-    rows: tuple[Clearance, ...]  # by sweep, the nearest first
+    near: Mapping[str, tuple[Approach, ...]]  # to every wall and obstacle in each sweep, the nearest first
     excess: Mapping[str, float]  # by how much each sweep's covers may be too large, mm
     sag: float | None  # how deep a slack chain can hang below its straight line at most
     units: Units
@@ -55,9 +41,8 @@ class EnclosureStudy:
     def checks(self) -> tuple[Check, ...]:
         """What is run into, one row a sweep and target; where a sweep is clear of all, one row that says so."""
         found = []
-        for sweep in self.covers:
-            rows = [row for row in self.rows if row.sweep == sweep]
-            found += [_check(row) for row in rows if row.clearance < 0.0] or [_check(row) for row in rows[:1]]
+        for sweep, near in self.near.items():
+            found += [_check(sweep, at) for at in [at for at in near if at.clearance < 0.0] or near[:1]]
         return tuple(found)
 
     @property
@@ -76,14 +61,14 @@ class EnclosureStudy:
         return {sweep: outline_of(found, SMOOTH) for sweep, found in self.covers.items()}
 
 
-def _check(row: Clearance) -> Check:
+def _check(sweep: str, at: Approach) -> Check:
     """Clear, there is no demand, and it holds; run into, what is there is nothing against the depth."""
     return Check(
-        row.part, row.to, "clear of the enclosure", row.sweep, row.crank_angle, max(0.0, -row.clearance),
-        max(0.0, row.clearance), "mm", 1.0,
-        f"swept shape against walls and obstacles, seen along the axis, here at most {row.excess:.2g} mm too large",
+        at.part, at.target, "clear of the enclosure", sweep, at.crank_angle, max(0.0, -at.clearance),
+        max(0.0, at.clearance), "mm", 1.0,
+        f"swept shape against walls and obstacles, seen along the axis, here at most {at.excess:.2g} mm too large",
         GEOMETRY,
-        f"at x {row.x:.1f}, y {row.y:.1f} mm in the machine frame",
+        f"at x {at.x:.1f}, y {at.y:.1f} mm in the machine frame",
     )  # fmt: skip
 
 
@@ -94,20 +79,17 @@ def enclosure_study(c: Context) -> EnclosureStudy | None:
         return None
     found, study = sweeps(c), backing_off_study(c)
     reach = max(_reach(cover) for part in found.values() for cover in part)
-    rows = []
+    near = {}
     for sweep, part in found.items():
-        near = [approach(part, target, c.design) for target in targets(wish, reach)]
-        rows += [_clearance(sweep, at) for at in sorted(near, key=lambda at: at.clearance)]
+        rows = [approach(part, target, c.design) for target in targets(wish, reach)]
+        for at in rows:
+            if not math.isfinite(at.clearance):
+                raise ValueError(f"no clearance of {at.part} to {at.target}")  # it must never hold for want of a number
+        near[sweep] = tuple(sorted(rows, key=lambda at: at.clearance))
     return EnclosureStudy(
-        rows=tuple(rows), excess={sweep: max(float(cover.excess.max()) for cover in part) for sweep, part in found.items()},
+        near=near, excess={sweep: max(float(cover.excess.max()) for cover in part) for sweep, part in found.items()},
         sag=_sag(c, study), units=c.design.identity.units, covers=found,
     )  # fmt: skip
-
-
-def _clearance(sweep: str, at: Approach) -> Clearance:
-    if not math.isfinite(at.clearance):
-        raise ValueError(f"no clearance of {at.part} to {at.target}")  # it must never hold for want of a number
-    return Clearance(sweep, at.target, at.part, at.clearance, at.excess, at.crank_angle, at.x, at.y)
 
 
 def sweeps(c: Context) -> dict[str, list[Cover]]:

@@ -139,8 +139,9 @@ def enclosure_problems(enclosure: EnclosureTable, raw: Mapping[str, object]) -> 
                 "outline, or distances; not both",
                 "the enclosure's outline gives this already",
             )
-    elif not distances and "obstacles" not in raw:
-        yield Problem("enclosure", None, "an empty table", "outline, or above, below, behind, ahead; obstacles", "")
+    elif not distances and not enclosure.obstacles:
+        found = "a table without a wall or obstacle" if raw else "an empty table"
+        yield Problem("enclosure", None, found, "outline, or above, below, behind, ahead; obstacles", "")
     if enclosure.outline is not None and (fault := polygon_fault(enclosure.outline)):
         yield Problem("enclosure.outline", None, fault, _POLYGON)
     elif enclosure.outline is not None and not covers(enclosure.outline, (0.0, 0.0)):

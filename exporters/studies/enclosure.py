@@ -10,7 +10,7 @@ from exporters import svg
 from exporters.check_json import Row, degrees, tidy
 from exporters.shown import Shown, angle, shortfall
 from exporters.studies.leaving import Leaving, Step
-from loads.enclosure import SMOOTH, Clearance, EnclosureStudy
+from loads.enclosure import SMOOTH, EnclosureStudy
 from loads.examine import Examination
 from loads.motions import BACKING_OFF, RELEASE, WINDING
 from parts.outline import Point
@@ -28,11 +28,12 @@ def enclosure_rows(e: Examination, study: EnclosureStudy) -> list[Row]:
     """
     return [
         {
-            "sweep": row.sweep, "clearance_mm": tidy(row.clearance), "part": row.part,
-            "crank_angle_deg": degrees(row.crank_angle), "x_mm": tidy(row.x), "y_mm": tidy(row.y), "to": row.to,
-            "excess_mm": tidy(row.excess),
+            "sweep": sweep, "clearance_mm": tidy(at.clearance), "part": at.part,
+            "crank_angle_deg": degrees(at.crank_angle), "x_mm": tidy(at.x), "y_mm": tidy(at.y), "to": at.target,
+            "excess_mm": tidy(at.excess),
         }
-        for row in study.rows
+        for sweep, near in study.near.items()
+        for at in near
     ]  # fmt: skip
 
 
@@ -40,17 +41,10 @@ def enclosure_line(e: Examination, study: EnclosureStudy) -> str:
     """The nearest in each sweep."""
     shown = Shown(e.design.identity.units)
     parts = [
-        f"{sweep} {shown.quantity(row.clearance, 'length', 3)} ({row.part} to {row.to})"
-        for sweep, row in _nearest(study).items()
+        f"{sweep} {shown.quantity(at.clearance, 'length', 3)} ({at.part} to {at.target})"
+        for sweep, (at, *_) in study.near.items()
     ]
     return f"Enclosure, clearance: {', '.join(parts)}."
-
-
-def _nearest(study: EnclosureStudy) -> dict[str, Clearance]:
-    found: dict[str, Clearance] = {}
-    for row in study.rows:
-        found.setdefault(row.sweep, row)
-    return found
 
 
 def enclosure_values(e: Examination, study: EnclosureStudy) -> dict[str, Any]:
@@ -59,17 +53,18 @@ def enclosure_values(e: Examination, study: EnclosureStudy) -> dict[str, Any]:
     return {
         "unit": shown.unit("length"),
         "picture": svg.markup(_picture(e, study, shown)),
-        "short": any(row.clearance < 0.0 for row in study.rows),
+        "short": any(near[0].clearance < 0.0 for near in study.near.values()),
         "sag": None if study.sag is None else shown.quantity(study.sag, "length", 3),
         "drawing": f"dxf/{_name(e)}",
         "excess": [(sweep, shown.quantity(excess, "length", 2)) for sweep, excess in study.excess.items()],
         "rows": [
             {
-                "sweep": row.sweep, "to": row.to, "part": row.part, "clearance": shown.number(row.clearance, "length"),
-                "angle": angle(row.crank_angle), "x": shown.number(row.x, "length"), "y": shown.number(row.y, "length"),
-                "excess": shown.number(row.excess, "length", 2), "short": row.clearance < 0.0,
+                "sweep": sweep, "to": at.target, "part": at.part, "clearance": shown.number(at.clearance, "length"),
+                "angle": angle(at.crank_angle), "x": shown.number(at.x, "length"), "y": shown.number(at.y, "length"),
+                "excess": shown.number(at.excess, "length", 2), "short": at.clearance < 0.0,
             }
-            for row in study.rows
+            for sweep, near in study.near.items()
+        for at in near
         ],
     }  # fmt: skip
 
@@ -118,9 +113,9 @@ def _picture(e: Examination, study: EnclosureStudy, shown: Shown) -> str:
         body += drawn(_lines(shapely.intersection(edge, window)), KINDS[sweep])
     body.append(svg.circle(put(0.0, 0.0), 2.5, "dot"))
     points = [put(box[0], box[1]), put(box[2], box[3])]
-    for row in _nearest(study).values():
-        if box[0] <= row.x <= box[2] and box[1] <= row.y <= box[3]:
-            body.append(svg.circle(put(row.x, row.y), 3.2, "load-head"))
+    for at, *_ in study.near.values():
+        if box[0] <= at.x <= box[2] and box[1] <= at.y <= box[3]:
+            body.append(svg.circle(put(at.x, at.y), 3.2, "load-head"))
     body += scale_bar(k, shown, (points[1][0], points[0][1] + 26.0), points)
     text = "What the machine sweeps over, seen from the front. " + enclosure_line(e, study)
     return svg.picture("enclosure-sweeps", "Swept shapes in the enclosure", text, body, points)

@@ -51,21 +51,20 @@ def test_clearances_are_those_of_sampled_poses() -> None:
     sheave = e.design.sheave
     assert sheave is not None
     rim = shapely.Point(*sheave.center).buffer(sheave.pitch_radius + e.design.far_end.height / 2.0, quad_segs=64)
-    for row in found.rows:
-        if row.sweep == WINDING:
-            true = min(least[row.to], float(shapely.distance(areas[row.to], rim)))
-            assert row.clearance <= true + 0.01
-            assert row.clearance >= true - row.excess - 0.05, (row, true)
-            # its point lies on the part: as far from the target as it says
-            away = float(shapely.distance(areas[row.to], shapely.Point(row.x, row.y)))
-            assert away == pytest.approx(row.clearance, abs=0.02)
+    for row in found.near[WINDING]:
+        true = min(least[row.target], float(shapely.distance(areas[row.target], rim)))
+        assert row.clearance <= true + 0.01
+        assert row.clearance >= true - row.excess - 0.05, (row, true)
+        # its point lies on the part: as far from the target as it says
+        away = float(shapely.distance(areas[row.target], shapely.Point(row.x, row.y)))
+        assert away == pytest.approx(row.clearance, abs=0.02)
 
 
 def test_walls_stand_where_their_words_say() -> None:
     """above and below along y, ahead and behind along x, all from the disc axis in the machine frame."""
     e = design("impact-rig", 0.0, enclosure__above="150", enclosure__below="100", enclosure__behind="95",
                enclosure__ahead="600")  # fmt: skip
-    rows = {row.to: row for row in study(e).rows if row.sweep == WINDING}
+    rows = {row.target: row for row in study(e).near[WINDING]}
     rim = e.sizes.disc.outer_diameter / 2.0
     assert rows["wall below"].clearance == pytest.approx(100.0 - rim, abs=0.1)
     assert rows["wall below"].x == pytest.approx(0.0, abs=1e-6)
@@ -86,7 +85,7 @@ def test_an_obstacle_in_the_way_is_run_into_by_its_depth() -> None:
     rim = plain.sizes.disc.outer_diameter / 2.0
     box = f"[[[-10, {rim - 3.0}], [10, {rim - 3.0}], [10, {rim + 30.0}], [-10, {rim + 30.0}]]]"
     e = design("impact-rig", 0.0, enclosure__obstacles=box, enclosure__behind=f"{rim - 5.0}")
-    rows = {row.to: row for row in study(e).rows if row.sweep == WINDING}
+    rows = {row.target: row for row in study(e).near[WINDING]}
     assert rows["obstacle 1"].clearance == pytest.approx(-3.0, abs=0.4)
     assert rows["wall behind"].clearance == pytest.approx(-5.0, abs=0.1)
     short = [row for row in e.falls_short if row.check == "clear of the enclosure"]
@@ -100,7 +99,7 @@ def test_a_near_miss_is_looked_at_more_closely() -> None:
     first = of(changed("seed-thrower", **slack, **WIDE))
     coarse = min(float((shapely.bounds(c.cores)[:, 1] - c.radius).min()) for c in study(first).covers[BACKING_OFF])
     rough = of(changed("seed-thrower", **slack, enclosure__below=f"{-coarse - 0.05:.4f}"))
-    row = next(r for r in study(rough).rows if r.sweep == BACKING_OFF)
+    row = study(rough).near[BACKING_OFF][0]
     assert row.excess <= 1.5
     assert row.clearance > 0.0
     # never more than what poses show: the lowest of many of link and chain end
@@ -135,10 +134,12 @@ def test_a_floor_under_the_winding_is_hit_when_it_backs_off_with_slack() -> None
     """The floor just under everything that winding and release sweep over: only backing off with slack runs into it."""
     slack = {"chain__slack": '"60 mm"', **FREE}
     first = study(of(changed("seed-thrower", **slack, **WIDE)))
-    lowest = min(row.clearance for row in first.rows if row.to == "wall below" and row.sweep != BACKING_OFF)
+    lowest = min(
+        row.clearance for sweep in (WINDING, RELEASE) for row in first.near[sweep] if row.target == "wall below"
+    )
     floor = f"{900.0 - lowest + 0.5:.3f}"
     e = of(changed("seed-thrower", **slack, enclosure__below=floor))
-    rows = {row.sweep: row for row in study(e).rows}
+    rows = {sweep: near[0] for sweep, near in study(e).near.items()}
     assert rows[WINDING].clearance >= 0.5 - 1e-3
     assert rows[RELEASE].clearance == pytest.approx(0.5, abs=1e-3)
     assert rows[BACKING_OFF].clearance < -5.0
@@ -146,7 +147,7 @@ def test_a_floor_under_the_winding_is_hit_when_it_backs_off_with_slack() -> None
     assert [row.case for row in short] == [BACKING_OFF]
     assert short[0].part in ("swing_link", "chain_end", "chain")
     # taut it comes no lower backing off than it does forwards
-    taut = {row.sweep: row for row in study(design("seed-thrower", 0.0, enclosure__below=floor)).rows}
+    taut = {sweep: near[0] for sweep, near in study(design("seed-thrower", 0.0, enclosure__below=floor)).near.items()}
     assert taut[BACKING_OFF].clearance >= min(taut[WINDING].clearance, taut[RELEASE].clearance)
     # and a pose that stop and chain allow does reach below the floor
     found = rows[BACKING_OFF]
@@ -201,3 +202,10 @@ def test_an_outline_beside_the_machine_is_refused(tmp_path: Path) -> None:
     with pytest.raises(DesignRefused) as refusal:
         examined(tmp_path, text_of("impact-rig") + "\n" + outline)
     assert "beside the disc axis" in str(refusal.value)
+
+
+@pytest.mark.parametrize("lines", ["", "obstacles = []\n"])
+def test_an_enclosure_of_nothing_is_refused(lines: str, tmp_path: Path) -> None:
+    with pytest.raises(DesignRefused) as refusal:
+        examined(tmp_path, text_of("impact-rig") + "\n[enclosure]\n" + lines)
+    assert "outline, or above, below, behind, ahead; obstacles" in str(refusal.value)

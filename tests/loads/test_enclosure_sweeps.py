@@ -132,7 +132,7 @@ def test_other_far_ends_have_their_sweeps(kind: str) -> None:
     keys = {cover.part for cover in found.covers[WINDING]}
     assert {"crank_disc", "swing_link"} <= keys
     assert ("tie" in keys) == (kind != "rope")
-    assert all(np.isfinite(row.clearance) for row in found.rows)
+    assert all(np.isfinite(row.clearance) for near in found.near.values() for row in near)
     area, rng = filled(found, WINDING), np.random.default_rng(6)
     for theta in rng.uniform(0.0, float(e.figures.events.release), 20):
         s = state(e.machine, np.array([theta]), e.figures.events.catch)
@@ -179,7 +179,7 @@ def test_a_machine_rated_for_reverse_sweeps_further_back() -> None:
         for word in ("forbidden", "rated")
     )
     assert filled(rated, BACKING_OFF).area > filled(kept, BACKING_OFF).area + 100.0
-    assert min(row.crank_angle for row in rated.rows if row.sweep == BACKING_OFF) <= 0.0
+    assert min(row.crank_angle for row in rated.near[BACKING_OFF]) <= 0.0
     assert filled(rated, WINDING).area == pytest.approx(filled(kept, WINDING).area, rel=1e-9)
 
 
@@ -192,7 +192,8 @@ def test_the_mirror_image_sweeps_the_mirror_image() -> None:
         a = filled(one, sweep)
         b = shapely.transform(filled(other, sweep), lambda at: at * (1.0, -1.0))
         assert shapely.symmetric_difference(a, b).area < 2e-4 * a.area
-    walls = {(r.sweep, r.to): r.clearance for r in one.rows}
-    for row in other.rows:
-        swapped = {"wall above": "wall below", "wall below": "wall above"}.get(row.to, row.to)
-        assert row.clearance == pytest.approx(walls[row.sweep, swapped], abs=0.05)
+    for sweep, near in other.near.items():
+        walls = {row.target: row.clearance for row in one.near[sweep]}
+        for row in near:
+            swapped = {"wall above": "wall below", "wall below": "wall above"}.get(row.target, row.target)
+            assert row.clearance == pytest.approx(walls[swapped], abs=0.05)
