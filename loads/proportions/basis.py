@@ -9,11 +9,10 @@ from dataclasses import dataclass
 import numpy as np
 
 from loads.checks import eyes, pins, press
-from loads.ledger import Ledger
 from loads.members import History
 from loads.practice import press_fits
 from parts.catalogue import Catalogue
-from parts.design import Design, Floats, LinkWish, Material, PinWish, StopWish
+from parts.design import Assumed, Design, Floats, LinkWish, Material, PinWish, StopWish
 from parts.fits import covers
 from parts.hardening import hardened
 from parts.hardware import preferred
@@ -29,6 +28,26 @@ LOOK_AT = 5  # plates of which the link's width is worked out
 EDGE = 0.9  # of the crank pin: least material between its hole and the rim; common practice, no source
 RINGS = np.linspace(0.02, 0.97, 20)  # pin over ring, whatever edge distance the plate comes to have
 LEAST_WIDTH = 10.0  # link length over least width; common practice, no source
+
+
+class Ledger:
+    """Collects what was assumed while the sizes are settled."""
+
+    def __init__(self) -> None:
+        self.rows: list[Assumed] = []
+
+    def take(self, key: str, given: float | None, value: float, why: str, quantity: str = "length") -> float:
+        """The given value, or the proportioned one with a line that says so."""
+        if given is not None:
+            return given
+        self.rows.append(Assumed(key, value, quantity, why))
+        return value
+
+    def material(self, key: str, given: Material | None, name: str, catalogue: Catalogue) -> Material:
+        if given is not None:
+            return given
+        self.rows.append(Assumed(key, name, "text", "grade in common use for such parts; common practice, no source"))
+        return catalogue.materials[name]
 
 
 @dataclass(frozen=True, slots=True)

@@ -9,7 +9,6 @@ import numpy as np
 from loads.checks.context import Context
 from loads.checks.stop import root_stiffness
 from loads.inertia import Inertia, inertia_of
-from loads.ledger import Ledger
 from loads.lines import FarLine, SheaveRun
 from loads.linkage import state
 from loads.release.lift_off import lets_go
@@ -18,6 +17,7 @@ from loads.release.spring_end import spring_end
 from parts.design import Assumed, Moving
 from parts.far_ends.base import PRACTICE
 from parts.far_ends.tie import Tie
+from parts.records import Defaults
 from parts.shape import mass_properties
 
 TONNE = 1e-3  # a kilogram
@@ -51,7 +51,7 @@ def line_length(c: Context) -> float:
     return straight + float(run.pitch_radius * run.start_wrap) + (c.design.far_end.run_to_spring or 0.0)
 
 
-def line_stiffness(c: Context, ledger: Ledger, given: float | None) -> float:
+def line_stiffness(c: Context, defaults: Defaults, given: float | None) -> float:
     """N/mm of the line; without sheave mount and frame where it is not given, so on the side of a hard snatch."""
     far, length = c.design.far_end, max(line_length(c), 1.0)
     if isinstance(far, Tie):
@@ -62,17 +62,17 @@ def line_stiffness(c: Context, ledger: Ledger, given: float | None) -> float:
         ratio, source = far.stretch
         value = ratio * far.min_tensile_strength / length
         why = f"{ratio:g} times the {far.noun}'s strength over {length:.0f} mm, its mount taken as rigid; {source}"
-    return ledger.take("moving.line_stiffness", given, value, why, "stiffness")
+    return defaults.take("moving.line_stiffness", given, value, "stiffness", why)
 
 
-def sheave_mass(c: Context, ledger: Ledger, given: float | None) -> float:
+def sheave_mass(c: Context, defaults: Defaults, given: float | None) -> float:
     """Effective mass (kg) of the sheave at its pitch radius: half of a disc's mass."""
     run, pin = c.past.machine.far, c.running.sheave_pin
     if not isinstance(run, SheaveRun) or pin is None:
         return 0.0
     solid = math.pi * float(run.pitch_radius) ** 2 * pin.hub * STEEL * SHEAVE_FILL
     why = f"{SHEAVE_FILL:g} of a solid steel disc of its pitch radius; {PRACTICE}"
-    return ledger.take("moving.sheave_mass", given, solid, why, "mass") / 2.0
+    return defaults.take("moving.sheave_mass", given, solid, "mass", why) / 2.0
 
 
 def own_speed(c: Context) -> float | None:
@@ -96,7 +96,7 @@ def own_speed(c: Context) -> float | None:
     return math.sqrt(2.0 * work / (inertia * TONNE)) if work > 0.0 and inertia > 0.0 else None
 
 
-def scene(c: Context, moving: Moving, speed: float, back: float, ledger: Ledger) -> Scene:
+def scene(c: Context, moving: Moving, speed: float, back: float, defaults: Defaults) -> Scene:
     """The release of a design whose disc turns at ``speed`` (rad/s); ``back``: λ at which the stop's back is met."""
     far, m = c.design.far_end, c.past.machine
     length = line_length(c)
@@ -105,10 +105,10 @@ def scene(c: Context, moving: Moving, speed: float, back: float, ledger: Ledger)
     weighing = moving.mass + per_mm * length * 0.75
     if isinstance(far, Tie):
         weighing += 0.5 * made_mass(c, "tie")
-    mass = weighing + sheave_mass(c, ledger, moving.sheave_mass)
-    stiffness = line_stiffness(c, ledger, moving.line_stiffness)
+    mass = weighing + sheave_mass(c, defaults, moving.sheave_mass)
+    stiffness = line_stiffness(c, defaults, moving.line_stiffness)
     why = f"of the critical; {PRACTICE}"
-    damping = ledger.take("moving.line_damping", moving.line_damping, DAMPING, why, "number")
+    damping = defaults.take("moving.line_damping", moving.line_damping, DAMPING, "number", why)
     whole = (mass + moving.payload_mass) * TONNE
     bumper, travel = moving.bumper_stiffness or 0.0, moving.bumper_travel or 0.0
     leaves = moving.payload_leaves_at
@@ -116,11 +116,11 @@ def scene(c: Context, moving: Moving, speed: float, back: float, ledger: Ledger)
         leaves = travel
         if moving.payload_mass > 0.0:
             why = "where the bumper begins, or at zero draw without one"
-            ledger.rows.append(Assumed("moving.payload_leaves_at", leaves, "length", why))
+            defaults.assumed.append(Assumed("moving.payload_leaves_at", leaves, "length", why))
     cushion = BUMPER_DAMPING
     if bumper > 0.0:
         why = f"of the critical, a rubber bumper; {PRACTICE}"
-        cushion = ledger.take("moving.bumper_damping", moving.bumper_damping, BUMPER_DAMPING, why, "number")
+        cushion = defaults.take("moving.bumper_damping", moving.bumper_damping, BUMPER_DAMPING, "number", why)
     force, work = spring_end(m.spring)
     seat = stop_stiffness(c)
     inertia = hung.link * TONNE

@@ -11,7 +11,6 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from loads.checks.context import COMMON, Context
-from loads.ledger import Ledger
 from loads.linkage import Linkage
 from loads.members import History
 from loads.records import Check
@@ -22,6 +21,7 @@ from loads.release.simulate import LOST_COUNT, Course, simulate
 from parts.design import Assumed, Moving
 from parts.problems import Problem
 from parts.quantities import KINDS, Units, factor
+from parts.records import Defaults
 from parts.stop_back import back_contact
 
 MODEL = "rigid bodies, line as spring and damper; Dormand-Prince integration"
@@ -119,18 +119,18 @@ def release_study(c: Context) -> ReleaseStudy:
     speed = moving.disc_speed or own
     if speed is None:
         return _not_covered("the disc's speed at the release is not known", moving.stopped_elsewhere)
-    ledger = Ledger()
+    defaults = Defaults()
     if own is not None:
-        ledger.rows.append(
+        defaults.assumed.append(
             Assumed("moving.disc_speed", own, "speed", "what the spring gives the disc from the null on")
         )
-    k = scene(c, moving, speed, back_contact(c.parts, c.design, c.sizes).link_angle, ledger)
+    k = scene(c, moving, speed, back_contact(c.parts, c.design, c.sizes).link_angle, defaults)
     course = simulate(k)
     if not course.settled or course.energy_error > LOST_COUNT:
         return _not_covered(_unsettled(course, own), moving.stopped_elsewhere)
     used = max(0.0, k.bumper_travel - float(course.draw.min())) if k.bumper > 0.0 else 0.0
     study = ReleaseStudy(
-        True, "", moving.stopped_elsewhere, speed, own is not None, k, course, tuple(ledger.rows), bumper_used=used,
+        True, "", moving.stopped_elsewhere, speed, own is not None, k, course, tuple(defaults.assumed), bumper_used=used,
         _reach=c.design.mechanism.stop_reach,
     )  # fmt: skip
     return replace(study, checks=_checks(study, moving), cautions=_cautions(study, moving))
