@@ -19,7 +19,7 @@ from loads.records import Check
 from loads.reversed_rating import reversed_checks
 from loads.slack_poses import SlackPoses, slack_poses
 from parts.design import Floats
-from parts.quantities import KINDS, Units, factor
+from parts.quantities import Units, in_brief
 from parts.stop_back import BackContact, back_contact
 
 MAP_STEP = math.radians(5.0)  # of the map of slack poses
@@ -92,7 +92,7 @@ class BackingOff:
         if self.pull is None or self.fires is None:
             rows = [f"{text}." if self.rated else f"{text}: the drive must not be turned further back."]
         else:
-            way = in_brief(abs(self.pull - self.forward_pull), self.units)
+            way = in_brief(abs(self.pull - self.forward_pull), "length", self.units)
             than = "more" if self.pull > self.forward_pull else "less"
             goes = f"draws {way} {than} than forwards, and fires in reverse from {_deg(self.fires)}"
             over = ", overdrawing the spring" if self.overdraws else ""
@@ -101,7 +101,7 @@ class BackingOff:
             )
             rows = [f"{text}. Beyond it {goes}{over}. {kept}"]
         if self.carries and self.carrying_slack is not None:
-            slack, least = (in_brief(v, self.units) for v in (self.slack, self.carrying_slack))
+            slack, least = (in_brief(v, "length", self.units) for v in (self.slack, self.carrying_slack))
             rows.append(
                 f"With {slack} of slack the stop's back carries the link outwards when the machine backs off: that "
                 f"begins at {least}."
@@ -114,12 +114,6 @@ class BackingOff:
 
 def _deg(angle: float) -> str:
     return f"{math.degrees(angle):.1f}°".replace("-", "\N{MINUS SIGN}")
-
-
-def in_brief(length: float, units: Units) -> str:
-    """A length (mm) in three figures, in the design's unit."""
-    unit = KINDS["length"].metric if units == "metric" else KINDS["length"].us
-    return f"{length / factor('length', unit):.3g} {unit}"
 
 
 def second_arm(crank_radius: float, link_length: float, link_angle: float) -> float:

@@ -7,17 +7,15 @@ proportion to torque. Turning is slow enough that what turns needs no torque of 
 from __future__ import annotations
 
 import math
-import tomllib
 from collections.abc import Callable
 from dataclasses import dataclass
-from functools import lru_cache
-from importlib.resources import files
 
 import numpy as np
 
 from loads.checks.context import COMMON, Context
 from loads.cycle import corner_angles
 from loads.linkage import Linkage, state
+from loads.practice import value
 from loads.records import HOLD, Check
 from parts.design import Assumed, Drive, Floats
 
@@ -26,13 +24,6 @@ POINTS = 4
 AGREE = 1e-7  # of an integral by which halving the cells may still change it
 HALVINGS = 7
 LINE = "straight torque–speed line of a direct current motor"
-
-
-@lru_cache(maxsize=1)
-def practice() -> dict[str, float]:
-    """Numbers of ``loads/data/drive.toml``."""
-    table = tomllib.loads((files("loads") / "data" / "drive.toml").read_text(encoding="utf-8"))["motor"]
-    return {key: float(value) for key, value in table.items() if isinstance(value, float)}
 
 
 # ------------------------------------------------------------------------------------------------ motor and gear
@@ -138,7 +129,7 @@ def at_disc(c: Context, w: Winding) -> Disc:
     s, eta = c.past.winding, float(c.past.machine.efficiency)
     on = s.crank_angle <= float(c.past.figures.events.first_end)
     theta, torque, rubbing = s.crank_angle[on], s.torque[on], s.friction_torque[on]
-    moving, starting = torque + rubbing, torque + practice()["breakaway"] * rubbing
+    moving, starting = torque + rubbing, torque + value("motor", "breakaway") * rubbing
     i, k = int(np.argmax(moving)), int(np.argmax(starting))
     energy = float(w.integral(lambda load: load[None, :])[0])
     wound = theta <= w.hold
@@ -171,7 +162,7 @@ def demands(w: Winding, disc: Disc, time: float) -> Demands:
     ∫dθ/ω, so ω_0 = (1/t) ∫dθ/(1 − M/M_s). Its power is greatest, M_s ω_0/4, at half of each. Source: the straight
     line of a direct current motor.
     """
-    stall = practice()["stall_margin"] * disc.peak
+    stall = value("motor", "stall_margin") * disc.peak
     free = float(w.integral(lambda load: rates(np.ones_like(load), motor_speed(load, stall, 1.0))[None, :])[0]) / time
     speed = w.hold / time
     return Demands(time, speed, disc.peak * speed, disc.energy / time, stall, free, stall * free / 4.0)
@@ -282,17 +273,18 @@ class DriveStudy:
 
 def _checks(study: DriveStudy) -> list[Check]:
     """Rows of a given motor, brake and encoder."""
-    rows, values, disc, drive = [], practice(), study.disc, study.drive
+    rows, disc, drive = [], study.disc, study.drive
     if study.driven is not None:
         d = study.driven
         line = "N η at the gear; friction as given"
         rows += [
             Check(
                 "motor", "shaft", "starts from every angle", "", disc.start_at, d.start, d.stall, "N·mm", 1.0,
-                f"stall torque over torque and {values['breakaway']:g} times the friction at a standstill", COMMON, line,
+                f"stall torque over torque and {value('motor', 'breakaway'):g} times the friction at a standstill",
+                COMMON, line,
             ),
             Check(
-                "motor", "shaft", "stall torque", "", disc.peak_at, d.peak, d.stall, "N·mm", values["stall_margin"],
+                "motor", "shaft", "stall torque", "", disc.peak_at, d.peak, d.stall, "N·mm", value("motor", "stall_margin"),
                 f"{LINE}, torque in motion", COMMON, line,
             ),
         ]  # fmt: skip
@@ -310,14 +302,14 @@ def _checks(study: DriveStudy) -> list[Check]:
         rows.append(
             Check(
                 "motor", "brake", "holds at the hold", HOLD, None, at_hold(disc, drive), study.holds_with, "N·mm",
-                values["hold_margin"], f"{by}, over M η_b/N", COMMON, locks,
+                value("motor", "hold_margin"), f"{by}, over M η_b/N", COMMON, locks,
             )
         )  # fmt: skip
     if study.counts_there is not None:
         rows.append(
             Check(
                 "motor", "encoder", "encoder resolution", HOLD, None, study.counts, study.counts_there, "a turn", 1.0,
-                f"one count at most {values['count_share']:g} of the hold margin", COMMON,
+                f"one count at most {value('motor', 'count_share'):g} of the hold margin", COMMON,
             )
         )  # fmt: skip
     return rows
@@ -325,7 +317,7 @@ def _checks(study: DriveStudy) -> list[Check]:
 
 def drive_study(c: Context) -> DriveStudy:
     """Of every design: the demands on a motor; with a motor in ``[drive]``, how it does."""
-    drive, values = c.design.drive, practice()
+    drive = c.design.drive
     w = winding(c)
     disc = at_disc(c, w)
     assumed: tuple[Assumed, ...] = ()
@@ -334,12 +326,13 @@ def drive_study(c: Context) -> DriveStudy:
     if drive is not None and drive.stall_torque is not None and drive.free_speed is not None:
         result = driven(w, disc, drive, drive.stall_torque, drive.free_speed)
     elif wanted is None:
-        wanted = values["winding_time"]
+        wanted = value("motor", "winding_time")
         assumed = (Assumed("drive.winding_time", wanted, "time", f"a motor is looked for, {COMMON}"),)
     there = None
     if drive is not None and drive.encoder_counts is not None:
         there = drive.encoder_counts * (drive.reduction if drive.encoder_on == "motor" else 1.0)
     return DriveStudy(
         disc=disc, demands=None if wanted is None else demands(w, disc, wanted), drive=drive, driven=result,
-        counts=math.tau / (values["count_share"] * c.design.mechanism.hold_margin), counts_there=there, assumed=assumed,
+        counts=math.tau / (value("motor", "count_share") * c.design.mechanism.hold_margin), counts_there=there,
+        assumed=assumed,
     )  # fmt: skip

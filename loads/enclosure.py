@@ -14,14 +14,14 @@ from typing import Any
 
 import numpy as np
 
-from loads.backing_off import BackingOff, backing_off_study, in_brief
+from loads.backing_off import BackingOff, backing_off_study
 from loads.checks.context import Context
 from loads.checks.fit import GEOMETRY
 from loads.motions import BACKING_OFF, RELEASE, WINDING, backing_off, release_swing, winding
 from loads.records import Check
 from parts.design import Design, Enclosure
 from parts.layers import machine_layers
-from parts.quantities import Units
+from parts.quantities import Units, in_brief
 from parts.sweeps import Approach, Body, Cover, Motion, Target, approach, bodies, covers, outline_of
 
 SMOOTH = 0.05  # mm by which an outline that is written is made simpler
@@ -49,7 +49,7 @@ class EnclosureStudy:
     def cautions(self) -> tuple[str, ...]:
         if self.sag is None:
             return ()
-        deep = in_brief(self.sag, self.units)
+        deep = in_brief(self.sag, "length", self.units)
         return (
             f"A slack chain hangs in a bow, up to {deep} beside its straight line: the swept shapes hold the straight "
             "line and the chain's end, not the bow.",

@@ -1,4 +1,4 @@
-"""What the checks take from practice, read from its table once: friction of press joints, bush pressures, keys."""
+"""What the checks take from practice, read from its table once: friction of press joints, bush pressures, keys, motors."""
 
 from __future__ import annotations
 
@@ -8,6 +8,7 @@ from functools import lru_cache
 from importlib.resources import files
 from typing import Any
 
+TABLES = ("joints.toml", "drive.toml")  # of ``loads/data``
 UNSURE = " (from memory, confirm with the maker's certificate)"
 
 
@@ -22,11 +23,12 @@ class Key:
 
 @lru_cache(maxsize=1)
 def _table() -> dict[str, Any]:
-    return tomllib.loads((files("loads") / "data" / "joints.toml").read_text(encoding="utf-8"))
+    data = files("loads") / "data"
+    return {k: v for name in TABLES for k, v in tomllib.loads((data / name).read_text(encoding="utf-8")).items()}
 
 
 def value(group: str, name: str) -> float:
-    """One number of the table ``loads/data/joints.toml``."""
+    """One number of a group of the tables."""
     return float(_table()[group][name])
 
 

@@ -189,6 +189,16 @@ def show(value: float | str, kind: str, units: Units) -> str:
     return f"{_digits(value / factor(kind, unit))} {unit}"
 
 
+def in_brief(value: float, kind: str, units: Units, figures: int = 3) -> str:
+    """A value from the inside in a few figures and without an exponent, in the design's unit; not to be read back.
+
+    >>> in_brief(12345.6, "length", "metric")
+    '12300 mm'
+    """
+    unit = KINDS[kind].metric if units == "metric" else KINDS[kind].us
+    return f"{float(f'{value / factor(kind, unit):.{figures}g}'):.10g} {unit}"
+
+
 def with_inches(text: str) -> str:
     """A message with its lengths in inches as well; what stands in quotes is the file's own wording and is left alone.
 

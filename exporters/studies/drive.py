@@ -8,8 +8,9 @@ from typing import Any
 from exporters.check_json import Row, degrees, tidy
 from exporters.shown import Shown, angle, figures
 from exporters.studies.leaving import Leaving
-from loads.drive import Demands, Disc, Driven, DriveStudy, at_hold, practice
+from loads.drive import Demands, Disc, Driven, DriveStudy, at_hold
 from loads.examine import Examination
+from loads.practice import value
 from parts.design import Drive
 
 Facts = list[tuple[str, str]]
@@ -103,12 +104,12 @@ def drive_line(e: Examination, study: DriveStudy) -> str:
 def drive_values(e: Examination, study: DriveStudy) -> dict[str, Any]:
     """What the page's section says."""
     shown = Shown(e.design.identity.units)
-    share = 100.0 * practice()["count_share"]
+    share = 100.0 * value("motor", "count_share")
     return {
         "disc": _disc_facts(study.disc, shown),
         "demands": None if study.demands is None else _demand_facts(study.demands, shown),
         "assumed_time": bool(study.assumed),
-        "margin": f"{practice()['stall_margin']:g}",
+        "margin": f"{value('motor', 'stall_margin'):g}",
         "motor": None
         if study.driven is None or study.drive is None
         else _motor_facts(study.driven, study.drive, study.disc, shown),

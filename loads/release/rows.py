@@ -79,9 +79,7 @@ class ReleaseState(State):
 
 def moments_of(course: Course) -> tuple[NDArray[np.intp], NDArray[np.bool_]]:
     """Rows of a course that are kept, and which of them are the snatch's: behind the first slack or the straight link."""
-    ends = [t for t in (course.slack_first, course.straight) if t is not None]
-    turn = min(ends) if ends else float(course.time[-1])
-    late = course.time >= turn
+    late = course.time >= course.turn
     pin = np.hypot(course.forces["pin_x"], course.forces["pin_y"])
     f = course.forces
     bends = f["tension"] * (np.cos(course.psi) * f["uy"] - np.sin(course.psi) * f["ux"])

@@ -54,6 +54,16 @@ class Course:
     left_over: float  # energy of motion at the end, over what was stored
     energy_error: float  # over what was stored
 
+    @property
+    def sound(self) -> bool:
+        """Whether its numbers may be given at all."""
+        return self.settled and self.energy_error <= LOST_COUNT
+
+    @property
+    def turn(self) -> float:
+        """Time at which the swing ends and the snatch begins: the first slack or the straight link; else its last moment."""
+        return min((t for t in (self.slack_first, self.straight) if t is not None), default=float(self.time[-1]))
+
 
 def start(k: Scene) -> Motion:
     """The link on its stop, carried round by the disc; the line stretched until it holds the spring."""

@@ -20,7 +20,7 @@ from loads.release.scene import Scene
 from loads.release.simulate import LOST_COUNT, Course, simulate
 from parts.design import Assumed, Moving
 from parts.problems import Problem
-from parts.quantities import KINDS, Units, factor
+from parts.quantities import Units, in_brief
 from parts.records import Defaults
 from parts.stop_back import back_contact
 
@@ -63,7 +63,9 @@ class ReleaseStudy:
     @property
     def blow(self) -> float:
         """Greatest force (N) between link and stop, at the stop's reach."""
-        return 0.0 if self.course is None else float(np.abs(self.course.forces["stop"]).max()) / self._reach
+        if self.course is None or self.scene is None:
+            return 0.0
+        return float(np.abs(self.course.forces["stop"]).max()) / self.scene.reach
 
     @property
     def stretched(self) -> float:
@@ -77,14 +79,10 @@ class ReleaseStudy:
             return None
         return self.course.given_to_payload / self.course.stored_at_start
 
-    _reach: float = 1.0
-
     def _most(self, name: str, late: bool) -> float:
         if self.course is None:
             return 0.0
-        ends = [t for t in (self.course.slack_first, self.course.straight) if t is not None]
-        turn = min(ends) if ends else math.inf
-        values = np.abs(self.course.forces[name])[(self.course.time >= turn) == late]
+        values = np.abs(self.course.forces[name])[(self.course.time >= self.course.turn) == late]
         return float(values.max()) if values.size else 0.0
 
 
@@ -126,12 +124,11 @@ def release_study(c: Context) -> ReleaseStudy:
         )
     k = scene(c, moving, speed, back_contact(c.parts, c.design, c.sizes).link_angle, defaults)
     course = simulate(k)
-    if not course.settled or course.energy_error > LOST_COUNT:
+    if not course.sound:
         return _not_covered(_unsettled(course, own), moving.stopped_elsewhere)
     used = max(0.0, k.bumper_travel - float(course.draw.min())) if k.bumper > 0.0 else 0.0
     study = ReleaseStudy(
         True, "", moving.stopped_elsewhere, speed, own is not None, k, course, tuple(defaults.assumed), bumper_used=used,
-        _reach=c.design.mechanism.stop_reach,
     )  # fmt: skip
     return replace(study, checks=_checks(study, moving), cautions=_cautions(study, moving))
 
@@ -142,21 +139,15 @@ def with_dry_shot(study: ReleaseStudy, units: Units) -> ReleaseStudy:
     if k is None or k.payload <= 0.0:
         return study
     course = simulate(replace(k, payload=0.0))
-    dry = replace(study, course=course).snatch if course.settled else None
+    dry = replace(study, course=course).snatch if course.sound else None
     if dry is None:
         text = "A shot without the payload was not covered: never fire dry."
     else:
         text = (
-            f"A shot without the payload snatches with {_force(dry, units)}, against {_force(study.snatch, units)} with it, "
-            "and is in none of the loads: never fire dry."
+            f"A shot without the payload snatches with {in_brief(dry, 'force', units, 4)}, against "
+            f"{in_brief(study.snatch, 'force', units, 4)} with it, and is in none of the loads: never fire dry."
         )
     return replace(study, dry_snatch=dry, cautions=(*study.cautions, text))
-
-
-def _force(value: float, units: Units) -> str:
-    unit = KINDS["force"].metric if units == "metric" else KINDS["force"].us
-    shown = value / factor("force", unit)
-    return f"{float(f'{shown:.4g}'):.10g} {unit}"  # four figures, and no exponent
 
 
 def _unsettled(course: Course, own: float | None) -> str:

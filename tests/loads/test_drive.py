@@ -12,9 +12,10 @@ import numpy as np
 import pytest
 from scipy.integrate import quad, solve_ivp
 
-from loads.drive import Disc, DriveStudy, Winding, at_hold, at_motor, demands, driven, motor_speed, practice, winding
+from loads.drive import Disc, DriveStudy, Winding, at_hold, at_motor, demands, driven, motor_speed, winding
 from loads.examine import Examination
 from loads.linkage import state
+from loads.practice import value
 from parts.design import Drive, Floats
 from tests.loads.far_end_designs import DESIGNS
 from tests.loads.machines import TABLE
@@ -173,7 +174,7 @@ def test_the_motor_that_is_asked_for_winds_in_that_time(name: str, time: float) 
         winding(c), study(e).disc, motor(reduction=1.0, efficiency=1.0, torque_constant=None), want.stall, want.free
     )
     assert same.time == pytest.approx(time, rel=1e-6)
-    assert same.stall / same.peak == pytest.approx(practice()["stall_margin"])
+    assert same.stall / same.peak == pytest.approx(value("motor", "stall_margin"))
     assert want.largest_power == pytest.approx(want.stall / 2.0 * want.free / 2.0)
     assert same.peak_power is not None
     assert same.peak_power <= want.largest_power * (1.0 + 1e-9)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from dataclasses import replace
 from pathlib import Path
 
 import numpy as np
@@ -229,3 +230,18 @@ def test_a_dry_shot_is_told_of_but_is_in_no_load(tmp_path: Path) -> None:
     assert abs(study.dry_snatch / study.snatch - 1.0) > 0.02
     none = examined(tmp_path, whole_text_of("soil-tamper"))
     assert not any("dry" in text for text in none.cautions)
+
+
+@pytest.mark.parametrize("fault", [{"settled": False}, {"energy_error": 0.1}])
+def test_a_dry_shot_that_cannot_be_trusted_gives_no_number(
+    rig: Examination, fault: dict[str, float], monkeypatch: pytest.MonkeyPatch
+) -> None:
+    import loads.release.study as module
+
+    study = study_of(rig)
+    assert study.course is not None
+    broken = replace(study.course, **fault)  # type: ignore[arg-type]
+    monkeypatch.setattr(module, "simulate", lambda _scene: broken)
+    again = module.with_dry_shot(study, "metric")
+    assert again.dry_snatch is None
+    assert "not covered: never fire dry" in again.cautions[-1]
